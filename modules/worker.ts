@@ -1,0 +1,3 @@
+import { defineNuxtModule } from '@nuxt/kit'
+
+export default defineNuxtModule({ meta: { name: 'worker' }, setup() {} })
