@@ -1,0 +1,89 @@
+import { spawn } from 'node:child_process'
+import { readFileSync } from 'node:fs'
+import { setTimeout as delay } from 'node:timers/promises'
+import { Failure } from './failure.mjs'
+
+/** Runs a program to its end and returns what it wrote. Rejects with a Failure naming its last words when it fails. */
+export async function capture(program, args, { input, ...options } = {}) {
+  const { code, stdout, stderr } = await new Promise((done, fail) => {
+    const child = spawn(program, args, { ...options, stdio: ['pipe', 'pipe', 'pipe'] })
+    const texts = { stdout: '', stderr: '' }
+    for (const name of ['stdout', 'stderr']) child[name].setEncoding('utf8').on('data', (text) => { texts[name] += text })
+    child.once('error', fail)
+    child.once('close', code => done({ code, ...texts }))
+    // A program that ends before it has read everything closes the pipe; its exit code says what went wrong.
+    child.stdin.once('error', error => error.code === 'EPIPE' ? undefined : fail(error))
+    child.stdin.end(input ?? '')
+  })
+  if (code !== 0) throw new Failure(`${program} failed (${code}): ${lastLines(stderr || stdout, 3)}`)
+  return stdout
+}
+
+/** Runs a program with the terminal's own output. Resolves with its exit code. */
+export function attend(program, args, options = {}) {
+  return new Promise((done, fail) => {
+    const child = spawn(program, args, { stdio: ['ignore', 'inherit', 'inherit'], ...options })
+    child.once('error', fail)
+    child.once('close', (code, signal) => done(code ?? `stopped by ${signal}`))
+  })
+}
+
+export function lastLines(text, count) {
+  return text.trim().split('\n').slice(-count).map(line => line.trim()).join(' / ')
+}
+
+export function isAlive(pid) {
+  try {
+    process.kill(pid, 0)
+    return true
+  }
+  catch (error) {
+    if (error.code === 'EPERM') return true
+    if (error.code === 'ESRCH') return false
+    throw error
+  }
+}
+
+/** The words a process was started with, or null when it has gone. A zombie counts as gone. */
+export function commandOf(pid) {
+  try {
+    return readFileSync(`/proc/${pid}/cmdline`, 'utf8').split('\0').filter(word => word !== '')
+  }
+  catch (error) {
+    if (error.code === 'ENOENT' || error.code === 'ESRCH') return null
+    throw error
+  }
+}
+
+/** Asks a process to stop, waits, and ends it by force after `patience_ms`. Returns how it went. */
+export async function stopProcess(pid, { signal = 'SIGTERM', patience_ms = 10_000 } = {}) {
+  if (!isRunning(pid)) return 'gone'
+  send(pid, signal)
+  if (await untilGone(pid, patience_ms)) return 'stopped'
+  send(pid, 'SIGKILL')
+  await untilGone(pid, 5_000)
+  return 'killed'
+}
+
+function isRunning(pid) {
+  const command = isAlive(pid) ? commandOf(pid) : null
+  return command !== null && command.length > 0
+}
+
+function send(pid, signal) {
+  try {
+    process.kill(pid, signal)
+  }
+  catch (error) {
+    if (error.code !== 'ESRCH') throw error
+  }
+}
+
+async function untilGone(pid, patience_ms) {
+  const end = Date.now() + patience_ms
+  while (Date.now() < end) {
+    if (!isRunning(pid)) return true
+    await delay(50)
+  }
+  return !isRunning(pid)
+}
