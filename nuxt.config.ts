@@ -35,7 +35,8 @@ export default defineNuxtConfig({
     '~/assets/css/tokens.css',
     '~/assets/css/parts.css',
   ],
-  tailwindcss: { cssPath: '~/assets/css/tailwind.css', config: tailwind, viewer: false },
+  // Utilities load last, so that a class on an element may adjust a part of parts.css.
+  tailwindcss: { cssPath: ['~/assets/css/tailwind.css', { injectPosition: 'last' }], config: tailwind, viewer: false },
   pinia: { storesDirs: ['stores/**'] },
   typescript: { strict: true, tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } } },
   sourcemap: { server: false, client: false },

@@ -1,8 +1,8 @@
 import type { Config } from 'tailwindcss'
 
 /** Every colour is the name of a token in assets/css/tokens.css, so a theme is a change of variables and nothing else. */
-const TOKENS = ['ground', 'pane', 'sunk', 'raised', 'lead', 'lead-soft', 'edge', 'ink', 'ink-2', 'ink-3', 'on-ink', 'iron', 'iron-2', 'iron-text', 'iron-dim',
-  'lamp', 'lamp-ink', 'lamp-deep', 'lamp-wash', 'fault', 'fault-wash', 'on-fault', 'pick', 't1', 't2', 'cest', 'cest-text', 's1', 's2', 's3', 's4', 's5', 's6', 'grid', 'axis']
+const TOKENS = ['ground', 'pane', 'sunk', 'raised', 'lead', 'lead-soft', 'edge', 'ink', 'ink-2', 'ink-3', 'on-ink', 'iron', 'iron-2', 'iron-edge', 'iron-text', 'iron-dim', 'iron-bright',
+  'lamp', 'lamp-ink', 'lamp-deep', 'lamp-wash', 'fault', 'fault-wash', 'on-fault', 'pick', 't1', 't2', 'cest', 'cest-text', 's1', 's2', 's3', 's4', 's5', 's6', 'grid', 'axis', 'm0', 'm1', 'veil']
 
 export default {
   content: ['./app.vue', './error.vue', './components/**/*.{vue,ts}', './layouts/**/*.vue', './pages/**/*.vue', './composables/**/*.ts', './shared/**/*.ts'],
