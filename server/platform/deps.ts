@@ -1,0 +1,19 @@
+import type { Knex } from 'knex'
+import type { MeasurementKind } from '../../shared/measurements/types'
+import type { Clock } from './clock'
+import type { Ids } from './ids'
+import type { Passwords } from './passwords'
+import type { FileStorage } from './storage'
+
+/** What services reach the outside through. Passed in, never imported, so that tests and the demo loader choose clock, ids and storage. */
+export interface Deps {
+  db: Knex
+  clock: Clock
+  ids: Ids
+  storage: FileStorage
+  passwords: Passwords
+  /** Registered measurement kinds; tests add a toy kind. */
+  kinds: Readonly<Record<string, MeasurementKind>>
+  /** Public address of the web process, for links in mail. */
+  origin: string
+}
