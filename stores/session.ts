@@ -28,10 +28,11 @@ export const useSessionStore = defineStore('session', () => {
     counts.value = view.counts ?? NO_COUNTS
     if (!membership.value) programmeCode.value = view.memberships[0]?.programmeCode ?? null
   }
+  /** @returns false, and nothing changes, when the person is no member of that programme */
   function choose(code: string): boolean {
-    const known = memberships.value.some(one => one.programmeCode.toLowerCase() === code.toLowerCase())
-    if (known) programmeCode.value = memberships.value.find(one => one.programmeCode.toLowerCase() === code.toLowerCase())?.programmeCode ?? null
-    return known
+    const known = memberships.value.find(one => one.programmeCode.toLowerCase() === code.toLowerCase())
+    if (known) programmeCode.value = known.programmeCode
+    return known !== undefined
   }
   function clear(): void {
     person.value = null
@@ -39,10 +40,16 @@ export const useSessionStore = defineStore('session', () => {
     programmeCode.value = null
     counts.value = NO_COUNTS
   }
+  /** Ends the session on the server first; only then is the person forgotten here. */
+  async function signOut(): Promise<void> {
+    await useNuxtApp().$csrfFetch('/api/session', { method: 'DELETE' })
+    clear()
+    await navigateTo('/sign-in')
+  }
   /** Whether to show a button in the programme looked at. The route asks the same table again. */
   function may(permission: Permission): boolean {
     return actor.value !== null && can(actor.value, permission, membership.value?.programmeId)
   }
 
-  return { person, memberships, programmeCode, counts, membership, roles, accept, choose, clear, may }
+  return { person, memberships, programmeCode, counts, membership, roles, accept, choose, clear, signOut, may }
 })
