@@ -15,6 +15,7 @@ import { socketFor } from './socketPath.mjs'
  * Starts a private MariaDB on loopback, or finds it already running: its own data folder, port and socket, no option files read.
  * @param options.folder holds data/, the log, the pid and the port; made when missing
  * @param options.port preferred port; the one used last time wins, and the next free one is taken when it is not free
+ * @param options.isPortFixed fails instead of taking another port than last time
  * @param options.bufferPool size of the buffer pool, as MariaDB writes it (256M, 1G)
  * @param options.isDurable false gives up the flush at each commit (tests): survives a killed server, not a power cut
  * @returns { folder, port, socket, pid, wasStarted }
@@ -43,7 +44,7 @@ export async function administer(server, sql) {
   return await capture(client, ['--no-defaults', '--protocol=socket', `--socket=${server.socket}`, '--user=root', '--batch', '--skip-column-names'], { input: sql })
 }
 
-async function startLocked({ folder, port, bufferPool, isDurable = true, say }) {
+async function startLocked({ folder, port, bufferPool, isDurable = true, isPortFixed = false, say }) {
   const running = runningMariadb(folder)
   if (running !== null) {
     await untilAnswering(running)
@@ -54,6 +55,7 @@ async function startLocked({ folder, port, bufferPool, isDurable = true, say }) 
   const wanted = Number(readIfThere(join(folder, 'port')) ?? port)
   for (let first = wanted; ; first += 1) {
     const chosen = await nextFreePort(first)
+    if (chosen !== wanted && isPortFixed) throw new Failure(`The database cannot start again: its port ${wanted} is taken.`)
     if (chosen !== wanted) say(`Port ${wanted} is taken: the database uses ${chosen}.`)
     const server = launch({ program, folder, port: chosen, bufferPool, isDurable })
     const outcome = await untilAnswering(server)

@@ -19,15 +19,6 @@ export async function capture(program, args, { input, ...options } = {}) {
   return stdout
 }
 
-/** Runs a program with the terminal's own output. Resolves with its exit code. */
-export function attend(program, args, options = {}) {
-  return new Promise((done, fail) => {
-    const child = spawn(program, args, { stdio: ['ignore', 'inherit', 'inherit'], ...options })
-    child.once('error', fail)
-    child.once('close', (code, signal) => done(code ?? `stopped by ${signal}`))
-  })
-}
-
 export function lastLines(text, count) {
   return text.trim().split('\n').slice(-count).map(line => line.trim()).join(' / ')
 }

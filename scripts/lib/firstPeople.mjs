@@ -1,0 +1,29 @@
+import { Failure } from './failure.mjs'
+import { runQuietly } from './children.mjs'
+import { lastLines } from './processes.mjs'
+import { isLoopback } from './settings.mjs'
+
+/**
+ * First start: demo data into an empty database, on loopback and unless LANTHORN_DEMO=0; otherwise a one-time link that makes the first administrator.
+ * @param env environment of the parts
+ * @returns { demoAccounts: [{ email, password, roles }], firstAdministratorLink: string | null }
+ * @throws Failure when this would show demo accounts beyond loopback
+ */
+export async function ensureFirstPeople({ settings, env, say }) {
+  const mayLoad = settings.wantsDemo && isLoopback(settings.host)
+  const demo = await runScript(['scripts/loadDemo.ts', ...(mayLoad ? [] : ['--look'])], env, 'The demo data could not be loaded.')
+  if (demo.accounts.length > 0 && !isLoopback(settings.host)) {
+    throw new Failure(`This database holds demo accounts, whose passwords are known: it is served on loopback only, not on ${settings.host}. Use another LANTHORN_DATA with LANTHORN_DEMO=0.`)
+  }
+  if (demo.loaded) say('Demo data loaded into the empty database.')
+  if (demo.people > 0) return { demoAccounts: demo.accounts, firstAdministratorLink: null }
+  const first = await runScript(['scripts/firstAdministrator.ts'], env, 'The link for the first administrator could not be made.')
+  return { demoAccounts: [], firstAdministratorLink: first.link }
+}
+
+/** Runs a TypeScript entry whose last line of output is JSON. */
+async function runScript(args, env, whatFailed) {
+  const { code, text } = await runQuietly({ args: ['--import', 'tsx', ...args], env })
+  if (code !== 0) throw new Failure(`${whatFailed} ${lastLines(text, 6)}`)
+  return JSON.parse(text.trim().split('\n').at(-1))
+}

@@ -1,0 +1,39 @@
+const steps = []
+let isStopping = false
+
+/** Registers what to undo when this command ends; the last one registered is undone first. */
+export function onStop(step) {
+  steps.push(step)
+}
+
+/** Undoes every step, each even when another fails. Returns false when it was already under way. */
+export async function stopAll() {
+  if (isStopping) return false
+  isStopping = true
+  for (const step of steps.toReversed()) {
+    try {
+      await step()
+    }
+    catch (error) {
+      console.error(error)
+      process.exitCode = 1
+    }
+  }
+  return true
+}
+
+export function hasBegunToStop() {
+  return isStopping
+}
+
+/** Ctrl-C, a closed terminal and a polite kill all stop what this command started, and nothing else. */
+export function stopOnSignals({ say, exitCode = 0 }) {
+  for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
+    process.on(signal, async () => {
+      if (isStopping) return
+      say('Stopping ...')
+      await stopAll()
+      process.exit(exitCode)
+    })
+  }
+}

@@ -1,0 +1,43 @@
+import { banner } from './lib/banner.mjs'
+import { ensureBuild } from './lib/build.mjs'
+import { stopChildren } from './lib/children.mjs'
+import { openDatabase } from './lib/database.mjs'
+import { runMain } from './lib/failure.mjs'
+import { ensureFirstPeople } from './lib/firstPeople.mjs'
+import { migrate } from './lib/migrations.mjs'
+import { ensureModules } from './lib/modules.mjs'
+import { claimFolderAndPort, requirePort } from './lib/oneStart.mjs'
+import { openMail, partEnvironment, startParts } from './lib/parts.mjs'
+import { say } from './lib/say.mjs'
+import { ensureSecrets } from './lib/secrets.mjs'
+import { readSettings } from './lib/settings.mjs'
+import { onStop, stopAll, stopOnSignals } from './lib/stopping.mjs'
+
+async function start() {
+  const settings = readSettings({ port: 3000, data: '.data', output: '.output', build: '.nuxt', databasePort: 33_306 })
+  stopOnSignals({ say })
+  onStop(() => stopChildren())
+  await claimFolderAndPort(settings)
+  await ensureModules(say)
+  const secrets = ensureSecrets(settings.data)
+  const { databaseUrl, migrationUrl } = await openDatabase({ settings, secrets, say })
+  const migrated = await migrate({ databaseUrl, migrationUrl })
+  if (migrated.length > 0) say(`Database brought up to date (${migrated.length} ${migrated.length === 1 ? 'change' : 'changes'}).`)
+  await ensureBuild(settings, say)
+  const smtpUrl = await openMail({ settings, say })
+  const env = partEnvironment({ settings, secrets, databaseUrl, smtpUrl })
+  const people = await ensureFirstPeople({ settings, env, say })
+  await requirePort(settings)
+  const { address } = await startParts({ settings, env, say })
+  say(banner({ ...people, address, mailFolder: settings.smtpUrl === null ? settings.mail : null }))
+}
+
+await runMain(async () => {
+  try {
+    await start()
+  }
+  catch (error) {
+    await stopAll()
+    throw error
+  }
+})
