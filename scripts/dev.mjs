@@ -1,7 +1,6 @@
 import { banner } from './lib/banner.mjs'
 import { stopChildren } from './lib/children.mjs'
 import { openDatabase } from './lib/database.mjs'
-import { runMain } from './lib/failure.mjs'
 import { ensureFirstPeople } from './lib/firstPeople.mjs'
 import { migrate } from './lib/migrations.mjs'
 import { ensureModules } from './lib/modules.mjs'
@@ -10,7 +9,7 @@ import { keepParts, openMail, partEnvironment } from './lib/parts.mjs'
 import { say } from './lib/say.mjs'
 import { ensureSecrets } from './lib/secrets.mjs'
 import { readSettings } from './lib/settings.mjs'
-import { onStop, stopAll, stopOnSignals } from './lib/stopping.mjs'
+import { onStop, runUntilStopped, stopOnSignals } from './lib/stopping.mjs'
 
 async function develop() {
   const settings = readSettings({ port: 3100, data: '.data/dev', output: '.output-dev', build: '.nuxt', databasePort: 33_316 })
@@ -35,12 +34,4 @@ async function develop() {
   say(banner({ ...people, address, mailFolder: settings.smtpUrl === null ? settings.mail : null }))
 }
 
-await runMain(async () => {
-  try {
-    await develop()
-  }
-  catch (error) {
-    await stopAll()
-    throw error
-  }
-})
+await runUntilStopped(develop)

@@ -2,7 +2,6 @@ import { banner } from './lib/banner.mjs'
 import { ensureBuild } from './lib/build.mjs'
 import { stopChildren } from './lib/children.mjs'
 import { openDatabase } from './lib/database.mjs'
-import { runMain } from './lib/failure.mjs'
 import { ensureFirstPeople } from './lib/firstPeople.mjs'
 import { migrate } from './lib/migrations.mjs'
 import { ensureModules } from './lib/modules.mjs'
@@ -11,7 +10,7 @@ import { openMail, partEnvironment, startParts } from './lib/parts.mjs'
 import { say } from './lib/say.mjs'
 import { ensureSecrets } from './lib/secrets.mjs'
 import { readSettings } from './lib/settings.mjs'
-import { onStop, stopAll, stopOnSignals } from './lib/stopping.mjs'
+import { onStop, runUntilStopped, stopOnSignals } from './lib/stopping.mjs'
 
 async function start() {
   const settings = readSettings({ port: 3000, data: '.data', output: '.output', build: '.nuxt', databasePort: 33_306 })
@@ -32,12 +31,4 @@ async function start() {
   say(banner({ ...people, address, mailFolder: settings.smtpUrl === null ? settings.mail : null }))
 }
 
-await runMain(async () => {
-  try {
-    await start()
-  }
-  catch (error) {
-    await stopAll()
-    throw error
-  }
-})
+await runUntilStopped(start)

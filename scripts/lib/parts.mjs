@@ -61,7 +61,7 @@ function logIn(settings, name) {
 async function untilAnswering(address, web, log) {
   const end = Date.now() + 120_000
   while (Date.now() < end && !hasBegunToStop()) {
-    if (await answers(address)) return
+    if (await answers(`${address}/api/health`)) return
     if (web.hasEnded) throw new Failure(`The web server ended before it answered; its log: ${log}`)
     await delay(150)
   }
@@ -72,7 +72,7 @@ async function answers(address) {
   try {
     const response = await fetch(address, { redirect: 'manual', signal: AbortSignal.timeout(20_000) })
     await response.arrayBuffer()
-    return true
+    return response.ok
   }
   catch (error) {
     if (error.name === 'TimeoutError' || error.cause?.code !== undefined) return false

@@ -1,3 +1,5 @@
+import { Failure } from './failure.mjs'
+
 const steps = []
 let isStopping = false
 
@@ -35,5 +37,22 @@ export function stopOnSignals({ say, exitCode = 0 }) {
       await stopAll()
       process.exit(exitCode)
     })
+  }
+}
+
+/**
+ * Runs a command that stays up until it is stopped. When it cannot come up, what it had started is stopped and the reason is said:
+ * one line for what the person can put right, else the whole error.
+ */
+export async function runUntilStopped(main) {
+  try {
+    await main()
+  }
+  catch (error) {
+    // An error met while stopping is the stop itself, seen from the step it cut short.
+    if (isStopping) return
+    console.error(error instanceof Failure ? error.message : error)
+    await stopAll()
+    process.exit(1)
   }
 }
