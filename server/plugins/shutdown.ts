@@ -1,0 +1,5 @@
+import { closeDeps } from '../utils/deps'
+
+export default defineNitroPlugin((nitro) => {
+  nitro.hooks.hook('close', closeDeps)
+})

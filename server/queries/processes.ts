@@ -1,0 +1,16 @@
+import type { Knex } from 'knex'
+
+export interface Beat { name: string, role: 'web' | 'worker', startedAt: Date, engine: unknown }
+
+/** Says that a process is alive, by the database's clock. */
+export async function beat(db: Knex, one: Beat): Promise<void> {
+  const changed = await db('process_beat').where({ name: one.name }).update({ seen_at: db.raw('NOW(6)') })
+  if (changed === 0) await db('process_beat').insert({ name: one.name, role: one.role, started_at: one.startedAt, seen_at: db.raw('NOW(6)'), engine: JSON.stringify(one.engine) })
+  await db('process_beat').whereRaw('seen_at < DATE_SUB(NOW(6), INTERVAL 1 DAY)').delete()
+}
+
+export async function listProcesses(db: Knex) {
+  const rows = await db('process_beat').orderBy('role').orderBy('name')
+    .select('name', 'role', 'started_at', 'seen_at', 'engine', db.raw('TIMESTAMPDIFF(SECOND, seen_at, NOW(6)) AS silent_s')) as { name: string, role: 'web' | 'worker', started_at: Date, seen_at: Date, engine: string, silent_s: number }[]
+  return rows.map(row => ({ name: row.name, role: row.role, startedAt: row.started_at, seenAt: row.seen_at, silent_s: Number(row.silent_s), engine: JSON.parse(row.engine) as Record<string, string> }))
+}

@@ -1,0 +1,34 @@
+import { MEASUREMENTS } from '../../shared/measurements/index'
+import { systemClock } from '../platform/clock'
+import { openDatabase } from '../platform/database'
+import type { Deps } from '../platform/deps'
+import { randomIds } from '../platform/ids'
+import { scryptPasswords } from '../platform/passwords'
+import { folderStorage } from '../platform/storage'
+
+let deps: Deps | undefined
+
+/** The one set of dependencies of this process, from the environment. @throws Error naming the variable that is missing */
+export function useDeps(): Deps {
+  deps ??= {
+    db: openDatabase(setting('DATABASE_URL')),
+    clock: systemClock,
+    ids: randomIds,
+    storage: folderStorage(setting('LANTHORN_STORAGE')),
+    passwords: scryptPasswords(),
+    kinds: MEASUREMENTS,
+    origin: process.env.LANTHORN_ORIGIN ?? `http://${process.env.HOST ?? '127.0.0.1'}:${process.env.PORT ?? '3000'}`,
+  }
+  return deps
+}
+
+export async function closeDeps(): Promise<void> {
+  await deps?.db.destroy()
+  deps = undefined
+}
+
+function setting(name: string): string {
+  const value = process.env[name]
+  if (!value) throw new Error(`${name} is not set; npm start sets it.`)
+  return value
+}
