@@ -40,7 +40,7 @@ export function storedUnit(dimension: Dimension): Unit {
 /**
  * Finds the unit that a text names.
  *
- * Symbols are compared as they stand, because case carries meaning (mM, MM); spellings of four letters or more, without regard to case. The two
+ * Symbols are compared as they stand, because case carries meaning (mM, MM); lower-case words of three letters or more without regard to case. The two
  * code points of µ, the superscripts, the minus sign and a dot or a middle dot between factors are taken for their plain forms.
  */
 export function parseUnit(text: string, dimension: Dimension): UnitParse {
@@ -95,6 +95,6 @@ function plainForm(text: string): string {
 
 function isSame(spelling: string, wanted: string): boolean {
   if (spelling === wanted) return true
-  const isWord = /^[a-z ]{4,}$/i
+  const isWord = /^[a-z ]{3,}$/
   return isWord.test(spelling) && spelling.toLowerCase() === wanted.toLowerCase()
 }
