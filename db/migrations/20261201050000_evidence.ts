@@ -17,10 +17,10 @@ export async function up(knex: Knex): Promise<void> {
     ${within('complex_id', 'complex')}, ${within('batch_id', 'batch')}, ${within('fit_id', 'fit')}, ${within('record_id', 'record')}, ${within('batch_version_id', 'batch_version')}`)
   await createTable(knex, 'check_event', `${ID}, ${PROGRAMME},
     fit_id BINARY(16) NULL, record_id BINARY(16) NULL, batch_version_id BINARY(16) NULL, subject_id BINARY(16) AS (COALESCE(fit_id, record_id, batch_version_id)) PERSISTENT, seq INT NOT NULL,
-    event ENUM('waiting','signed','returned','recalled','withdrawn') NOT NULL, comment TEXT NOT NULL, person_id BINARY(16) NOT NULL, at DATETIME(6) NOT NULL,
+    event ENUM('waiting','firstSigned','signed','returned','recalled','withdrawn') NOT NULL, comment TEXT NOT NULL, person_id BINARY(16) NOT NULL, at DATETIME(6) NOT NULL,
     ${OWNED_KEY}, UNIQUE KEY step (subject_id, seq), ${within('fit_id', 'fit')}, ${within('record_id', 'record')}, ${within('batch_version_id', 'batch_version')}, ${person('person_id')}`)
   await createTable(knex, 'check_current', `
-    subject_id BINARY(16) NOT NULL, ${PROGRAMME}, subject_kind ENUM('fit','record','batchVersion') NOT NULL, state ENUM('waiting','signed','returned','recalled','withdrawn') NOT NULL,
+    subject_id BINARY(16) NOT NULL, ${PROGRAMME}, subject_kind ENUM('fit','record','batchVersion') NOT NULL, state ENUM('waiting','firstSigned','signed','returned','recalled','withdrawn') NOT NULL,
     seq INT NOT NULL, person_id BINARY(16) NOT NULL, since DATETIME(6) NOT NULL,
     PRIMARY KEY (subject_id), KEY queue (programme_id, state, since), FOREIGN KEY (programme_id) REFERENCES programme (id), ${person('person_id')}`)
   await grantMutable(knex, 'check_current')

@@ -21,7 +21,7 @@ export const EvidenceItemDto = z.object({
   covarianceGroup: CovarianceGroup.nullable(),
   detail: z.record(z.string(), z.union([z.number(), z.string(), z.boolean(), z.null(), z.array(z.number())])),
   signed: z.boolean(),
-  checkState: z.enum(['draft', 'waiting', 'signed', 'returned', 'recalled', 'withdrawn']),
+  checkState: z.enum(['draft', 'waiting', 'firstSigned', 'signed', 'returned', 'recalled', 'withdrawn']),
   origin: EvidenceOrigin,
 })
 export type EvidenceItemDto = z.output<typeof EvidenceItemDto>
