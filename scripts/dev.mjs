@@ -12,7 +12,7 @@ import { readSettings } from './lib/settings.mjs'
 import { onStop, runUntilStopped, stopOnSignals } from './lib/stopping.mjs'
 
 async function develop() {
-  const settings = readSettings({ port: 3100, data: '.data/dev', output: '.output-dev', build: '.nuxt', databasePort: 33_316 })
+  const settings = readSettings({ port: 3100, data: '.data/dev', output: '.output-dev', build: '.nuxt-dev', databasePort: 33_316 })
   stopOnSignals({ say })
   onStop(() => stopChildren())
   await claimFolderAndPort(settings)
@@ -20,7 +20,7 @@ async function develop() {
   const secrets = ensureSecrets(settings.data)
   const { databaseUrl, migrationUrl } = await openDatabase({ settings, secrets, say })
   await migrate({ databaseUrl, migrationUrl })
-  const smtpUrl = await openMail({ settings, say })
+  const smtpUrl = await openMail({ settings, say, onStop })
   const env = {
     ...partEnvironment({ settings, secrets, databaseUrl, smtpUrl }),
     NODE_ENV: 'development', LANTHORN_OUTPUT_DIR: settings.output, LANTHORN_BUILD_DIR: settings.build,
@@ -30,7 +30,7 @@ async function develop() {
     web: ['node_modules/nuxt/bin/nuxt.mjs', 'dev', '--no-fork', '--host', settings.host, '--port', String(settings.port)],
     worker: ['node_modules/tsx/dist/cli.mjs', 'watch', '--clear-screen=false', 'server/worker/main.ts'],
   }
-  const { address } = await keepParts({ settings, env, say, args })
+  const { address } = await keepParts({ settings, env, say, onStop, args })
   say(banner({ ...people, address, mailFolder: settings.smtpUrl === null ? settings.mail : null }))
 }
 

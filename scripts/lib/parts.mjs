@@ -3,7 +3,7 @@ import { setTimeout as delay } from 'node:timers/promises'
 import { Failure } from './failure.mjs'
 import { keepRunning } from './keeper.mjs'
 import { isPortFree, nextFreePort } from './ports.mjs'
-import { hasBegunToStop, onStop } from './stopping.mjs'
+import { hasBegunToStop } from './stopping.mjs'
 
 /** Environment of the web and worker processes. */
 export function partEnvironment({ settings, secrets, databaseUrl, smtpUrl }) {
@@ -12,6 +12,7 @@ export function partEnvironment({ settings, secrets, databaseUrl, smtpUrl }) {
     NODE_ENV: 'production',
     PORT: String(settings.port),
     HOST: settings.host,
+    LANTHORN_ORIGIN: process.env.LANTHORN_ORIGIN || addressOf(settings),
     NITRO_PORT: String(settings.port),
     NITRO_HOST: settings.host,
     NITRO_SHUTDOWN_TIMEOUT: '5000',
@@ -28,7 +29,7 @@ export function partEnvironment({ settings, secrets, databaseUrl, smtpUrl }) {
 }
 
 /** The mail server to send through: the one of SMTP_URL, else a catcher on loopback that keeps each message as a file. */
-export async function openMail({ settings, say }) {
+export async function openMail({ settings, say, onStop }) {
   if (settings.smtpUrl !== null) return settings.smtpUrl
   const port = await nextFreePort(settings.port + 1_000 > 60_000 ? 20_000 : settings.port + 1_000)
   const command = () => ({ args: ['scripts/mailCatcher.mjs', String(port), settings.mail] })
@@ -38,20 +39,28 @@ export async function openMail({ settings, say }) {
   return `smtp://127.0.0.1:${port}`
 }
 
-/** Starts web and worker from the built output and waits until the web process answers. */
-export async function startParts({ settings, env, say }) {
-  const args = { web: [join(settings.output, 'server/index.mjs')], worker: [join(settings.output, 'server/worker.mjs')] }
-  return await keepParts({ settings, env, say, args })
+/** The built web server and worker, as arguments of node. */
+export function builtParts({ output }) {
+  return { web: [join(output, 'server/index.mjs')], worker: [join(output, 'server/worker.mjs')] }
 }
 
-export async function keepParts({ settings, env, say, args }) {
+/**
+ * Keeps web and worker running and waits until the web process answers.
+ * @param run.args { web, worker }: what node is to run for each
+ * @returns { web, worker, address }
+ */
+export async function keepParts({ settings, env, say, args, onStop }) {
   const worker = keepRunning({ name: 'worker', command: () => ({ args: args.worker, env }), log: logIn(settings, 'worker'), say })
   onStop(worker.stop)
   const web = keepRunning({ name: 'web server', command: () => ({ args: args.web, env }), log: logIn(settings, 'web'), say })
   onStop(web.stop)
-  const address = `http://${settings.host.includes(':') ? `[${settings.host}]` : settings.host}:${settings.port}`
+  const address = addressOf(settings)
   await untilAnswering(address, web, logIn(settings, 'web'))
   return { web, worker, address }
+}
+
+function addressOf({ host, port }) {
+  return `http://${host.includes(':') ? `[${host}]` : host}:${port}`
 }
 
 function logIn(settings, name) {

@@ -1,0 +1,1 @@
+export { anyFreePort } from '../../scripts/lib/ports.mjs'

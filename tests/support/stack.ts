@@ -1,0 +1,71 @@
+import { mkdirSync, mkdtempSync, rmSync } from 'node:fs'
+import { join } from 'node:path'
+import { ensureBuild } from '../../scripts/lib/build.mjs'
+import { ensureFirstPeople } from '../../scripts/lib/firstPeople.mjs'
+import { builtParts, keepParts, openMail, partEnvironment } from '../../scripts/lib/parts.mjs'
+import { fromRoot } from '../../scripts/lib/paths.mjs'
+import { ensureSecrets } from '../../scripts/lib/secrets.mjs'
+import { makeTestSchema } from '../../scripts/lib/testSchema.mjs'
+import { anyFreePort } from './ports'
+import { testServer } from './testServer'
+
+type Part = 'web' | 'worker'
+
+/** The whole product on its own schema, ports, storage and mail folder. */
+export interface Stack {
+  baseURL: string
+  databaseUrl: string
+  databaseMigrationUrl: string
+  /** Each caught message as <time>.json ({ receivedAt, from, to, messageId, subject, text, html }) and <time>.eml. */
+  mailFolder: string
+  storageFolder: string
+  /** The environment its processes run in. */
+  env: Record<string, string>
+  /** Ends a process by force, as a power cut would; it comes back by itself. */
+  kill: (part: Part) => void
+  stop: () => Promise<void>
+}
+
+/** Starts the built product for tests. LANTHORN_OUTPUT_DIR names a build to take as it is; otherwise one is made when sources changed. */
+export async function startStack({ withDemo }: { withDemo: boolean }): Promise<Stack> {
+  const undo: Array<() => unknown> = []
+  const stop = async () => {
+    for (const step of undo.splice(0).reverse()) await step()
+  }
+  try {
+    return { ...await start(withDemo, step => undo.push(step)), stop }
+  }
+  catch (error) {
+    await stop()
+    throw error
+  }
+}
+
+async function start(withDemo: boolean, onStop: (step: () => unknown) => void): Promise<Omit<Stack, 'stop'>> {
+  const settings = await makeSettings()
+  onStop(() => rmSync(settings.data, { recursive: true, force: true }))
+  const say = (line: string) => process.stderr.write(`${line}\n`)
+  if (process.env.LANTHORN_OUTPUT_DIR === undefined) await ensureBuild(settings, say)
+  const schema = await makeTestSchema(await testServer())
+  onStop(schema.drop)
+  const smtpUrl = await openMail({ settings, say, onStop })
+  const env = partEnvironment({ settings, secrets: ensureSecrets(settings.data), databaseUrl: schema.databaseUrl, smtpUrl })
+  if (withDemo) await ensureFirstPeople({ settings, env, say })
+  const { web, worker, address } = await keepParts({ settings, env, say, onStop, args: builtParts(settings) })
+  const kill = (part: Part) => {
+    const { pid } = { web, worker }[part]
+    if (pid !== null) process.kill(pid, 'SIGKILL')
+  }
+  const { databaseUrl, databaseMigrationUrl } = schema
+  return { baseURL: address, databaseUrl, databaseMigrationUrl, mailFolder: settings.mail, storageFolder: settings.storage, env, kill }
+}
+
+async function makeSettings() {
+  const stacks = fromRoot('.data/test-stacks')
+  mkdirSync(stacks, { recursive: true })
+  const data = mkdtempSync(join(stacks, 'stack-'))
+  return {
+    port: await anyFreePort(), host: '127.0.0.1', data, storage: join(data, 'files'), mail: join(data, 'mail'), smtpUrl: null, wantsDemo: true,
+    output: process.env.LANTHORN_OUTPUT_DIR ?? fromRoot('.output-try'), build: fromRoot('.nuxt-try'),
+  }
+}
