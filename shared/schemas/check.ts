@@ -41,3 +41,5 @@ export type CheckDto = z.output<typeof CheckDto>
 
 export const QueueItemDto = CheckSubjectDto.extend({ submittedBy: z.string(), flags: z.number(), mine: z.boolean() })
 export type QueueItemDto = z.output<typeof QueueItemDto>
+
+export const CheckStepDone = z.object({ state: z.enum(CHECK_STATES), seq: z.number() })
