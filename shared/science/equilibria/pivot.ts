@@ -12,6 +12,18 @@ export interface PivotBasis {
   /** Balance k, coefficient of species j, at [k * m + j]; identity on the pivots. */
   readonly rows: Float64Array
   readonly totals: Float64Array
+  /** Index of the pivot species of each row. */
+  readonly pivots: Int32Array
+}
+
+/** True while no species of a row is more than ten times its pivot: the basis then still serves. */
+export function basisServes(basis: PivotBasis, c: Float64Array): boolean {
+  const m = c.length
+  for (let k = 0; k < basis.pivots.length; k++) {
+    const ceiling = 10 * c[basis.pivots[k]!]!
+    for (let j = 0; j < m; j++) if (c[j]! > ceiling && Math.abs(basis.rows[k * m + j]!) > 1e-9) return false
+  }
+  return true
 }
 
 /** Rewrites the balances on pivots chosen by falling concentration. `order` lists species by falling concentration. */
@@ -20,6 +32,7 @@ export function pivotBasis(powers: Float64Array, totals: Float64Array, order: re
   const m = n === 0 ? 0 : powers.length / n
   const rows = Float64Array.from(powers)
   const right = Float64Array.from(totals)
+  const pivots = new Int32Array(n)
   let done = 0
   for (const column of order) {
     if (done === n) break
@@ -27,9 +40,10 @@ export function pivotBasis(powers: Float64Array, totals: Float64Array, order: re
     if (row < 0) continue
     swapRows(rows, right, { a: row, b: done, m })
     eliminate(rows, right, { pivot: done, column, n, m })
+    pivots[done] = column
     done++
   }
-  return { rows, totals: right }
+  return { rows, totals: right, pivots }
 }
 
 /** Row at or below `from` with the largest entry in a column; −1 where all are zero (a dependent species). */

@@ -7,7 +7,7 @@
  *
  * @source convexity: A. R. Shapiro & L. S. Shapley, J. SIAM 13, 353 (1965) (from memory).
  */
-import { pivotBasis } from './pivot'
+import { basisServes, pivotBasis, type PivotBasis } from './pivot'
 import type { CompiledSystem } from './system'
 
 /** Largest relative error of a balance that is accepted. */
@@ -45,17 +45,23 @@ interface State {
 export function solveSystem(system: CompiledSystem, start?: Float64Array): Speciation | SpeciationRefused {
   const n = system.unknowns.length
   let state = stateAt(system, start && start.length === n ? Float64Array.from(start) : firstGuess(system))
+  let basis = basisFor(system, state.c)
+  let settled = false
   for (let iteration = 0; iteration <= ITERATION_LIMIT; iteration++) {
-    const step = newtonStep(system, state)
+    if (settled || !basisServes(basis, state.c)) basis = basisFor(system, state.c)
+    const step = newtonStep(basis, state)
     if (step === null) break
-    if (step.rowError <= BALANCE_TOLERANCE / 4 && balanceError(system, state.c) <= BALANCE_TOLERANCE) return speciation(system, state, iteration)
+    // the verdict is passed on a basis chosen at the solution: an older one carries rounding of its own in its totals
+    const met = step.rowError <= BALANCE_TOLERANCE / 4
+    if (met && settled && balanceError(system, state.c) <= BALANCE_TOLERANCE) return speciation(system, state, iteration)
+    settled = step.rowError <= 1e-6
     const next = lineSearch(system, state, step)
     if (next === null) break
     if (next.u.some(x => x < LOWEST_LN_FREE)) return { ok: false, reason: 'totalsImpossible', message: 'no set of positive concentrations meets these totals' }
     state = next
   }
   // Rounding can hold a row just above the inner goal; the stated tolerance on every balance still decides.
-  const last = newtonStep(system, state)
+  const last = newtonStep(basisFor(system, state.c), state)
   if (last !== null && last.rowError <= BALANCE_TOLERANCE && balanceError(system, state.c) <= BALANCE_TOLERANCE) return speciation(system, state, ITERATION_LIMIT)
   return { ok: false, reason: 'notConverged', message: `the balances were not met to ${BALANCE_TOLERANCE} within ${ITERATION_LIMIT} steps` }
 }
@@ -102,12 +108,14 @@ interface Step {
   readonly rowError: number
 }
 
+function basisFor(system: CompiledSystem, c: Float64Array): PivotBasis {
+  return pivotBasis(system.powers, system.totals_M, Array.from(c.keys()).sort((a, b) => c[b]! - c[a]!))
+}
+
 /** One Newton step in the pivot basis, carried back to the components; null where the equations are singular. */
-function newtonStep(system: CompiledSystem, state: State): Step | null {
+function newtonStep({ rows, totals }: PivotBasis, state: State): Step | null {
   const n = state.u.length
   const m = state.c.length
-  const order = Array.from(state.c.keys()).sort((a, b) => state.c[b]! - state.c[a]!)
-  const { rows, totals } = pivotBasis(system.powers, system.totals_M, order)
   const gap = new Float64Array(n)
   const hessian = new Float64Array(n * n)
   let rowError = 0
