@@ -39,6 +39,7 @@ export const PERMISSIONS = {
   'fit.repeat': { ...none, chemist: 'programme', physicist: 'programme' },
   'fit.exclude': { ...none, chemist: 'programme', physicist: 'programme' },
   'check.queue': { ...none, physicist: 'programme' },
+  'check.see': staff,
   'check.submit': { ...none, chemist: 'programme' },
   'check.sign': { ...none, physicist: 'programme' },
   'check.return': { ...none, physicist: 'programme' },
