@@ -7,7 +7,7 @@ const SCHEMA = 'lanthorn'
 
 /**
  * The database that the settings name: the server of DATABASE_URL as it is, else a private one in the data folder, started here and stopped with this command.
- * @returns { databaseUrl, migrationUrl } for the application's and the owner's account
+ * @returns databaseUrl and migrationUrl: connections of the application's and the owner's account
  */
 export async function openDatabase({ settings, secrets, say }) {
   if (settings.databaseUrl !== null) {

@@ -1,15 +1,19 @@
+import { existsSync } from 'node:fs'
+import { join } from 'node:path'
 import { Failure } from './failure.mjs'
 import { runQuietly } from './children.mjs'
+import { root } from './paths.mjs'
 import { lastLines } from './processes.mjs'
 import { isLoopback } from './settings.mjs'
 
 /**
  * First start: demo data into an empty database, on loopback and unless LANTHORN_DEMO=0; otherwise a one-time link that makes the first administrator.
  * @param env environment of the parts
- * @returns { demoAccounts: [{ email, password, roles }], firstAdministratorLink: string | null }
+ * @returns demoAccounts (email, password and roles of each) and firstAdministratorLink (text or null)
  * @throws Failure when this would show demo accounts beyond loopback
  */
 export async function ensureFirstPeople({ settings, env, say }) {
+  if (!['loadDemo.ts', 'firstAdministrator.ts'].every(file => existsSync(join(root, 'scripts', file)))) return { demoAccounts: [], firstAdministratorLink: null }
   const mayLoad = settings.wantsDemo && isLoopback(settings.host)
   const demo = await runScript(['scripts/loadDemo.ts', ...(mayLoad ? [] : ['--look'])], env, 'The demo data could not be loaded.')
   if (demo.accounts.length > 0 && !isLoopback(settings.host)) {

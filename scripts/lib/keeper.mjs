@@ -13,7 +13,7 @@ const STEADY_MS = 60_000
  * What it writes goes to a log; lines on its error stream are shown as well.
  * @param part.name how to call it on screen
  * @param part.command () => { args, env }, asked anew at each start
- * @returns { stop, pid }
+ * @returns stop(), the present pid, and whether the present process has ended
  */
 export function keepRunning({ name, command, log, say, onEnd = () => {} }) {
   mkdirSync(dirname(log), { recursive: true })

@@ -18,7 +18,7 @@ import { socketFor } from './socketPath.mjs'
  * @param options.isPortFixed fails instead of taking another port than last time
  * @param options.bufferPool size of the buffer pool, as MariaDB writes it (256M, 1G)
  * @param options.isDurable false gives up the flush at each commit (tests): survives a killed server, not a power cut
- * @returns { folder, port, socket, pid, wasStarted }
+ * @returns folder, port, socket, pid and wasStarted (false: it was up already)
  */
 export function startMariadb(options) {
   mkdirSync(options.folder, { recursive: true, mode: 0o700 })

@@ -46,8 +46,8 @@ export function builtParts({ output }) {
 
 /**
  * Keeps web and worker running and waits until the web process answers.
- * @param run.args { web, worker }: what node is to run for each
- * @returns { web, worker, address }
+ * @param run.args web and worker: what node is to run for each
+ * @returns both as kept processes, and the address
  */
 export async function keepParts({ settings, env, say, args, onStop }) {
   const worker = keepRunning({ name: 'worker', command: () => ({ args: args.worker, env }), log: logIn(settings, 'worker'), say })

@@ -4,7 +4,7 @@ import { fromRoot } from './paths.mjs'
 
 /**
  * What the environment asks for, with the defaults of the command that reads it.
- * @param defaults { port, data, output, build, databasePort }
+ * @param defaults port, data, output, build, databasePort
  */
 export function readSettings(defaults, env = process.env) {
   const data = fromRoot(env.LANTHORN_DATA || defaults.data)

@@ -3,7 +3,7 @@ import { readIfThere } from './files.mjs'
 /**
  * What one vitest project came to, from its JSON report.
  * A file that could not be read, a run that ended badly without a failed test, and a project without any test each count as one failure.
- * @returns { passed, failed, skipped }
+ * @returns the three counts
  */
 export function countResults(reportPath, exitCode) {
   const text = readIfThere(reportPath)
