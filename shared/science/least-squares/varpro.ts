@@ -1,0 +1,163 @@
+import type { Model, Settings } from '../models/define'
+
+/** Best fit over the nonlinear parameter, the linear ones eliminated. */
+export interface Projection {
+  readonly tau: number
+  /** Coefficients of the basis functions. */
+  readonly linear: readonly number[]
+  /** Weighted residual sum of squares. */
+  readonly rss: number
+}
+
+/** A search prepared for one set of times: the grid of orthonormal basis vectors is computed once and serves every signal measured there. */
+export interface SeparableSearch {
+  /** @param y signal at the times of the search */
+  search: (y: ArrayLike<number>) => Projection
+  /** The same for one given τ. */
+  projectAt: (tau: number, y: ArrayLike<number>) => Projection
+}
+
+const GRID = 64
+const LOG_TOLERANCE = 1e-7
+
+/**
+ * Variable projection: for each τ the linear coefficients have a closed form, which leaves a search in one dimension, on a logarithmic grid and then
+ * by parabolas between the neighbours of its best point. No start values are needed.
+ * @param x times
+ * @param weights 1/σ per point; null for equal weights
+ * @returns null for a model without a separable part
+ * @source Golub & Pereyra, SIAM J. Numer. Anal. 10, 413 (1973)
+ */
+export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: ArrayLike<number> | null, settings: Settings): SeparableSearch | null {
+  const { separable } = model
+  if (!separable) return null
+  const k = separable.linear.length
+  const n = x.length
+  const limits = model.params[separable.nonlinear]!
+  const [low, high] = separable.range(x)
+  const from = Math.max(low, limits.min)
+  const ratio = Math.min(high, limits.max) / from
+  const phi = new Float64Array(k)
+  const weightAt = (i: number) => weights ? weights[i]! : 1
+  const fill = (tau: number, q: Float64Array) => {
+    for (let i = 0; i < n; i++) {
+      separable.basis(x[i]!, tau, settings, phi)
+      for (let c = 0; c < k; c++) q[c * n + i] = phi[c]! * weightAt(i)
+    }
+    return orthonormalise(q, n, k)
+  }
+  const taus = Array.from({ length: GRID }, (_, g) => from * ratio ** (g / (GRID - 1)))
+  const grid = taus.map((tau) => {
+    const q = new Float64Array(n * k)
+    fill(tau, q)
+    return q
+  })
+  const scratch = new Float64Array(n * k)
+  const projectAt = (tau: number, y: ArrayLike<number>): Projection => {
+    const r = fill(tau, scratch)
+    const { products, rest } = project(scratch, weighted(y, weightAt, n), n, k)
+    return { tau, linear: backSubstitute(r, products, k), rss: rest }
+  }
+  const search = (y: ArrayLike<number>): Projection => {
+    const wy = weighted(y, weightAt, n)
+    let best = 0
+    let least = Infinity
+    grid.forEach((q, g) => {
+      const { rest } = project(q, wy, n, k)
+      if (rest < least) {
+        least = rest
+        best = g
+      }
+    })
+    const objective = (logTau: number) => {
+      fill(Math.exp(logTau), scratch)
+      return project(scratch, wy, n, k).rest
+    }
+    const bracket = [best - 1, best, best + 1].map(g => Math.log(taus[Math.min(Math.max(g, 0), GRID - 1)]!)) as [number, number, number]
+    return projectAt(Math.exp(minimise(objective, bracket, least)), y)
+  }
+  return { search, projectAt }
+}
+
+function weighted(y: ArrayLike<number>, weightAt: (i: number) => number, n: number): Float64Array {
+  const wy = new Float64Array(n)
+  for (let i = 0; i < n; i++) wy[i] = y[i]! * weightAt(i)
+  return wy
+}
+
+/** Gram–Schmidt in place; a column that depends on those before it becomes zero. Returns R by row. */
+function orthonormalise(q: Float64Array, n: number, k: number): Float64Array {
+  const r = new Float64Array(k * k)
+  for (let c = 0; c < k; c++) {
+    let before = 0
+    for (let i = 0; i < n; i++) before += q[c * n + i]! ** 2
+    for (let b = 0; b < c; b++) {
+      let product = 0
+      for (let i = 0; i < n; i++) product += q[b * n + i]! * q[c * n + i]!
+      r[b * k + c] = product
+      for (let i = 0; i < n; i++) q[c * n + i]! -= product * q[b * n + i]!
+    }
+    let square = 0
+    for (let i = 0; i < n; i++) square += q[c * n + i]! ** 2
+    const isDependent = !(square > 1e-20 * before)
+    const length = isDependent ? 0 : Math.sqrt(square)
+    r[c * k + c] = length
+    for (let i = 0; i < n; i++) q[c * n + i] = isDependent ? 0 : q[c * n + i]! / length
+  }
+  return r
+}
+
+/** Products of y with the orthonormal columns, and the sum of squares they leave. */
+function project(q: Float64Array, y: Float64Array, n: number, k: number): { products: number[], rest: number } {
+  const products: number[] = []
+  for (let c = 0; c < k; c++) {
+    let product = 0
+    for (let i = 0; i < n; i++) product += q[c * n + i]! * y[i]!
+    products.push(product)
+  }
+  let rest = 0
+  for (let i = 0; i < n; i++) {
+    let left = y[i]!
+    for (let c = 0; c < k; c++) left -= products[c]! * q[c * n + i]!
+    rest += left * left
+  }
+  return { products, rest }
+}
+
+function backSubstitute(r: Float64Array, products: readonly number[], k: number): number[] {
+  const linear = new Array<number>(k).fill(0)
+  for (let c = k - 1; c >= 0; c--) {
+    let sum = products[c]!
+    for (let d = c + 1; d < k; d++) sum -= r[c * k + d]! * linear[d]!
+    linear[c] = r[c * k + c] === 0 ? 0 : sum / r[c * k + c]!
+  }
+  return linear
+}
+
+/**
+ * Minimum of a function between the outer points of a bracket: steps of successive parabolas, halving the larger side where a parabola fails.
+ * At the edge of the grid two points of the bracket coincide and the edge itself may be the answer.
+ */
+function minimise(objective: (x: number) => number, bracket: readonly [number, number, number], atMiddle: number): number {
+  let [low, best, high] = bracket
+  let value = atMiddle
+  let atLow = low === best ? value : objective(low)
+  let atHigh = high === best ? value : objective(high)
+  for (let turn = 0; turn < 60 && high - low > LOG_TOLERANCE; turn++) {
+    const left = best - low
+    const right = high - best
+    const numerator = left * left * (value - atHigh) - right * right * (value - atLow)
+    const denominator = 2 * (left * (value - atHigh) + right * (value - atLow))
+    let next = best - numerator / denominator
+    const isBad = !(next > low && next < high) || Math.abs(next - best) < LOG_TOLERANCE / 4 || turn % 4 === 3
+    if (isBad) next = left > right ? best - 0.38 * left : best + 0.38 * right
+    const found = objective(next)
+    if (found < value) {
+      if (next > best) [low, atLow] = [best, value]
+      else [high, atHigh] = [best, value];
+      [best, value] = [next, found]
+    } else if (next > best) [high, atHigh] = [next, found]
+    else [low, atLow] = [next, found]
+  }
+  return best
+}
