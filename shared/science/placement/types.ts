@@ -22,6 +22,7 @@ export interface EvidenceItem {
   readonly quantity: string
   readonly value: number
   readonly kind: ValueKind
+  /** Standard error, the shared scale error included. */
   readonly se: number | null
   readonly interval: Interval | null
   readonly unit: string
@@ -37,7 +38,7 @@ export interface EvidenceItem {
 
 /**
  * A shared source of error. `scaleFraction` is the relative standard error of a factor common to all members
- * (0 where there is none). `correlation` gives this value's correlation with other members of one fit, by evidence id.
+ * (0 where there is none); it is a part of each member's `se`, not an addition to it. `correlation` gives this value's correlation with other members of one fit, by evidence id.
  */
 export interface CovarianceGroup {
   readonly id: string
@@ -58,7 +59,7 @@ export interface AgentEvidence {
 export const PLACEMENT_QUANTITIES = [
   'r1_per_mM_s', 'r2_per_mM_s', 'workingConcentration_mM',
   'k0_per_s', 'k1_per_M_s', 'k2_per_M2_s', 'kZn_per_M_s', 'kCu_per_M_s', 'kCa_per_M_s',
-  'kZnH_per_M2_s', 'kCuH_per_M2_s', 'k3_per_s', 'kProton_per_M', 'kMetal_per_M',
+  'kZnH_per_M2_s', 'kCuH_per_M2_s', 'k1_per_s', 'k3_per_s', 'kProton_per_M', 'kMetal_per_M',
   'halfLifeAcid_s', 'zincPhosphateRatio',
   'logK', 'logKConditional', 'pM', 'freeMetal_frac', 'boundAtEquilibrium_frac',
 ] as const
