@@ -37,6 +37,8 @@ export default defineNuxtConfig({
   ],
   // Utilities load last, so that a class on an element may adjust a part of parts.css.
   tailwindcss: { cssPath: ['~/assets/css/tailwind.css', { injectPosition: 'last' }], config: tailwind, viewer: false },
+  // Who is signed in comes from /api/session, never from what a cookie says.
+  auth: { loadStrategy: 'none' },
   pinia: { storesDirs: ['stores/**'] },
   typescript: { strict: true, tsConfig: { compilerOptions: { noUncheckedIndexedAccess: true } } },
   sourcemap: { server: false, client: false },

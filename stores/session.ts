@@ -1,11 +1,6 @@
 import { defineStore } from 'pinia'
 import { can, type Actor, type Permission, type ProgrammeRole } from '#shared/permissions'
-
-export interface SessionPerson { personId: string, name: string, email: string, isAdministrator: boolean }
-export interface SessionMembership { programmeId: string, programmeCode: string, programmeName: string, roles: ProgrammeRole[] }
-/** What stands beside the words of the frame; null where the person may not know. */
-export interface SessionCounts { checks: number | null }
-export interface SessionView { person: SessionPerson, memberships: SessionMembership[], counts?: SessionCounts }
+import type { SessionAnswer, SessionCounts, SessionMembership, SessionPerson, SessionView } from '#shared/schemas/session'
 
 const NO_COUNTS: SessionCounts = { checks: null }
 
@@ -15,6 +10,8 @@ export const useSessionStore = defineStore('session', () => {
   const memberships = ref<SessionMembership[]>([])
   const programmeCode = ref<string | null>(null)
   const counts = ref<SessionCounts>(NO_COUNTS)
+  /** Whether the server was asked yet. */
+  const isLoaded = ref(false)
 
   const membership = computed(() => memberships.value.find(one => one.programmeCode === programmeCode.value) ?? null)
   const roles = computed<readonly ProgrammeRole[]>(() => membership.value?.roles ?? [])
@@ -22,10 +19,10 @@ export const useSessionStore = defineStore('session', () => {
     personId: person.value.personId, sessionId: '', name: person.value.name, isAdministrator: person.value.isAdministrator, memberships: memberships.value,
   })
 
-  function accept(view: SessionView): void {
+  function accept(view: Pick<SessionView, 'person' | 'memberships' | 'counts'>): void {
     person.value = view.person
     memberships.value = view.memberships
-    counts.value = view.counts ?? NO_COUNTS
+    counts.value = view.counts
     if (!membership.value) programmeCode.value = view.memberships[0]?.programmeCode ?? null
   }
   /** @returns false, and nothing changes, when the person is no member of that programme */
@@ -40,6 +37,14 @@ export const useSessionStore = defineStore('session', () => {
     programmeCode.value = null
     counts.value = NO_COUNTS
   }
+  /** Asks the server who is signed in. `programme`: the programme looked at, for what the frame counts there. */
+  async function load({ programme }: { programme?: string } = {}): Promise<SessionView | null> {
+    const { signedIn } = await useRequestFetch()<SessionAnswer>('/api/session', { query: programme ? { programme } : {} })
+    if (signedIn) accept(signedIn)
+    else clear()
+    isLoaded.value = true
+    return signedIn
+  }
   /** Ends the session on the server first; only then is the person forgotten here. */
   async function signOut(): Promise<void> {
     await useNuxtApp().$csrfFetch('/api/session', { method: 'DELETE' })
@@ -51,5 +56,5 @@ export const useSessionStore = defineStore('session', () => {
     return actor.value !== null && can(actor.value, permission, membership.value?.programmeId)
   }
 
-  return { person, memberships, programmeCode, counts, membership, roles, accept, choose, clear, signOut, may }
+  return { isLoaded, load, person, memberships, programmeCode, counts, membership, roles, accept, choose, clear, signOut, may }
 })

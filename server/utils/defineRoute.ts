@@ -83,10 +83,11 @@ function requireActor(event: H3Event, permission: Permission | 'public'): Actor 
   throw new AppError('notSignedIn', 'Sign in to go on.')
 }
 
-/** Bodies without a declared length slip past every limit, so they are refused. */
+/** Bodies without a declared length slip past every limit, so they are refused. Neither length nor encoding means no body (a plain DELETE). */
 function checkSize(event: H3Event, variant: Variant, maxBytes: number): void {
   if (variant !== 'json' && variant !== 'upload') return
   const text = getHeader(event, 'content-length')
+  if (text === undefined && getHeader(event, 'transfer-encoding') === undefined) return
   const length = Number(text)
   if (text === undefined || !Number.isInteger(length) || length < 0) throw new AppError('lengthRequired', 'The request must say its length.', { accepted: 'a Content-Length header' })
   if (length > maxBytes) throw new AppError('tooLarge', `The request is ${length} bytes long.`, { accepted: `at most ${maxBytes} bytes` })

@@ -1,0 +1,75 @@
+import { FetchError } from 'ofetch'
+import { v7 } from 'uuid'
+import type { ErrorCode } from '#shared/errors'
+
+/** Why a command was not done, as the screen shows it. `code` 'unreachable': no answer came, so it is not known whether it was done. */
+export interface CommandFailure {
+  code: ErrorCode | 'internal' | 'unreachable'
+  message: string
+  /** Path of the field at fault, as the form names it. */
+  field: string | null
+  accepted: string | null
+  /** Whatever else the server said: who and when, rows, seconds to wait. */
+  data: Record<string, unknown>
+}
+export type CommandAnswer<T> = { ok: true, value: T } | { ok: false, failure: CommandFailure }
+export interface CommandOptions { method?: 'POST' | 'PUT' | 'PATCH' | 'DELETE', body?: Record<string, unknown> | FormData | readonly unknown[] }
+
+interface ErrorAnswer { message?: string, data?: { code?: CommandFailure['code'], field?: string, accepted?: string } & Record<string, unknown> }
+
+/**
+ * Sends a command with the CSRF token and an Idempotency-Key of its own. The key stays the same while no answer came, so that pressing again after a
+ * lost connection cannot do it twice. A refusal is a value: `failure` holds the last one, for the form to show. When the session has ended meanwhile,
+ * the sign-in page follows.
+ */
+export function useCommand() {
+  const { $csrfFetch } = useNuxtApp()
+  const session = useSessionStore()
+  const route = useRoute()
+  const isPending = ref(false)
+  const failure = ref<CommandFailure | null>(null)
+  let unanswered: { request: string, key: string } | null = null
+
+  async function send<T>(url: string, { method = 'POST', body }: CommandOptions = {}): Promise<CommandAnswer<T>> {
+    const request = `${method} ${url} ${body instanceof FormData ? 'form' : JSON.stringify(body)}`
+    const key = unanswered?.request === request && !(body instanceof FormData) ? unanswered.key : v7()
+    unanswered = { request, key }
+    isPending.value = true
+    failure.value = null
+    try {
+      const value = await $csrfFetch<T>(url, { method, body: body as Record<string, unknown> | FormData | undefined, headers: { 'Idempotency-Key': key } })
+      unanswered = null
+      return { ok: true, value: value as T }
+    }
+    catch (error) {
+      if (!(error instanceof FetchError)) throw error
+      failure.value = readFailure(error)
+      if (failure.value.code !== 'unreachable') unanswered = null
+      if (failure.value.code === 'notSignedIn') await leave()
+      return { ok: false, failure: failure.value }
+    }
+    finally {
+      isPending.value = false
+    }
+  }
+
+  async function leave(): Promise<void> {
+    session.clear()
+    await navigateTo({ path: '/sign-in', query: { to: route.fullPath } })
+  }
+
+  return { send, isPending, failure, clear: () => { failure.value = null } }
+}
+
+/** What the server's answer says, or that none came. */
+export function readFailure(error: FetchError): CommandFailure {
+  if (error.statusCode === undefined) {
+    return { code: 'unreachable', message: 'The server did not answer, so it is not known whether this was done. Try again: it will not be done twice.', field: null, accepted: null, data: {} }
+  }
+  const answer = (error.data ?? {}) as ErrorAnswer
+  const { code, field, accepted, ...data } = answer.data ?? {}
+  return { code: code ?? codeOf(error.statusCode), message: answer.message ?? `The server refused this (${error.statusCode}).`, field: field ?? null, accepted: accepted ?? null, data }
+}
+
+/** Answers that no route of ours made: the CSRF check above all. */
+const codeOf = (status: number): CommandFailure['code'] => status === 403 ? 'notAllowed' : status === 404 ? 'notFound' : 'internal'
