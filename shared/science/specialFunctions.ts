@@ -3,7 +3,7 @@
  * Their common prefactors are written with the deviance and the error of Stirling's formula, which keeps relative accuracy for large arguments.
  * @source Loader, Fast and accurate computation of binomial probabilities (2000); Lentz's continued fractions as in Thompson & Barnett, J. Comput. Phys. 64, 490 (1986)
  */
-const HALF_LOG_TWO_PI = 0.91893853320467274178
+const HALF_LOG_TWO_PI = 0.9189385332046728
 const EPSILON = 2 ** -53
 const TINY = 1e-300
 

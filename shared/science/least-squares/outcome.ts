@@ -32,7 +32,7 @@ export interface FitDone {
   readonly correlation: readonly (readonly number[])[] | null
   /** Residual sum of squares in the unit of the signal squared, unweighted. */
   readonly rss: number
-  /** Σ((y − f)/σ)² / dof with the σ used; with an estimated σ it is s² in the unit of the signal squared; null when dof is 0. */
+  /** Σ((y − f)/σ)² / dof with the σ given or pooled; null with an estimated σ, where it says nothing, and when dof is 0. */
   readonly reducedChi2: number | null
   /** Standard deviation of one point used for the errors; null when each point had its own or none could be estimated. */
   readonly sigma: number | null
