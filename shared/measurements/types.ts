@@ -1,6 +1,7 @@
 import type { EvidenceDraft } from '../evidence/types'
 import type { NamedQuantity } from '../evidence/quantity'
 import type { FigureSpec } from '../schemas/figure'
+import type { Dimension } from '../science/units'
 
 /** What a column of an uploaded table can be. `role` says where its cells go; `stem` with the stored unit's suffix names the number in points. */
 export interface ColumnSpec {
@@ -8,13 +9,26 @@ export interface ColumnSpec {
   /** Name of the number in stored points, with the stored unit: 'ti_s', 'signal_au'. */
   field: string
   label: string
-  /** A dimension of shared/science/units, or 'text'. */
-  dimension: string
+  dimension: Dimension | 'text'
   role: 'tube' | 'agent' | 'batch' | 'conc' | 'concError' | 'x' | 'y' | 'sigma'
   /** Header words, lower case, as people write them; units in brackets are split off before matching. */
   synonyms: readonly string[]
   required: boolean
   help: string
+  /** Smallest number allowed, in the stored unit; with `above`, the number itself is not. */
+  min?: number
+  above?: number
+  /** Stem of the column whose error this one holds: it settles headers such as 'SD', and gives the unit where the header has none. */
+  follows?: string
+  /** A header word that settles a condition: 'T2 (ms)' says that T2 was measured. */
+  implies?: { key: string, words: Readonly<Record<string, string>> }
+}
+
+export interface ConditionChoice {
+  value: string
+  label: string
+  /** Words, lower case, that name this choice in a file. */
+  synonyms?: readonly string[]
 }
 
 export interface ConditionSpec {
@@ -22,11 +36,13 @@ export interface ConditionSpec {
   key: string
   label: string
   type: 'number' | 'choice' | 'text' | 'date'
-  dimension?: string
+  dimension?: Dimension
+  /** Condition that takes the part after ± in a file ('37.0 ± 0.2 °C'). */
+  sdKey?: string
   /** Unit the form shows; stored is the key's own. */
   shownUnit?: string
   required: boolean
-  choices?: readonly { value: string, label: string }[]
+  choices?: readonly ConditionChoice[]
   min?: number
   max?: number
   help: string

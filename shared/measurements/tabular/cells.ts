@@ -1,0 +1,55 @@
+import { toStored, type Unit } from '../../science/units'
+import type { ColumnSpec, UploadProblem } from '../types'
+import { parseNumberCell, type DecimalMark, type NumberCell } from './numberCell'
+import { blocks, quoted } from './problem'
+
+/** A cell that should hold a number, with its place in the file. */
+export interface ValueCell {
+  text: string
+  row: number
+  column: number
+  spec: ColumnSpec
+  /** null = not known yet: then the cell has no value, and one problem of the column says so. */
+  unit: Unit | null
+}
+
+/** Reads a cell into the stored unit; null where it is empty, unreadable (with a problem) or of unknown unit. */
+export function readCell(cell: ValueCell, decimal: DecimalMark, problems: UploadProblem[]): number | null {
+  const parsed = parseNumberCell(cell.text, decimal)
+  if (!parsed.ok) {
+    if (parsed.reason !== 'empty') problems.push(numberProblem(cell, parsed, decimal))
+    return null
+  }
+  if (cell.unit === null) return null
+  const value = toStored(parsed.value, cell.unit)
+  const outside = domainProblem(cell, value)
+  if (outside === null) return value
+  problems.push(outside)
+  return null
+}
+
+function numberProblem(cell: ValueCell, parsed: Extract<NumberCell, { ok: false }>, decimal: DecimalMark): UploadProblem {
+  const what = `${cell.spec.label}: ${quoted(cell.text)}`
+  const example = decimal === 'point' ? '1234.5' : '1234,5'
+  const accepted = `a number such as ${example} (decimal ${decimal}), or an empty cell where nothing was measured`
+  const where = { row: cell.row, column: cell.column }
+  if (parsed.reason === 'notFinite') return blocks('notFinite', `${what} is no finite number.`, accepted, where)
+  if (parsed.reason === 'otherDecimal') {
+    const other = decimal === 'point' ? 'comma' : 'point'
+    return blocks('otherDecimal', `${what} is written with a decimal ${other}, the rest of the file with a decimal ${decimal}.`, `${accepted}; or choose the decimal ${other} for the whole file`, where)
+  }
+  if (parsed.reason === 'grouped') return blocks('grouped', `${what} parts its thousands with points or commas.`, `${accepted}; thousands may be parted by spaces`, where)
+  if (parsed.reason === 'bound') return blocks('bound', `${what} is a bound, and a point must be a number.`, accepted, where)
+  return blocks('notNumber', `${what} is not a number.`, accepted, where)
+}
+
+function domainProblem({ spec, text, row, column }: ValueCell, value: number): UploadProblem | null {
+  const name = `${spec.label}: ${quoted(text)}`
+  if (spec.above !== undefined && value <= spec.above) {
+    return blocks('outOfDomain', `${name} is not above ${spec.above}.`, `${spec.label.toLowerCase()} above ${spec.above}, or an empty cell`, { row, column })
+  }
+  if (spec.min !== undefined && value < spec.min) {
+    return blocks('outOfDomain', `${name} is ${spec.min === 0 ? 'negative' : `below ${spec.min}`}.`, `${spec.label.toLowerCase()} of ${spec.min} or more`, { row, column })
+  }
+  return null
+}

@@ -1,0 +1,71 @@
+import { parseUnit, type Dimension, type Unit } from '../../science/units'
+import type { ColumnSpec } from '../types'
+
+/** What a head says: which column, and in which unit. */
+export interface HeaderMatch {
+  spec: ColumnSpec
+  /** null where the head names none. */
+  unit: Unit | null
+  /** Text in the place of the unit that is no unit of the column's dimension. */
+  unknownUnit: string | null
+}
+
+interface Reading { name: string, unit: string | null }
+
+const LOWERED = '₀₁₂₃₄₅₆₇₈₉'
+
+/** Lower case, one space for every run of spaces, underscores and dashes; lowered digits plain. */
+export function plainWords(text: string): string {
+  return [...text].map(sign => LOWERED.includes(sign) ? String(LOWERED.indexOf(sign)) : sign).join('')
+    .toLowerCase()
+    .replace(/^[\s#]+/, '')
+    .replace(/[\s_\-\u2010-\u2015]+/g, ' ')
+    .replace(/\s*[:=]\s*$/, '')
+    .replace(/\.$/, '')
+    .trim()
+}
+
+/** Every way in which a head can be split into name and unit: 'TI (ms)', 'TI [ms]', 'TI / ms', 'TI, ms', 'TI_ms', 'TI ms', 'TI'. */
+export function headerReadings(text: string): Reading[] {
+  const head = text.trim().replace(/\s*[:=]$/, '')
+  const readings: Reading[] = [{ name: head, unit: null }]
+  const bracket = /^(.*?)\s*[([]\s*([^()[\]]*(?:\([^()]*\))?[^()[\]]*)\s*[)\]]\s*$/.exec(head)
+  if (bracket) return [{ name: bracket[1] ?? '', unit: bracket[2] ?? '' }, ...readings]
+  for (const mark of [/ \/ /, /\//, /, ?/, / in /, /_per_/, /_/, / /]) {
+    for (const found of head.matchAll(new RegExp(mark, 'g'))) {
+      const unit = mark.source === '_per_' ? head.slice(found.index + 1) : head.slice(found.index + found[0].length)
+      readings.push({ name: head.slice(0, found.index), unit })
+    }
+  }
+  return readings
+}
+
+/**
+ * Finds the column that a head names, best reading first.
+ * @param present stems of columns that other heads name for certain; a column that follows one of them wins over others with the same words
+ */
+export function matchHeader(text: string, specs: readonly ColumnSpec[], present: readonly string[] = []): HeaderMatch | null {
+  if (text.trim() === '') return null
+  const ordered = [...specs].sort((a, b) => rank(a, present) - rank(b, present))
+  let fallback: HeaderMatch | null = null
+  for (const reading of headerReadings(text)) {
+    const name = plainWords(reading.name)
+    for (const spec of ordered.filter(candidate => candidate.synonyms.includes(name))) {
+      if (reading.unit === null || reading.unit === '') return { spec, unit: null, unknownUnit: null }
+      const unit = spec.dimension === 'text' ? null : findUnit(reading.unit, spec.dimension)
+      if (unit) return { spec, unit, unknownUnit: null }
+      fallback ??= { spec, unit: null, unknownUnit: spec.dimension === 'text' ? null : reading.unit }
+    }
+  }
+  return fallback
+}
+
+export function findUnit(text: string, dimension: Dimension): Unit | null {
+  const parsed = parseUnit(text, dimension)
+  return parsed.ok ? parsed.unit : null
+}
+
+function rank(spec: ColumnSpec, present: readonly string[]): number {
+  if (spec.follows === undefined) return 1
+  return present.includes(spec.follows) ? 0 : 2
+}
