@@ -8,7 +8,7 @@ import { withLock } from './locks.mjs'
 import { readyDataFolder } from './mariadbFolder.mjs'
 import { requireProgram } from './packages.mjs'
 import { isPortFree, nextFreePort } from './ports.mjs'
-import { capture, commandOf, lastLines, stopProcess } from './processes.mjs'
+import { capture, commandOf, lastLines, stopProcess, untilLetGo } from './processes.mjs'
 import { socketFor } from './socketPath.mjs'
 
 /**
@@ -41,7 +41,7 @@ export function runningMariadb(folder) {
 /** Runs statements as the server's own administrator: the account of the operating system that started it, over the socket. */
 export async function administer(server, sql) {
   const client = await requireProgram({ names: ['mariadb', 'mysql'], packageName: 'mariadb-client', say: () => {} })
-  return await capture(client, ['--no-defaults', '--protocol=socket', `--socket=${server.socket}`, '--user=root', '--batch', '--skip-column-names'], { input: sql })
+  return await capture(client, ['--no-defaults', '--protocol=socket', `--socket=${server.socket}`, '--user=root', '--default-character-set=utf8mb4', '--batch', '--skip-column-names'], { input: sql })
 }
 
 async function startLocked({ folder, port, bufferPool, isDurable = true, isPortFixed = false, say }) {
@@ -50,6 +50,8 @@ async function startLocked({ folder, port, bufferPool, isDurable = true, isPortF
     await untilAnswering(running)
     return running
   }
+  const killed = recordedPid(folder)
+  if (killed !== null) await untilLetGo(killed)
   const program = await requireProgram({ names: ['mariadbd', 'mysqld'], packageName: 'mariadb-server', say })
   await readyDataFolder({ folder, say })
   const wanted = Number(readIfThere(join(folder, 'port')) ?? port)
@@ -128,8 +130,13 @@ function lastWords(folder) {
 
 /** A pid counts only while it is a server of this very folder: numbers are used again. */
 function runningPid(folder) {
-  const pid = Number(readIfThere(join(folder, 'pid')))
-  if (!Number.isInteger(pid) || pid <= 0) return null
+  const pid = recordedPid(folder)
+  if (pid === null) return null
   const command = commandOf(pid)
   return command !== null && command.includes(`--datadir=${join(folder, 'data')}`) ? pid : null
+}
+
+function recordedPid(folder) {
+  const pid = Number(readIfThere(join(folder, 'pid')))
+  return Number.isInteger(pid) && pid > 0 ? pid : null
 }

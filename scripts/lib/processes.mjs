@@ -1,5 +1,5 @@
 import { spawn } from 'node:child_process'
-import { readFileSync } from 'node:fs'
+import { readdirSync, readFileSync } from 'node:fs'
 import { setTimeout as delay } from 'node:timers/promises'
 import { Failure } from './failure.mjs'
 
@@ -35,9 +35,15 @@ export function isAlive(pid) {
   }
 }
 
-/** The words a process was started with, or null when it has gone. A zombie counts as gone. */
+/**
+ * The words a process was started with; null when it has gone or only waits to be collected.
+ * Empty while it is dying: it no longer answers, but may still hold its ports and file locks for a moment.
+ */
 export function commandOf(pid) {
   try {
+    const state = readFileSync(`/proc/${pid}/stat`, 'utf8').replace(/^.*\) /s, '').charAt(0)
+    // A killed program of several threads is a zombie by its first thread while the others still let go.
+    if (state === 'X' || (state === 'Z' && readdirSync(`/proc/${pid}/task`).length === 1)) return null
     return readFileSync(`/proc/${pid}/cmdline`, 'utf8').split('\0').filter(word => word !== '')
   }
   catch (error) {
@@ -57,8 +63,7 @@ export async function stopProcess(pid, { signal = 'SIGTERM', patience_ms = 10_00
 }
 
 function isRunning(pid) {
-  const command = isAlive(pid) ? commandOf(pid) : null
-  return command !== null && command.length > 0
+  return isAlive(pid) && commandOf(pid) !== null
 }
 
 function send(pid, signal) {
@@ -68,6 +73,11 @@ function send(pid, signal) {
   catch (error) {
     if (error.code !== 'ESRCH') throw error
   }
+}
+
+/** Waits until a process that has been killed has let go of what it held. */
+export async function untilLetGo(pid) {
+  while (commandOf(pid)?.length === 0) await delay(20)
 }
 
 async function untilGone(pid, patience_ms) {
