@@ -13,16 +13,20 @@ import { isLoopback } from './settings.mjs'
  * @throws Failure when this would show demo accounts beyond loopback
  */
 export async function ensureFirstPeople({ settings, env, say }) {
-  if (!['loadDemo.ts', 'firstAdministrator.ts'].every(file => existsSync(join(root, 'scripts', file)))) return { demoAccounts: [], firstAdministratorLink: null }
+  if (!existsSync(join(root, 'scripts/loadDemo.ts'))) return { demoAccounts: [], firstAdministratorLink: await firstLink(env) }
   const mayLoad = settings.wantsDemo && isLoopback(settings.host)
   const demo = await runScript(['scripts/loadDemo.ts', ...(mayLoad ? [] : ['--look'])], env, 'The demo data could not be loaded.')
   if (demo.accounts.length > 0 && !isLoopback(settings.host)) {
     throw new Failure(`This database holds demo accounts, whose passwords are known: it is served on loopback only, not on ${settings.host}. Use another LANTHORN_DATA with LANTHORN_DEMO=0.`)
   }
   if (demo.loaded) say('Demo data loaded into the empty database.')
-  if (demo.people > 0) return { demoAccounts: demo.accounts, firstAdministratorLink: null }
-  const first = await runScript(['scripts/firstAdministrator.ts'], env, 'The link for the first administrator could not be made.')
-  return { demoAccounts: [], firstAdministratorLink: first.link }
+  return { demoAccounts: demo.accounts, firstAdministratorLink: await firstLink(env) }
+}
+
+/** A one-time link where nobody has an account yet, else null. */
+async function firstLink(env) {
+  const { link } = await runScript(['scripts/firstAdministrator.ts'], env, 'The link for the first administrator could not be made.')
+  return link
 }
 
 /** Runs a TypeScript entry whose last line of output is JSON. */
