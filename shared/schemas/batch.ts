@@ -1,4 +1,5 @@
 import { z } from 'zod'
+import { CHECK_STATES } from '../checks/transitions'
 import { Quantity } from '../evidence/quantity'
 import { codeOf, dayOf, lineOf, lineOrNull, numberWithin, oneOf } from './accepted'
 import { VersionMark } from './ligand'
@@ -48,7 +49,7 @@ export type BatchPayload = z.output<typeof BatchPayload>
 
 export const Lot = codeOf('The lot')
 
-export const CheckState = z.enum(['draft', 'waiting', 'signed', 'returned', 'recalled', 'withdrawn'])
+export const CheckState = z.enum(CHECK_STATES)
 export type CheckState = z.output<typeof CheckState>
 
 export const BatchVersionDto = z.object({

@@ -1,0 +1,10 @@
+import { acidHalfLife } from './acidHalfLife'
+import type { RecordKind } from './define'
+import { rateLaw } from './rateLaw'
+import { thermo } from './thermo'
+import { zincPhosphate } from './zincPhosphate'
+
+/** Registered kinds of typed records, in the order they are offered. */
+export const RECORD_KINDS: Readonly<Record<string, RecordKind>> = Object.fromEntries([thermo, rateLaw, acidHalfLife, zincPhosphate].map(kind => [kind.kind, kind]))
+
+export const recordKind = (kind: string): RecordKind | null => RECORD_KINDS[kind] ?? null
