@@ -23,6 +23,7 @@ export function partEnvironment({ settings, secrets, databaseUrl, smtpUrl }) {
     LANTHORN_DATA: settings.data,
     LANTHORN_STORAGE: settings.storage,
     LANTHORN_MAIL: settings.mail,
+    LANTHORN_MAIL_CAUGHT: settings.smtpUrl === null ? '1' : '',
     NUXT_SESSION_PASSWORD: secrets.NUXT_SESSION_PASSWORD,
     NUXT_CSURF_ENCRYPT_SECRET: secrets.NUXT_CSURF_ENCRYPT_SECRET,
   }

@@ -30,7 +30,8 @@ export async function listMembers(db: Knex, programmeId: string): Promise<Member
 export async function lockMembers(trx: Knex.Transaction, programmeId: string): Promise<Map<string, ProgrammeRole[]>> {
   await trx('programme').where({ id: toBinary(programmeId) }).forUpdate().first('id')
   const rows = await trx('membership as m').join('person as p', 'p.id', 'm.person_id').where('m.programme_id', toBinary(programmeId)).where('p.state', 'active')
-    .select('m.person_id', 'm.roles') as { person_id: Buffer, roles: string }[]
+    // A locking read: a plain one would show the state before the lock was waited for.
+    .forUpdate().select('m.person_id', 'm.roles') as { person_id: Buffer, roles: string }[]
   return new Map(rows.map(row => [fromBinary(row.person_id), parseRoles(row.roles)] as const).filter(([, roles]) => roles.length > 0))
 }
 

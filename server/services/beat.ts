@@ -1,0 +1,8 @@
+import type { Deps } from '../platform/deps'
+import { beat as writeBeat } from '../queries/processes'
+import { engineOf } from './engine'
+
+/** A web process's sign of life. */
+export function beat({ db }: Pick<Deps, 'db'>, { name, startedAt }: { name: string, startedAt: Date }): Promise<void> {
+  return writeBeat(db, { name, role: 'web', startedAt, engine: engineOf() })
+}
