@@ -5,12 +5,8 @@ import { capture } from './processes.mjs'
 /** Runs the migrations that this database has not seen. Returns their names. */
 export async function migrate({ databaseUrl, migrationUrl }) {
   const env = { ...process.env, DATABASE_URL: databaseUrl, DATABASE_MIGRATION_URL: migrationUrl }
-  try {
-    const text = await capture(process.execPath, ['--import', 'tsx', 'scripts/migrate.ts'], { cwd: root, env })
-    return JSON.parse(text.trim().split('\n').at(-1)).migrated
-  }
-  catch (error) {
-    if (error instanceof Failure) throw new Failure(`The database could not be brought up to date. ${error.message}`)
-    throw error
-  }
+  const text = await capture(process.execPath, ['--import', 'tsx', 'scripts/migrate.ts'], { cwd: root, env })
+  const { migrated, problem } = JSON.parse(text.trim().split('\n').at(-1))
+  if (problem !== undefined) throw new Failure(problem)
+  return migrated
 }

@@ -25,6 +25,12 @@ describe('settings', () => {
     expect(readSettings(DEFAULTS, { DATABASE_URL: 'mysql://a:b@db/x', DATABASE_MIGRATION_URL: 'mysql://o:b@db/x' }).migrationUrl).toBe('mysql://o:b@db/x')
   })
 
+  it('refuse a database address of another form, without repeating the password in it', () => {
+    for (const DATABASE_URL of ['nonsense', 'postgres://a:secret@db/x', 'mysql://a:secret@db', 'mysql:///x']) {
+      expect(() => readSettings(DEFAULTS, { DATABASE_URL })).toThrow(/^DATABASE_URL has the form mysql:\/\/account:password@host:port\/schema\.$/)
+    }
+  })
+
   it('know loopback from the rest', () => {
     expect(['127.0.0.1', '127.8.9.1', 'localhost', '::1'].every(isLoopback)).toBe(true)
     expect(['0.0.0.0', '::', '192.168.1.4', '127.0.0.1.example.org', ''].some(isLoopback)).toBe(false)
