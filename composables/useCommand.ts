@@ -58,8 +58,15 @@ export function useCommand() {
     await navigateTo({ path: '/sign-in', query: { to: route.fullPath } })
   }
 
-  return { send, isPending, failure, clear: () => { failure.value = null } }
+  /** What is wrong with a field and what would be accepted; null when the last command did not fail on it. */
+  const errorFor = (field: string): string | null => failure.value?.field === field ? inWords(failure.value) : null
+  /** A failure that belongs to none of the fields named: shown beside the button. */
+  const errorBeside = (...fields: string[]): string | null => failure.value && !fields.includes(failure.value.field ?? '') ? inWords(failure.value) : null
+
+  return { send, isPending, failure, errorFor, errorBeside, clear: () => { failure.value = null } }
 }
+
+const inWords = ({ message, accepted }: CommandFailure): string => accepted ? `${message} Accepted: ${accepted}.` : message
 
 /** What the server's answer says, or that none came. */
 export function readFailure(error: FetchError): CommandFailure {
