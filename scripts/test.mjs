@@ -1,4 +1,4 @@
-import { mkdirSync, rmSync } from 'node:fs'
+import { rmSync } from 'node:fs'
 import { join } from 'node:path'
 import { ensureBuild } from './lib/build.mjs'
 import { stopChildren } from './lib/children.mjs'
@@ -8,6 +8,7 @@ import { stopMariadb } from './lib/mariadb.mjs'
 import { ensureModules } from './lib/modules.mjs'
 import { requireProgram } from './lib/packages.mjs'
 import { fromRoot } from './lib/paths.mjs'
+import { clearAbandonedRuns, makeRunFolder } from './lib/runFolders.mjs'
 import { say } from './lib/say.mjs'
 import { onStop, runUntilStopped, stopAll, stopOnSignals } from './lib/stopping.mjs'
 import { startTestMariadb } from './lib/testMariadb.mjs'
@@ -19,7 +20,7 @@ const output = fromRoot('.output-test')
 async function test() {
   const asked = askedSteps(process.argv.slice(2))
   stopOnSignals({ say, exitCode: 130 })
-  const folder = openRunFolder()
+  const folder = await openRunFolder()
   onStop(() => stopChildren())
   await ensureModules(say)
   if (asked.some(name => name === 'e2e')) await requireProgram({ names: ['chromium'], packageName: 'chromium', say })
@@ -46,13 +47,13 @@ function askedSteps(words) {
 }
 
 /** A folder of this run alone, so that it touches nothing of a running installation. */
-function openRunFolder() {
+async function openRunFolder() {
   const lock = fromRoot('.data/test.lock')
   const holder = takeLock(lock)
   if (holder !== null) throw new Failure(`The tests already run in this checkout (process ${holder}).`)
   onStop(() => releaseLock(lock))
-  const folder = fromRoot(`.data/test-run-${process.pid}`)
-  mkdirSync(folder, { recursive: true, mode: 0o700 })
+  await clearAbandonedRuns()
+  const folder = makeRunFolder()
   onStop(() => rmSync(folder, { recursive: true, force: true }))
   return folder
 }

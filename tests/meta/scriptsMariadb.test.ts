@@ -1,4 +1,5 @@
 import { existsSync, mkdirSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs'
+import { spawnSync } from 'node:child_process'
 import { createServer } from 'node:net'
 import { tmpdir } from 'node:os'
 import { join } from 'node:path'
@@ -7,6 +8,8 @@ import { afterEach, beforeEach, describe, expect, it } from 'vitest'
 import { administer, runningMariadb, startMariadb, stopMariadb } from '../../scripts/lib/mariadb.mjs'
 import { ensureSchema } from '../../scripts/lib/mariadbAccounts.mjs'
 import { anyFreePort } from '../../scripts/lib/ports.mjs'
+import { clearAbandonedRuns } from '../../scripts/lib/runFolders.mjs'
+import { isAlive } from '../../scripts/lib/processes.mjs'
 import { socketFor } from '../../scripts/lib/socketPath.mjs'
 
 let folder: string
@@ -85,6 +88,18 @@ describe('the private database server', { timeout: 60_000 }, () => {
     other.close()
     expect(server.port).toBeGreaterThan(port)
     expect(said).toEqual([`Port ${port} is taken: the database uses ${server.port}.`])
+  })
+
+  it('is stopped and cleared away when it belongs to a test run that was killed, and only then', async () => {
+    const gone = spawnSync(process.execPath, ['-e', '']).pid
+    const parent = join(folder, 'runs')
+    const mine = join(parent, `${process.pid}-a`)
+    const abandoned = join(parent, `${gone}-b`)
+    for (const run of [mine, abandoned]) mkdirSync(run, { recursive: true })
+    const server = await startMariadb({ folder: join(abandoned, 'mariadb'), port: await anyFreePort(), bufferPool: '32M', isDurable: false, say: () => undefined })
+    await clearAbandonedRuns(parent)
+    expect(isAlive(server.pid)).toBe(false)
+    expect(readdirSync(parent)).toEqual([`${process.pid}-a`])
   })
 
   it('gives the application no rights of its own; the owner passes them on, table by table [architecture: Two accounts]', async () => {

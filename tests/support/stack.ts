@@ -1,9 +1,10 @@
-import { mkdirSync, mkdtempSync, rmSync } from 'node:fs'
+import { rmSync } from 'node:fs'
 import { join } from 'node:path'
 import { ensureBuild } from '../../scripts/lib/build.mjs'
 import { ensureFirstPeople } from '../../scripts/lib/firstPeople.mjs'
 import { builtParts, keepParts, openMail, partEnvironment } from '../../scripts/lib/parts.mjs'
 import { fromRoot } from '../../scripts/lib/paths.mjs'
+import { makeRunFolder } from '../../scripts/lib/runFolders.mjs'
 import { ensureSecrets } from '../../scripts/lib/secrets.mjs'
 import { makeTestSchema } from '../../scripts/lib/testSchema.mjs'
 import { anyFreePort } from './ports'
@@ -61,9 +62,7 @@ async function start(withDemo: boolean, onStop: (step: () => unknown) => void): 
 }
 
 async function makeSettings() {
-  const stacks = fromRoot('.data/test-stacks')
-  mkdirSync(stacks, { recursive: true })
-  const data = mkdtempSync(join(stacks, 'stack-'))
+  const data = makeRunFolder()
   return {
     port: await anyFreePort(), host: '127.0.0.1', data, storage: join(data, 'files'), mail: join(data, 'mail'), smtpUrl: null, wantsDemo: true,
     output: process.env.LANTHORN_OUTPUT_DIR ?? fromRoot('.output-try'), build: fromRoot('.nuxt-try'),
