@@ -21,7 +21,8 @@ export function makeScale(kind: 'linear' | 'log', domain: readonly [number, numb
   return {
     kind,
     domain,
-    toPixel: value => range[0] + (place(value) - low) * perUnit,
+    // To a hundredth: exp and log differ in the last bit between engines, and server and browser must draw the same.
+    toPixel: value => Math.round((range[0] + (place(value) - low) * perUnit) * 100) / 100,
     contains: value => (kind === 'linear' || value > 0) && place(value) >= low - slack && place(value) <= high + slack,
   }
 }
