@@ -28,6 +28,8 @@ export interface NewJob {
   payload: unknown
   maxAttempts: number
   at: Date
+  /** Not before this many seconds have passed; at once when left out. */
+  delaySeconds?: number
 }
 
 interface Raw { id: Buffer, programme_id: Buffer | null, kind: string, payload: string, state: JobState, attempts: number, max_attempts: number, fence: number, progress: number | null, error: string | null, created_at: Date, finished_at: Date | null }
@@ -42,7 +44,7 @@ export async function insertJob(trx: Knex, job: NewJob): Promise<string> {
   try {
     await trx('job').insert({
       id: toBinary(job.id), programme_id: toBinaryOrNull(job.programmeId), kind: job.kind, dedupe_key: job.dedupeKey, payload: JSON.stringify(job.payload),
-      max_attempts: job.maxAttempts, run_after: trx.raw('NOW(6)'), created_at: job.at,
+      max_attempts: job.maxAttempts, run_after: trx.raw('DATE_ADD(NOW(6), INTERVAL ? SECOND)', [job.delaySeconds ?? 0]), created_at: job.at,
     })
     return job.id
   }

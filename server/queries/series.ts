@@ -64,6 +64,12 @@ export async function seriesTubes(db: Knex, programmeId: string, seriesId: strin
   })
 }
 
+/** Where in the file each tube stands, by its number. */
+export async function tubePlaces(db: Knex, programmeId: string, seriesId: string): Promise<Map<number, string>> {
+  const rows = await db('tube').where({ programme_id: toBinary(programmeId), series_id: toBinary(seriesId) }).select('tube_no', 'place') as { tube_no: number, place: string }[]
+  return new Map(rows.map(row => [row.tube_no, row.place]))
+}
+
 export type SeriesEventName = 'recorded' | 'withdrawn' | 'conditionsCorrected'
 
 export async function insertSeriesEvent(trx: Knex, row: { id: string, programmeId: string, seriesId: string, seq: number, event: SeriesEventName, reason: string, personId: string, at: Date }): Promise<void> {

@@ -1,0 +1,29 @@
+import { AppError } from '../../shared/errors'
+import type { Scope } from '../../shared/permissions'
+import type { FitDto } from '../../shared/schemas/fit'
+import type { Deps } from '../platform/deps'
+import { readEvidence } from '../queries/evidence'
+import { evidenceIdsOfFit, findFit, fitExclusions, fitVersions } from '../queries/fits'
+import { findSeries, tubePlaces } from '../queries/series'
+import { fitDto } from './fitDto'
+import { SERIES_NOT_FOUND } from './requestFit'
+
+export interface ShowFitInput { programmeId: string, scope: Scope, seriesId: string, versionNo: number }
+
+/** One version of a fit. In 'signed' scope an unsigned version is answered like one that does not exist. */
+export async function showFit(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId, scope, seriesId, versionNo }: ShowFitInput): Promise<FitDto> {
+  const series = await findSeries(deps.db, programmeId, seriesId, scope)
+  if (!series) throw new AppError('notFound', SERIES_NOT_FOUND)
+  const kind = deps.kinds[series.kind]
+  if (!kind) throw new Error(`No measurement kind is called ${series.kind}.`)
+  const versions = await fitVersions(deps.db, programmeId, seriesId, { signedOnly: scope === 'signed' })
+  const fit = versions.some(version => version.versionNo === versionNo) ? await findFit(deps.db, programmeId, seriesId, versionNo) : null
+  if (!fit) throw new AppError('notFound', 'There is no such version of this series, or it is not open to you.')
+  const ids = await evidenceIdsOfFit(deps.db, programmeId, fit.id)
+  return fitDto({
+    fit, versions, kind,
+    exclusions: await fitExclusions(deps.db, programmeId, fit.id),
+    evidence: ids.length === 0 ? [] : await readEvidence(deps.db, programmeId, scope, { ids: ids.map(one => one.id) }),
+    places: scope === 'signed' ? new Map() : await tubePlaces(deps.db, programmeId, seriesId),
+  })
+}
