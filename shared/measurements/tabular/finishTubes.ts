@@ -132,7 +132,8 @@ function sigmaSpec(kind: MeasurementKind, y: ColumnSpec | undefined): ColumnSpec
   return specs.find(spec => spec.follows === y?.stem) ?? specs[0]
 }
 
-function readPoint(point: RawPoint, hasSigma: boolean, { decimal, problems }: FinishInput): (number | null)[] | null {
+function readPoint(point: RawPoint, hasSigma: boolean, { kind, decimal, problems }: FinishInput): (number | null)[] | null {
+  if (point.x === null && specsOf(kind, 'x').length > 0) return null
   if (point.y.text === '' && (point.x === null || point.x.text === '')) return null
   if (point.y.text === '') {
     problems.push(asks('emptyValue', `${point.y.spec.label}: the cell is empty, so the row is no point.`, 'a number, or the row as it is: not measured', { row: point.y.row, column: point.y.column }))

@@ -46,15 +46,16 @@ export function findHeader(records: readonly TableRecord[], kind: MeasurementKin
 
 function headerScore(record: TableRecord, below: readonly TableRecord[], kind: MeasurementKind, decimal: DecimalMark): number {
   const filled = filledCells(record)
-  if (filled < 2 || !below.some(next => !isBlank(next))) return 0
+  if (filled < 2) return 0
   const numbers = record.cells.filter(cell => parseNumberCell(cell, decimal).ok).length
   if (parseNumberCell(record.cells[0] ?? '', decimal).ok && numbers > filled / 2) return 0
   const roles = new Set(matchHeaders(record.cells, kind.columns).flatMap(match => match ? [match.spec.role] : []))
   const times = specsOf(kind, 'x').some(spec => record.cells.filter(cell => readHeadNumber(cell, spec, decimal)).length >= 3)
-  const main = (roles.has('x') ? 4 : 0) + (roles.has('y') ? 4 : 0) + (times ? 3 : 0)
+  const main = (roles.has('x') ? 5 : 0) + (roles.has('y') ? 4 : 0) + (times ? 3 : 0)
   const other = [...roles].filter(role => role !== 'x' && role !== 'y').length
-  if (main + other === 0) return 0
-  const width = Math.max(...below.map(filledCells))
+  const isLast = !below.some(next => !isBlank(next))
+  if (main + other === 0 || (isLast && main === 0)) return 0
+  const width = Math.max(0, ...below.map(filledCells))
   return main + other + (filled >= 0.8 * width ? 2 : 0)
 }
 
@@ -65,6 +66,7 @@ export function guessLayout(input: { kind: MeasurementKind, header: TableRecord 
   const count = (role: ColumnSpec['role']) => matches.filter(match => match?.spec.role === role).length
   if (xSpecs.length === 0) return isTransposed(input) ? 'columnPerTube' : 'long'
   const names = count('tube') + count('agent') + count('batch') + count('conc')
+  if (body.length === 0) return count('y') > 0 ? 'long' : 'columnPerTube'
   const xAt = matches.findIndex(match => match?.spec.role === 'x')
   const isNumeric = (column: number) => numericShare(body, column, decimal) > 0.5
   if (xAt >= 0 && count('y') > 0 && (names > 0 || count('y') === 1)) return 'long'

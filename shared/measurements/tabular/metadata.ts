@@ -36,8 +36,8 @@ function readLine(record: TableRecord, delimiter: Delimiter): MetadataLine {
   const raw = trimMarks(record.raw, delimiter)
   const sign = /[:=]/.exec(raw)
   const cut = raw.indexOf(delimiter)
-  if (cut >= 0 && (sign === null || cut <= sign.index)) {
-    const index = record.cells.findIndex((cell, i) => i > 0 && cell !== '')
+  const index = record.cells.findIndex((cell, i) => i > 0 && cell !== '')
+  if (index > 0 && cut >= 0 && (sign === null || cut <= sign.index)) {
     const value = record.cells.slice(index).filter(cell => cell !== '').join(' ')
     return { row, column: index + 1, key: trimMarks(record.cells[0] ?? '', delimiter), value, place: `cell ${cellName(row, index + 1)}` }
   }

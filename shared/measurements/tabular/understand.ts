@@ -55,7 +55,7 @@ export function understandTable({ text, kind, draft = {} }: UnderstandInput): Un
   const loose = looseUnits({ structure, columns, kind, draft, decimal })
   problems.push(...loose.filter(unit => unit.unit === null).map(unit => looseProblem(unit, kind)))
   const named = { agent: findNamed(metadata, 'agent', kind.columns), batch: findNamed(metadata, 'batch', kind.columns) }
-  const raw = sniffed === null ? [] : rawTubes({ structure, columns, kind, draft, decimal })
+  const raw = sniffed === null || (structure.body.length === 0 && !structure.isTransposed) ? [] : rawTubes({ structure, columns, kind, draft, decimal })
   const tubes = finishTubes(raw, { kind, draft, decimal, named, problems })
   const series = splitSeries({ tubes })
   problems.push(...checkConditions(kind, conditions), ...seriesProblems({ kind, series, tubes, conditions, raw }))
