@@ -58,12 +58,17 @@ export function useDataTable<Row>(options: { rows: () => readonly Row[], columns
 
 const toState = (sort: TableSort | null): SortingState => sort ? [{ id: sort.key, desc: sort.descending }] : []
 
+/** Largest over smallest value up to which one count of decimals serves a column. */
+const WIDEST_WITH_ERRORS = 1e5
+const WIDEST_WITHOUT = 1e3
+
 /** Null when the column spans so many powers of ten that equal decimals would hide or invent digits. */
 function decimalsOf<Row>(column: DataColumn<Row>, rows: readonly Row[]): number | null {
   if (column.kind !== 'number' && column.kind !== 'pair') return null
   const cells = rows.map(row => ({ value: asNumber(column.value(row)), se: column.se?.(row) ?? null }))
   const sizes = cells.flatMap(({ value }) => value ? [Math.abs(value)] : [])
-  const isWide = sizes.length > 0 && (Math.max(...sizes) / Math.min(...sizes) > 1e5 || Math.min(...sizes) < 1e-4)
+  const span = column.se ? WIDEST_WITH_ERRORS : WIDEST_WITHOUT
+  const isWide = sizes.length > 0 && (Math.max(...sizes) / Math.min(...sizes) > span || Math.min(...sizes) < 1e-4)
   return isWide ? null : columnDecimals(cells)
 }
 

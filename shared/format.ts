@@ -36,11 +36,11 @@ export function formatFixed(value: number | null, decimals: number): string {
   return (rounded < 0 && !isZero ? MINUS : '') + grouped(text)
 }
 
-/** A bare number with significant digits (three by default); 10 to a power below 0.001 and from a million. */
+/** A bare number with at most so many significant digits; zeros at the end would claim what nobody measured. 10 to a power below 0.001 and from a million. */
 export function formatNumber(value: number | null, digits = 3): string {
   if (value === null || !Number.isFinite(value)) return NOT_MEASURED
   if (needsPower(value)) return formatPower(value, digits)
-  return formatFixed(value, Math.max(decimalsForDigits(value, digits), 0))
+  return formatFixed(value, decimalsNeeded(value, digits))
 }
 
 /** A whole number, in groups from five digits on. */
@@ -48,22 +48,23 @@ export function formatCount(value: number): string {
   return formatFixed(value, 0)
 }
 
-/** `2.1 × 10^{-6}`; `10^{-6}` alone when the factor is 1 and one digit is asked for. */
+/** `2.1 × 10^{-6}` with at most so many digits; `10^{-6}` alone when the factor is 1 and one digit is asked for. */
 export function formatPower(value: number, digits = 2): string {
   if (value === 0 || !Number.isFinite(value)) return value === 0 ? '0' : NOT_MEASURED
   const [factor, exponent] = value.toExponential(digits - 1).split('e') as [string, string]
   const power = `10^{${Number(exponent)}}`.replace('{-', `{${MINUS}`)
-  return digits === 1 && factor === '1' ? power : `${signed(factor)}${NBSP}×${NBSP}${power}`
+  const shortest = String(Number(factor))
+  return digits === 1 && shortest === '1' ? power : `${signed(shortest)}${NBSP}×${NBSP}${power}`
 }
 
-/** Value rounded to its error, error with two significant digits. Without an error: three significant digits. */
+/** Value rounded to its error, error with two significant digits. Without an error: at most three significant digits. */
 export function writeValue(value: number, se: number | null, interval: Interval | null = null): WrittenValue {
   if (!Number.isFinite(value)) return { value: NOT_MEASURED, plusMinus: null, interval: null, power: null }
   const power = needsPower(value) ? exponentOf(value) : null
   const scale = power === null ? 1 : 10 ** power
   const isGiven = se !== null && Number.isFinite(se) && se > 0
   const spread = isGiven ? se : interval ? (interval.high - interval.low) / 4 : null
-  const decimals = spread !== null && spread > 0 ? decimalsForError(spread / scale) : Math.max(decimalsForDigits(value / scale, 3), 0)
+  const decimals = spread !== null && spread > 0 ? decimalsForError(spread / scale) : decimalsNeeded(value / scale, 3)
   const write = (one: number) => formatFixed(one / scale, decimals)
   return {
     value: write(value),
@@ -81,13 +82,17 @@ export function isLopsided(value: number, interval: Interval | null): boolean {
   return Math.abs(above - below) > 0.2 * Math.max(Math.abs(above), Math.abs(below))
 }
 
-/** One count of decimals for a whole column: the finest that any error in it asks for, at most `most`. */
+/**
+ * One count of decimals for a whole column: what half of its errors ask for, but enough that every error shows a digit; at most `most`.
+ * The finest error alone must not make the others claim digits they do not have.
+ */
 export function columnDecimals(cells: readonly { value: number | null, se: number | null }[], most = 6): number {
   const wanted = cells.flatMap(({ value, se }) => {
     if (value === null || !Number.isFinite(value)) return []
-    return [se !== null && se > 0 && Number.isFinite(se) ? decimalsForError(se) : decimalsForDigits(value, 3)]
-  })
-  return wanted.length === 0 ? 0 : Math.min(Math.max(...wanted, 0), most)
+    return [se !== null && se > 0 && Number.isFinite(se) ? decimalsForError(se) : decimalsNeeded(value, 3)]
+  }).sort((a, b) => a - b)
+  const half = wanted[Math.floor((wanted.length - 1) / 2)] ?? 0
+  return Math.min(Math.max(half, (wanted.at(-1) ?? 0) - 1, 0), most)
 }
 
 /** `37.0 °C` from kelvin. */
@@ -128,6 +133,11 @@ export function readNumber(text: string): number | null {
   return Number.isFinite(value) ? value : null
 }
 
+/** Decimals that show a value to `digits` significant digits without zeros at its end. */
+function decimalsNeeded(value: number, digits: number): number {
+  const [, fraction = ''] = Number(value.toPrecision(digits)).toFixed(Math.min(Math.max(decimalsForDigits(value, digits), 0), MOST_DECIMALS)).split('.')
+  return fraction.replace(/0+$/, '').length
+}
 function exponentOf(value: number): number {
   return value === 0 ? 0 : Number(value.toExponential().split('e')[1])
 }

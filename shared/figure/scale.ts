@@ -12,6 +12,8 @@ export interface Tick { value: number, label: string }
 const NICE = [1, 2, 2.5, 5, 10] as const
 /** Ends of a domain and computed ticks meet only to rounding. */
 const SLACK = 1e-9
+/** Share of the span that rounding the lower end outwards may leave empty. */
+const MOST_WASTE = 0.12
 
 export function makeScale(kind: 'linear' | 'log', domain: readonly [number, number], range: readonly [number, number]): Scale {
   const place = kind === 'log' ? Math.log10 : (value: number) => value
@@ -82,7 +84,10 @@ export function domainOf(values: readonly number[], kind: 'linear' | 'log', roun
   const from = low >= 0 && low < 0.35 * high ? 0 : low
   if (!rounded) return [from === 0 ? 0 : from - 0.03 * (high - from), high + 0.03 * (high - from)]
   const step = niceStep(high - from, 5)
-  return [Math.floor(from / step + SLACK) * step, Math.ceil(high / step - SLACK) * step]
+  const roundedFrom = Math.floor(from / step + SLACK) * step
+  // A band that dips just below zero must not cost a whole step of empty plot.
+  const lowEnd = from - roundedFrom > MOST_WASTE * (high - from) ? from - 0.03 * (high - from) : roundedFrom
+  return [lowEnd, Math.ceil(high / step - SLACK) * step]
 }
 
 function decimalsOfStep(step: number): number {
