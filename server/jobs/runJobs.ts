@@ -10,8 +10,8 @@ const LONGEST_PAUSE_SECONDS = 600
  * and whatever it tries to store fails on the fence.
  * @returns false when there was nothing to do
  */
-export async function runNextJob(deps: WorkerDeps, kinds: Readonly<Record<string, JobKind>>): Promise<boolean> {
-  const job = await claimJob(deps.db, LEASE_SECONDS)
+export async function runNextJob(deps: WorkerDeps, kinds: Readonly<Record<string, JobKind>>, programmeId?: string): Promise<boolean> {
+  const job = await claimJob(deps.db, LEASE_SECONDS, programmeId)
   if (!job) return false
   const stop = new AbortController()
   let progress: number | null = null
@@ -49,9 +49,9 @@ async function runOne(deps: WorkerDeps, kinds: Readonly<Record<string, JobKind>>
   }
 }
 
-/** Runs until there is nothing ready any more: for tests and for loading demo data. */
-export async function drainJobs(deps: WorkerDeps, kinds: Readonly<Record<string, JobKind>>): Promise<number> {
+/** Runs until there is nothing ready any more, in one programme where one is named: for tests and for loading demo data. */
+export async function drainJobs(deps: WorkerDeps, kinds: Readonly<Record<string, JobKind>>, programmeId?: string): Promise<number> {
   let done = 0
-  while (await runNextJob(deps, kinds)) done++
+  while (await runNextJob(deps, kinds, programmeId)) done++
   return done
 }

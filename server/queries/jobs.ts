@@ -58,14 +58,16 @@ export async function insertJob(trx: Knex, job: NewJob): Promise<string> {
 /**
  * Takes the oldest ready job, or one whose lease ran out, and commits at once. The fence counts claims: whoever finishes must show the newest.
  * READ COMMITTED, because the gap locks of REPEATABLE READ would hold up everyone who enqueues. Times are the database's own.
+ * @param programmeId only jobs of this programme: for tests and loading that must not take somebody else's
  * @returns null when there is nothing to do
  */
-export async function claimJob(db: Knex, leaseSeconds: number): Promise<JobRow | null> {
+export async function claimJob(db: Knex, leaseSeconds: number, programmeId?: string): Promise<JobRow | null> {
   return db.transaction(async (trx) => {
-    const row = await trx('job')
+    const within = () => trx('job').modify((query) => { if (programmeId) void query.where('programme_id', toBinary(programmeId)) })
+    const row = await within()
       .where(ready => ready.where('state', 'ready').where('run_after', '<=', trx.raw('NOW(6)')))
       .orderBy('run_after').orderBy('id').forUpdate().skipLocked().first('*') as Raw | undefined
-      ?? await trx('job').where('state', 'running').where('lease_until', '<', trx.raw('NOW(6)')).orderBy('lease_until').forUpdate().skipLocked().first('*') as Raw | undefined
+      ?? await within().where('state', 'running').where('lease_until', '<', trx.raw('NOW(6)')).orderBy('lease_until').forUpdate().skipLocked().first('*') as Raw | undefined
     if (!row) return null
     if (row.attempts >= row.max_attempts) {
       await trx('job').where({ id: row.id }).update({ state: 'parked', lease_until: null, error: row.error ?? 'The worker stopped while this ran, every time it was tried.' })
