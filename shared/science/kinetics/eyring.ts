@@ -6,6 +6,7 @@
  * @source H. Eyring, J. Chem. Phys. 3, 107 (1935).
  */
 import { BOLTZMANN_J_per_K, GAS_J_per_mol_K, PLANCK_J_s } from '../constants'
+import { exactExp } from '../exactMath'
 
 /** Rate constant from activation enthalpy and entropy, s⁻¹. NaN unless the temperature is above 0 K. */
 export function eyringRate_per_s(temperature_K: number, enthalpy_kJ_per_mol: number, entropy_J_per_mol_K: number): number {
@@ -17,7 +18,7 @@ export function eyringRate_per_s(temperature_K: number, enthalpy_kJ_per_mol: num
 /** k(to)/k(from) for a constant activation enthalpy. Independent of the order of the reaction. */
 export function eyringRatio(enthalpy_kJ_per_mol: number, from_K: number, to_K: number): number {
   if (!(from_K > 0) || !(to_K > 0)) return NaN
-  return (to_K / from_K) * Math.exp((-enthalpy_kJ_per_mol * 1000 / GAS_J_per_mol_K) * (1 / to_K - 1 / from_K))
+  return (to_K / from_K) * exactExp((-enthalpy_kJ_per_mol * 1000 / GAS_J_per_mol_K) * (1 / to_K - 1 / from_K))
 }
 
 /** k(to)/k(from) for a constant Arrhenius activation energy. */

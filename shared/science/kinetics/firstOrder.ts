@@ -2,6 +2,8 @@
  * First-order loss: half-life and back, with the interval taken from ln k (a rate constant is positive, and so is its half-life).
  */
 
+import { exactExp, exactLog } from '../exactMath'
+
 /** 97.5 % point of the normal distribution. */
 const Z_95 = 1.959963984540054
 
@@ -34,13 +36,13 @@ export function timeToFraction_s(rate_per_s: number, fraction: number): number {
 
 /** Spread of ln v: σ = √ln(1 + (s/v)²), the log-normal with median v whose relative width is that of v ± s. */
 export function logSpread(value: number, se: number): number {
-  return value > 0 && se >= 0 ? Math.sqrt(Math.log1p((se / value) ** 2)) : NaN
+  return value > 0 && se >= 0 ? Math.sqrt(exactLog(1 + (se / value) ** 2)) : NaN
 }
 
 /** 95 % interval of a positive quantity from its standard error, log-normal about the value. */
 export function logInterval(value: number, se: number): [number, number] {
   const half = Z_95 * logSpread(value, se)
-  return [value * Math.exp(-half), value * Math.exp(half)]
+  return [value * exactExp(-half), value * exactExp(half)]
 }
 
 /** Half-life of a rate constant: "k at most" becomes "half-life at least", and the interval turns over. */

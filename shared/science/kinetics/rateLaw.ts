@@ -5,7 +5,7 @@
 import { carryFactor, type CarriedFactor, type TemperatureOfConstant } from './eyring'
 import { logInterval, type RateValue } from './firstOrder'
 import { rateGradient } from './rateGradient'
-import { RATE_TERMS, SUM_CONSTANTS, type CompetitorMetal, type RateConditions, type RateConstantName, type SumConstant } from './rateTerms'
+import { hydrogen_M, RATE_TERMS, SUM_CONSTANTS, type CompetitorMetal, type RateConditions, type RateConstantName, type SumConstant } from './rateTerms'
 
 export interface RateConstant extends TemperatureOfConstant {
   readonly name: RateConstantName
@@ -134,7 +134,7 @@ function evaluateSaturation(law: RateLaw, carried: readonly Carried[], condition
     return { ok: false, reason: 'incompleteSaturation', message: 'the saturation form needs k1 with K(H), and k3 with K(M) and its metal' }
   }
   const metal_M = law.metal ? conditions.competitors_M[law.metal] ?? 0 : 0
-  const { value, relative } = rateGradient(values, 10 ** -conditions.pH, metal_M)
+  const { value, relative } = rateGradient(values, hydrogen_M(conditions.pH), metal_M)
   const used = carried.filter(c => (relative[c.constant.name] ?? 0) !== 0)
   if (!(value > 0)) return { ok: false, reason: 'noConstants', message: 'no rate constant applies under these conditions' }
   const se = combinedSe(law, used.map(c => ({ carried: c, weight: relative[c.constant.name]! })))

@@ -32,9 +32,14 @@ export interface EvidenceItem {
   readonly batchId: string | null
   /** Values that share one scale error (a stock assay) or come from one fit name the same group. */
   readonly covarianceGroup: CovarianceGroup | null
-  /** Numbers that belong to the value itself (rate law form, saturation constants, the working concentration a CEST fit found). */
-  readonly parameters?: Readonly<Record<string, number | string | null>>
+  /**
+   * What belongs to the value itself. Read here: `metal` (of a constant), `protonation` (stepwise log K of the ligand, most basic first, with a
+   * log K), `pHMin` and `pHMax` (measured range), `enthalpy_kJ_per_mol` and `enthalpy_se_kJ_per_mol` (of a rate constant).
+   */
+  readonly parameters?: Readonly<Record<string, ParameterValue>>
 }
+
+export type ParameterValue = number | string | boolean | null | readonly number[]
 
 /**
  * A shared source of error. `scaleFraction` is the relative standard error of a factor common to all members
@@ -70,6 +75,8 @@ export type Lane = 'plane' | 'lossMissing' | 'concentrationMissing' | 'neither'
 
 /** Something the agent lacks, in words, and the role that could measure it. */
 export interface MissingItem {
+  /** 'concentration' and 'loss' put the agent into a lane; the others leave a limit or a verdict open. */
+  readonly key: 'concentration' | 'loss' | 'freeMetal' | 'equilibrium'
   readonly what: string
   readonly whoCanMeasure: string
 }
@@ -184,7 +191,7 @@ export interface Placement {
   readonly frontSolid: boolean
   /** Complex ids that cannot be told apart from this one at 95 % on either axis. */
   readonly notDistinguishable: readonly string[]
-  /** Place by unbound metal at the working concentration among the profile's mechanism; null outside the plane. */
+  /** Place by metal released at the working concentration (the diagonal through the mark) among the profile's mechanism; null outside the plane. */
   readonly rank: number | null
   readonly decadesExtrapolated: number | null
   readonly preparations: number
