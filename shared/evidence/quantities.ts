@@ -37,19 +37,19 @@ const decimals = (count: number) => ({ kind: 'decimals', count }) as const
 const significant = (count: number) => ({ kind: 'significant', count }) as const
 
 const relaxivity = (id: string, sub: string, better: 'higher' | null) => defineEvidence({
-  id, label: `Relaxivity r_${sub}`, base: 'r', sub, unit: 'mM^{-1} s^{-1}', dimension: 'relaxivity', digits: decimals(2), better, group: 'relaxivity', needs: ['b0_T', 'temperature_K', 'medium'],
+  id, label: `Relaxivity r_${sub}`, base: 'r', sub, unit: 'mM^-1 s^-1', dimension: 'relaxivity', digits: decimals(2), better, group: 'relaxivity', needs: ['b0_T', 'temperature_K', 'medium'],
 })
 const firstOrder = (id: string, label: string, sub: string, better: 'higher' | 'lower') => defineEvidence({
-  id, label, base: 'k', sub, unit: 's^{-1}', dimension: 'rate', digits: significant(2), better, group: 'kinetics', needs: ['temperature_K'],
+  id, label, base: 'k', sub, unit: 's^-1', dimension: 'rate', digits: significant(2), better, group: 'kinetics', needs: ['temperature_K'],
 })
 const secondOrder = (id: string, label: string, sub: string) => defineEvidence({
-  id, label, base: 'k', sub, unit: 'M^{-1} s^{-1}', dimension: 'rateSecondOrder', digits: significant(2), better: 'lower', group: 'kinetics', needs: ['temperature_K'],
+  id, label, base: 'k', sub, unit: 'M^-1 s^-1', dimension: 'rateSecondOrder', digits: significant(2), better: 'lower', group: 'kinetics', needs: ['temperature_K'],
 })
 const thirdOrder = (id: string, label: string, sub: string) => defineEvidence({
-  id, label, base: 'k', sub, unit: 'M^{-2} s^{-1}', dimension: 'rateThirdOrder', digits: significant(2), better: 'lower', group: 'kinetics', needs: ['temperature_K'],
+  id, label, base: 'k', sub, unit: 'M^-2 s^-1', dimension: 'rateThirdOrder', digits: significant(2), better: 'lower', group: 'kinetics', needs: ['temperature_K'],
 })
 const perMolar = (id: string, label: string, sub: string) => defineEvidence({
-  id, label, base: 'K', sub, unit: 'M^{-1}', dimension: 'none', digits: significant(2), better: null, group: 'kinetics', needs: ['temperature_K'],
+  id, label, base: 'K', sub, unit: 'M^-1', dimension: 'none', digits: significant(2), better: null, group: 'kinetics', needs: ['temperature_K'],
 })
 const fraction = (id: string, label: string, better: 'higher' | 'lower', group: EvidenceGroup) => defineEvidence({
   id, label, base: label, sub: '', unit: '', dimension: 'fraction', digits: significant(2), better, group, needs: [],
@@ -60,15 +60,19 @@ export const EVIDENCE_QUANTITIES: Readonly<Record<string, EvidenceQuantity>> = O
   relaxivity('r1_per_mM_s', '1', 'higher'),
   relaxivity('r2_per_mM_s', '2', null),
   defineEvidence({ id: 'workingConcentration_mM', label: 'Working concentration', base: 'c', sub: 'w', unit: 'mM', dimension: 'concentration', digits: significant(2), better: 'lower', group: 'exchange', needs: ['b0_T'] }),
-  defineEvidence({ id: 'kex_per_s', label: 'Exchange rate', base: 'k', sub: 'ex', unit: 's^{-1}', dimension: 'rate', digits: significant(2), better: null, group: 'exchange', needs: ['temperature_K', 'pH'] }),
+  defineEvidence({ id: 'kex_per_s', label: 'Exchange rate', base: 'k', sub: 'ex', unit: 's^-1', dimension: 'rate', digits: significant(2), better: null, group: 'exchange', needs: ['temperature_K', 'pH'] }),
   defineEvidence({ id: 'logK', label: 'log K', base: 'log K', sub: 'ML', unit: '', dimension: 'none', digits: decimals(2), better: 'higher', group: 'equilibrium', needs: ['metal'] }),
+  ...(['Ca', 'Mg', 'Zn', 'Cu'] as const).map(metal => defineEvidence({
+    id: `logK${metal}`, label: `log K with ${metal}`, base: 'log K', sub: `${metal}L`, unit: '', dimension: 'none', digits: decimals(2), better: null, group: 'equilibrium', needs: ['metal'],
+  })),
   defineEvidence({ id: 'logKConditional', label: 'Conditional log K', base: 'log K', sub: 'cond', unit: '', dimension: 'none', digits: decimals(2), better: 'higher', group: 'equilibrium', needs: ['metal', 'pH'] }),
   defineEvidence({ id: 'pM', label: 'pM', base: 'pM', sub: '', unit: '', dimension: 'none', digits: decimals(1), better: 'higher', group: 'equilibrium', needs: ['metal', 'pH'] }),
   fraction('boundAtEquilibrium_frac', 'Still bound at equilibrium', 'higher', 'equilibrium'),
   firstOrder('k0_per_s', 'Spontaneous dissociation', '0', 'lower'),
   secondOrder('k1_per_M_s', 'Dissociation by one proton', '1'),
   thirdOrder('k2_per_M2_s', 'Dissociation by two protons', '2'),
-  firstOrder('k3_per_s', 'Dissociation of the protonated complex', '3', 'lower'),
+  firstOrder('k1_per_s', 'Dissociation of the protonated complex', '1', 'lower'),
+  firstOrder('k3_per_s', 'Dissociation of the dinuclear complex', '3', 'lower'),
   secondOrder('kZn_per_M_s', 'Exchange with zinc', 'Zn'),
   secondOrder('kCu_per_M_s', 'Exchange with copper', 'Cu'),
   secondOrder('kCa_per_M_s', 'Exchange with calcium', 'Ca'),
@@ -78,6 +82,8 @@ export const EVIDENCE_QUANTITIES: Readonly<Record<string, EvidenceQuantity>> = O
   perMolar('kMetal_per_M', 'Constant of the dinuclear complex', 'M'),
   defineEvidence({ id: 'halfLifeAcid_s', label: 'Half-life in acid', base: 't', sub: '1/2', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: ['temperature_K'] }),
   defineEvidence({ id: 'zincPhosphateRatio', label: 'Zinc-phosphate ratio at 72 h', base: 'R', sub: '1,72 h', unit: '', dimension: 'none', digits: decimals(2), better: 'higher', group: 'kinetics', needs: [] }),
+  defineEvidence({ id: 'zincPhosphateTime080_s', label: 'Zinc-phosphate time to 0.80', base: 't', sub: '0.80', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: [] }),
+  defineEvidence({ id: 'zincPhosphateTime080_s', label: 'Time to 0.80 in zinc and phosphate', base: 't', sub: '0.80', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: [] }),
   fraction('freeMetal_frac', 'Free metal in the batch', 'lower', 'batch'),
 ].map(quantity => [quantity.id, quantity]))
 

@@ -45,7 +45,7 @@ export const SAMPLE_CONDITIONS: readonly ConditionSpec[] = [
   { key: 'operator', label: 'Measured by', type: 'text', required: false, help: 'Who stood at the instrument', synonyms: ['operator', 'measured by', 'user'] },
   {
     key: 'aeration', label: 'Oxygen', type: 'choice', required: false, help: 'Dissolved oxygen relaxes water by about 0.08 s^-1', synonyms: ['aeration', 'oxygen', 'gas'],
-    choices: [{ value: 'air', label: 'air-saturated', synonyms: ['air', 'aerated'] }, { value: 'degassed', label: 'degassed', synonyms: ['deoxygenated', 'argon', 'nitrogen'] }],
+    choices: [{ value: 'airSaturated', label: 'air-saturated', synonyms: ['air', 'aerated', 'air saturated'] }, { value: 'degassed', label: 'degassed', synonyms: ['deoxygenated', 'argon', 'nitrogen'] }],
   },
   {
     key: 'concBasis', label: 'Concentration from', type: 'choice', required: true, help: 'How the metal in the stock was determined', synonyms: ['concentration basis', 'concentration from', 'conc basis', 'assay'],

@@ -1,0 +1,57 @@
+import type { FitDone, FittedParameter } from '../../science/least-squares/outcome'
+import type { NamedQuantity } from '../../evidence/quantity'
+import type { AnalysedPoint, FitStatistics, SecondOpinionResult } from '../types'
+
+/** A fitted parameter as tables show it. */
+export function namedParameter({ name, label, unit, value, se, interval, atBound }: FittedParameter): NamedQuantity {
+  return { name, label, unit, value, kind: '=', se, interval: interval && [interval[0], interval[1]], evidenceId: null, atBound }
+}
+
+/** 1/T with its error, from T with its error: se/T². The interval is that of T turned over, and so not symmetric. */
+export function rateOf({ value, se, interval }: NamedQuantity, name: string, label: string): NamedQuantity {
+  const ends: [number, number] | null = interval && interval[0] > 0 ? [1 / interval[1], 1 / interval[0]] : null
+  return { name, label, unit: 's^-1', value: 1 / value, kind: '=', se: se === null ? null : se / value ** 2, interval: ends, evidenceId: null }
+}
+
+export function statisticsOf(fit: FitDone): FitStatistics {
+  const sources = {
+    known: 'given with the points', pooled: `pooled over the tubes, ${fit.intervalDof} degrees of freedom`, estimated: `from the scatter about this fit, ${fit.dof} degrees of freedom`,
+  } as const
+  const size = fit.sigma === null ? '' : `${Number(fit.sigma.toPrecision(3))} au, `
+  return {
+    rss: fit.rss, dof: fit.dof, reducedChi2: fit.reducedChi2, aicc: fit.aicc, r2: fit.r2, condition: fit.condition, evaluations: fit.evaluations, stop: fit.stop,
+    sigma: `${size}${sources[fit.sigmaUsed]}`,
+  }
+}
+
+export function secondOpinionOf(fit: FitDone): SecondOpinionResult | null {
+  const other = fit.secondOpinion
+  if (other === null) return null
+  const ours = fit.sigmaUsed === 'known' && fit.reducedChi2 !== null ? fit.reducedChi2 * fit.dof : fit.rss
+  const relativeDifference = ours > 0 && Number.isFinite(other.sumOfSquares) ? (other.sumOfSquares - ours) / ours : null
+  const note = other.agrees ? 'A second program, started from this optimum and from the model\'s own start, found no lower sum of squares.' : 'A second program found a lower sum of squares: this fit is not at its lowest point.'
+  return { rss: Number.isFinite(other.sumOfSquares) ? other.sumOfSquares : null, relativeDifference, lower: !other.agrees, note }
+}
+
+/** Points with fit and residuals. `reasons` gives the reason of each point left out, by index. */
+export function analysedPoints(x: readonly number[], y: readonly number[], fit: FitDone | null, reasons: ReadonlyMap<number, string>): AnalysedPoint[] {
+  return x.map((value, index) => {
+    const fitted = fit?.fitted[index] ?? null
+    const signal = y[index] ?? Number.NaN
+    return {
+      index, x: value, y: signal, fitted, residual: fitted === null ? null : signal - fitted, studentised: fit?.studentised[index] ?? null, excluded: reasons.get(index) ?? null,
+    }
+  })
+}
+
+const CURVE_POINTS = 97
+
+/** Model values over the range of the points, denser where the recovery bends: spaced by the square of their index. */
+export function curveOver(x: readonly number[], evaluate: (x: number) => number): { x: number, y: number }[] {
+  const end = Math.max(...x)
+  if (!(end > 0)) return []
+  return Array.from({ length: CURVE_POINTS }, (_, i) => {
+    const at = end * (i / (CURVE_POINTS - 1)) ** 2
+    return { x: at, y: evaluate(at) }
+  })
+}
