@@ -23,7 +23,7 @@ export const acidHalfLife = defineRecord({
     noteField,
   ],
   check: () => [],
-  emits: entry => [draftOf({ quantity: 'halfLifeAcid_s', unit: 's', stored: quantityIn(acidHalfLife, entry, 'halfLife')!, conditions: conditionsOf(acidHalfLife, entry), isPositive: true })],
+  emits: entry => [draftOf({ quantity: 'halfLifeAcid_s', stored: quantityIn(acidHalfLife, entry, 'halfLife')!, conditions: conditionsOf(acidHalfLife, entry), isPositive: true })],
   summarise(entry) {
     const { value, kind, se } = quantityIn(acidHalfLife, entry, 'halfLife')!
     return `t_{1/2} ${WORDS[kind]}${formatDuration(value)}${se === null ? '' : ` ± ${formatDuration(se, 2)}`}`

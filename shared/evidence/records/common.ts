@@ -1,6 +1,7 @@
 import type { Conditions } from '../../measurements/types'
 import { formatCelsius, formatNumber, NBSP, writeValue } from '../../format'
 import { logInterval } from '../../science/kinetics/firstOrder'
+import { evidenceQuantity } from '../quantities'
 import type { EvidenceDraft } from '../types'
 import type { ChoiceField, NumberField, TextField } from './define'
 import type { StoredValue } from './values'
@@ -61,10 +62,10 @@ export function intervalOf({ value, kind, se }: StoredValue, isPositive: boolean
   return isPositive ? logInterval(value, se) : [value - Z_95 * se, value + Z_95 * se]
 }
 
-export interface DraftParts { quantity: string, unit: string, stored: StoredValue, conditions: Conditions, isPositive?: boolean, detail?: EvidenceDraft['detail'], covarianceGroup?: EvidenceDraft['covarianceGroup'] }
+export interface DraftParts { quantity: string, stored: StoredValue, conditions: Conditions, isPositive?: boolean, detail?: EvidenceDraft['detail'], covarianceGroup?: EvidenceDraft['covarianceGroup'] }
 
-/** One piece of evidence from a typed value. */
-export function draftOf({ quantity, unit, stored, conditions, isPositive = false, detail = {}, covarianceGroup = null }: DraftParts): EvidenceDraft {
+/** One piece of evidence from a typed value, in the unit that its quantity is kept in. @throws Error for a quantity that is in no registry */
+export function draftOf({ quantity, stored, conditions, isPositive = false, detail = {}, covarianceGroup = null }: DraftParts): EvidenceDraft {
   const { value, kind, se } = stored
-  return { quantity, value: { value, kind, se: kind === '=' ? se : null, interval: intervalOf(stored, isPositive), unit }, conditions: { ...conditions }, covarianceGroup, detail }
+  return { quantity, value: { value, kind, se: kind === '=' ? se : null, interval: intervalOf(stored, isPositive), unit: evidenceQuantity(quantity).unit }, conditions: { ...conditions }, covarianceGroup, detail }
 }

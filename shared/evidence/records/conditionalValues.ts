@@ -45,13 +45,13 @@ export function conditionalAtBloodPH(input: EquilibriumInput, metal: string): Ev
   const difference = input.own ? null : mediumDifference(input.conditions, input.registered!)
   const detail: EvidenceDraft['detail'] = {
     metal, protonationFrom: input.own ? 'this record' : 'the ligand', mixedMedia: difference !== null, mediumNote: difference,
-    ligandProtonation: [...constants.ligandProtonation], logK: input.logK.value, complexProtonation: [...input.complexProtonation],
+    protonation: [...constants.ligandProtonation], logK: input.logK.value, complexProtonation: [...input.complexProtonation],
   }
   const conditions: Conditions = { ...input.conditions, metal, pH: pcH }
   const { logKCond } = conditionalConstant(constants, pcH)
   return [
-    draftOf({ quantity: 'logKConditional', unit: '', stored: { value: logKCond, kind: input.logK.kind, se }, conditions, detail }),
-    draftOf({ quantity: 'pM', unit: '', stored: { value: pM(constants), kind: input.logK.kind, se }, conditions: { ...conditions, metal_M, ligand_M }, detail }),
+    draftOf({ quantity: 'logKConditional', stored: { value: logKCond, kind: input.logK.kind, se }, conditions, detail }),
+    draftOf({ quantity: 'pM', stored: { value: pM(constants), kind: input.logK.kind, se }, conditions: { ...conditions, metal_M, ligand_M }, detail }),
   ]
 }
 

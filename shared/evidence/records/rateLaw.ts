@@ -75,9 +75,7 @@ function emits(entry: RecordEntry): EvidenceDraft[] {
   const names = [...SUM_CONSTANTS, ...SATURATION_ONLY] as (SumConstant | SaturationConstant)[]
   return names.flatMap((name) => {
     const stored = quantityIn(rateLaw, entry, name)
-    if (!stored) return []
-    const field = rateLaw.fields.find(one => one.key === name) as QuantityField
-    return [draftOf({ quantity: name, unit: field.stored, stored, conditions, isPositive: true, detail })]
+    return stored ? [draftOf({ quantity: name, stored, conditions, isPositive: true, detail })] : []
   })
 }
 

@@ -58,11 +58,11 @@ function inputOf(entry: RecordEntry, context: RecordContext): EquilibriumInput {
 function emits(entry: RecordEntry, context: RecordContext): EvidenceDraft[] {
   const { metal } = context
   const conditions = { ...conditionsOf(thermo, entry), metal }
-  const own = protonationIn(entry)
-  const drafts = [draftOf({ quantity: 'logK', unit: '', stored: quantityIn(thermo, entry, 'logK')!, conditions, detail: { metal, ligandProtonation: own?.map(step => step.value) ?? [] } })]
+  const steps = protonationIn(entry) ?? context.ligandProtonation?.steps ?? []
+  const drafts = [draftOf({ quantity: 'logK', stored: quantityIn(thermo, entry, 'logK')!, conditions, detail: { metal, protonation: steps.map(step => step.value) } })]
   for (const competitor of COMPETING_METALS) {
     const stored = quantityIn(thermo, entry, `logK${competitor}`)
-    if (stored) drafts.push(draftOf({ quantity: `logK${competitor}`, unit: '', stored, conditions: { ...conditions, metal: competitor }, detail: { metal: competitor } }))
+    if (stored) drafts.push(draftOf({ quantity: `logK${competitor}`, stored, conditions: { ...conditions, metal: competitor }, detail: { metal: competitor } }))
   }
   return [...drafts, ...conditionalAtBloodPH(inputOf(entry, context), metal)]
 }

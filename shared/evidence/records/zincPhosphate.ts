@@ -26,8 +26,8 @@ function emits(entry: RecordEntry): EvidenceDraft[] {
   const ratio = quantityIn(zincPhosphate, entry, 'ratioAt72h')
   const time = quantityIn(zincPhosphate, entry, 'timeTo080')
   return [
-    ...(ratio ? [draftOf({ quantity: 'zincPhosphateRatio', unit: '', stored: ratio, conditions, detail })] : []),
-    ...(time ? [draftOf({ quantity: 'zincPhosphateTime080_s', unit: 's', stored: time, conditions, isPositive: true, detail: { isAnalogue: detail.isAnalogue ?? false } })] : []),
+    ...(ratio ? [draftOf({ quantity: 'zincPhosphateRatio', stored: ratio, conditions, detail })] : []),
+    ...(time ? [draftOf({ quantity: 'zincPhosphateTime080_s', stored: time, conditions, isPositive: true, detail: { isAnalogue: detail.isAnalogue ?? false } })] : []),
   ]
 }
 
