@@ -4,7 +4,7 @@ import type { Scope } from '../../shared/permissions'
 import type { TraceDto, TraceStep } from '../../shared/schemas/trace'
 import type { Deps } from '../platform/deps'
 import { agentMark } from '../queries/agentMarks'
-import { programmeSettings } from '../queries/programmes'
+import { findProgramme } from '../queries/programmes'
 import { checkEvents } from '../queries/checks'
 import { readEvidence } from '../queries/evidence'
 import { type FitTrace, traceBatch, traceFit, traceRecord } from '../queries/trace'
@@ -19,9 +19,10 @@ interface TraceInput { programmeId: string, scope: Scope, evidenceId: string }
 export async function traceNumber(deps: Deps, { programmeId, scope, evidenceId }: TraceInput): Promise<TraceDto> {
   const [item] = await readEvidence(deps.db, programmeId, scope, { ids: [evidenceId] })
   if (!item) throw new AppError('notFound', 'There is no such number, or it is not open to you.')
-  const settings = await programmeSettings(deps.db, programmeId)
+  const programme = await findProgramme(deps.db, programmeId)
+  if (!programme) throw new Error(`There is no programme ${programmeId}.`)
   const mark = await agentMark(deps.db, programmeId, item.complexId)
-  const view: View = { code: settings.code, showFile: scope !== 'signed' || settings.partnerSeesRawFiles, staff: scope !== 'signed' }
+  const view: View = { code: programme.code, showFile: scope !== 'signed' || programme.partnerSeesRawFiles, staff: scope !== 'signed' }
   const origin = await originSteps(deps, programmeId, item, view)
   return {
     evidenceId, quantity: item.quantity, agentCode: mark?.code ?? '', value: item.value,
