@@ -185,7 +185,8 @@ export interface MeasurementKind {
   layouts: readonly ('long' | 'columnPerTube' | 'rowPerTube')[]
   /** Template files that people download: name and text. */
   templates: readonly { fileName: string, text: string }[]
-  models: readonly { id: string, version: number, title: string }[]
+  /** within: ids of models that contain this one as a special case; an F-test may compare it with those. */
+  models: readonly { id: string, version: number, title: string, within?: readonly string[] }[]
   defaultModel: (conditions: Conditions) => string
   /** Problems of complete tubes with their conditions, beyond single cells. */
   checkTubes: (tubes: readonly SeriesTube[], conditions: Conditions) => UploadProblem[]
