@@ -139,7 +139,7 @@ function keyEntries(layers: readonly FigureLayer[], labelled: readonly string[])
     if (layer.type === 'band') return [{ name: layer.name, token: layer.token, shape: 'band', dash: 'solid' }]
     return [{ name: layer.name, token: layer.token, shape: layer.type === 'points' && layer.open ? 'open' : 'points', dash: 'solid' }]
   })
-  return entries.length > 1 ? entries.filter((entry, at) => entries.findIndex(one => one.name === entry.name && one.shape === entry.shape) === at) : []
+  return entries.length > 1 ? entries.filter((entry, at) => entries.findIndex(one => one.name === entry.name) === at) : []
 }
 
 const lengthOf = (text: string): number => parseNotation(text).reduce((sum, part) => sum + part.text.length * (part.at === 'base' ? 1 : 0.76), 0)
