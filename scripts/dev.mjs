@@ -6,6 +6,7 @@ import { migrate } from './lib/migrations.mjs'
 import { ensureModules } from './lib/modules.mjs'
 import { claimFolderAndPort } from './lib/oneStart.mjs'
 import { keepParts, openMail, partEnvironment } from './lib/parts.mjs'
+import { ensurePrepared } from './lib/prepared.mjs'
 import { say } from './lib/say.mjs'
 import { ensureSecrets } from './lib/secrets.mjs'
 import { readSettings } from './lib/settings.mjs'
@@ -17,6 +18,7 @@ async function develop() {
   onStop(() => stopChildren())
   await claimFolderAndPort(settings)
   await ensureModules(say)
+  await ensurePrepared(say)
   const secrets = ensureSecrets(settings.data)
   const { databaseUrl, migrationUrl } = await openDatabase({ settings, secrets, say })
   await migrate({ databaseUrl, migrationUrl })

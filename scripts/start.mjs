@@ -7,6 +7,7 @@ import { migrate } from './lib/migrations.mjs'
 import { ensureModules } from './lib/modules.mjs'
 import { claimFolderAndPort, requirePort } from './lib/oneStart.mjs'
 import { builtParts, keepParts, openMail, partEnvironment } from './lib/parts.mjs'
+import { ensurePrepared } from './lib/prepared.mjs'
 import { say } from './lib/say.mjs'
 import { ensureSecrets } from './lib/secrets.mjs'
 import { readSettings } from './lib/settings.mjs'
@@ -18,6 +19,7 @@ async function start() {
   onStop(() => stopChildren())
   await claimFolderAndPort(settings)
   await ensureModules(say)
+  await ensurePrepared(say)
   const secrets = ensureSecrets(settings.data)
   const { databaseUrl, migrationUrl } = await openDatabase({ settings, secrets, say })
   const migrated = await migrate({ databaseUrl, migrationUrl })

@@ -8,6 +8,7 @@ import { stopMariadb } from './lib/mariadb.mjs'
 import { ensureModules } from './lib/modules.mjs'
 import { requireProgram } from './lib/packages.mjs'
 import { fromRoot } from './lib/paths.mjs'
+import { ensurePrepared } from './lib/prepared.mjs'
 import { clearAbandonedRuns, makeRunFolder } from './lib/runFolders.mjs'
 import { say } from './lib/say.mjs'
 import { onStop, runUntilStopped, stopAll, stopOnSignals } from './lib/stopping.mjs'
@@ -16,6 +17,7 @@ import { cleanEnvironment } from './lib/testRun.mjs'
 import { CHECKS, NEED_BUILD, PROJECTS, runCheck, runProject } from './lib/testSteps.mjs'
 
 const output = fromRoot('.output-test')
+const types = fromRoot('.nuxt-types')
 
 async function test() {
   const asked = askedSteps(process.argv.slice(2))
@@ -23,8 +25,9 @@ async function test() {
   const folder = await openRunFolder()
   onStop(() => stopChildren())
   await ensureModules(say)
+  await ensurePrepared(say)
   if (asked.some(name => name === 'e2e')) await requireProgram({ names: ['chromium'], packageName: 'chromium', say })
-  const env = cleanEnvironment({ LANTHORN_TEST_MARIADB: join(folder, 'mariadb'), LANTHORN_OUTPUT_DIR: output })
+  const env = cleanEnvironment({ LANTHORN_TEST_MARIADB: join(folder, 'mariadb'), LANTHORN_OUTPUT_DIR: output, LANTHORN_BUILD_DIR: types })
   const results = [...await runChecksBesideBuild(asked, env)]
   if (asked.some(name => name === 'server' || NEED_BUILD.includes(name))) {
     onStop(() => stopMariadb(env.LANTHORN_TEST_MARIADB))
@@ -67,7 +70,7 @@ async function runChecksBesideBuild(asked, env) {
 
 async function runChecks(names, env) {
   const results = []
-  for (const name of names) results.push(await runCheck(name, env))
+  for (const name of names) results.push(await runCheck(name, { env, types }))
   return results
 }
 

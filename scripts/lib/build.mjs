@@ -4,6 +4,7 @@ import { runQuietly } from './children.mjs'
 import { Failure } from './failure.mjs'
 import { readIfThere } from './files.mjs'
 import { withLock } from './locks.mjs'
+import { lastLines } from './processes.mjs'
 import { hashSources } from './sources.mjs'
 
 /** Builds the product into settings.output unless the build there is of these very sources. Returns whether it built. */
@@ -22,7 +23,7 @@ async function buildIfStale({ output, build }, say) {
   if (code !== 0 || !isWhole(output)) {
     const log = `${output}.log`
     writeFileSync(log, text)
-    throw new Failure(`${text.split('\n').slice(-25).join('\n')}\nThe build failed (${code}); its whole output is in ${log}`)
+    throw new Failure(`The build failed (${code}): ${firstErrors(text)} (whole output: ${log})`)
   }
   writeFileSync(stamp, hash)
   return true
@@ -30,4 +31,12 @@ async function buildIfStale({ output, build }, say) {
 
 function isWhole(output) {
   return ['server/index.mjs', 'server/worker.mjs', 'server/analyseThread.mjs'].every(file => existsSync(join(output, file)))
+}
+
+/** What the build tool said went wrong, without the colours and the stack. */
+function firstErrors(text) {
+  // eslint-disable-next-line no-control-regex -- colours are escape sequences
+  const lines = text.replaceAll(/\u001B\[[\d;]*m/g, '').split('\n')
+  const errors = lines.filter(line => /error/i.test(line) && !/✗ Build failed|^\s+at /.test(line))
+  return lastLines((errors.length > 0 ? errors.slice(0, 3) : lines.slice(-3)).join('\n'), 3)
 }
