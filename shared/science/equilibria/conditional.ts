@@ -76,7 +76,7 @@ export function pM(complex: ComplexConstants, conditions: PMConditions = PM_CONV
 
 export interface ComplexErrors {
   readonly logK_se: number
-  /** One per protonation constant; 0 where not known is not accepted: leave the result without an error instead. */
+  /** One per protonation constant; 0 for one that is taken as exact. */
   readonly ligandProtonation_se: readonly number[]
 }
 
@@ -96,6 +96,7 @@ export function pMWithError(complex: ComplexConstants, errors: ComplexErrors | n
   )
   let variance = 0
   for (const [index, se] of [errors.logK_se, ...errors.ligandProtonation_se].entries()) {
+    if (se === 0) continue
     const slope = (shifted(index - 1, step) - shifted(index - 1, -step)) / (2 * step)
     variance += (slope * se) ** 2
   }

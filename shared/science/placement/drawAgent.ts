@@ -4,7 +4,7 @@ import { drawRate, type DrawsRefused } from './drawRate'
 import { rateConditionsOf } from './kinetic'
 import { lossFraction, type Residence } from './loss'
 import { above, below, logNormal, normals, splitLogNormal, type Seed } from './sampling'
-import type { AgentFacts } from './place'
+import type { AgentFacts } from './facts'
 import type { ScreeningProfile } from './profile'
 import type { PlacedQuantity } from './types'
 

@@ -4,7 +4,7 @@
 import { drawAgent, sharedDraws, type AgentDraws } from './drawAgent'
 import { logCovarianceOf, type LogCovariance } from './ellipse'
 import { exactLog } from '../exactMath'
-import { agentFacts, placeAgents, type PlaceOptions } from './place'
+import { allFacts, placeFacts, type PlaceOptions } from './place'
 import { quantileOf, type Seed } from './sampling'
 import type { ScreeningProfile } from './profile'
 import type { AgentEvidence, Interval, Placement } from './types'
@@ -58,10 +58,10 @@ interface Drawn {
 export function drawChances(agents: readonly AgentEvidence[], profile: ScreeningProfile, options: DrawOptions): AgentChances[] {
   const n = options.draws ?? DRAWS
   const shared = sharedDraws(profile, options.seed, n)
-  const withCache = { ...options, cache: options.cache ?? new Map() }
-  const placements = placeAgents(agents, profile, withCache)
-  const drawn: (Drawn | { readonly placement: Placement, readonly refused: string })[] = agents.map((agent, i) => {
-    const draws = drawAgent(agentFacts(agent, profile, withCache), profile, shared)
+  const facts = allFacts(agents, profile, options)
+  const placements = placeFacts(facts, profile)
+  const drawn: (Drawn | { readonly placement: Placement, readonly refused: string })[] = facts.map((one, i) => {
+    const draws = drawAgent(one, profile, shared)
     if (!draws.ok) return { placement: placements[i]!, refused: draws.message }
     return { placement: placements[i]!, draws, ...judgeDraws(draws, profile, placements[i]!.mechanism, n) }
   })
@@ -80,7 +80,12 @@ function canTakePart(p: Placement): boolean {
 }
 
 function judgeDraws(draws: AgentDraws, profile: ScreeningProfile, mechanism: Placement['mechanism'], n: number): Pick<Drawn, 'limits' | 'allMet'> {
-  const met = (values: Float64Array | null, limit: number): Uint8Array | null => values && Uint8Array.from(values, x => (x <= limit ? 1 : 0))
+  const met = (values: Float64Array | null, limit: number): Uint8Array | null => {
+    if (values === null) return null
+    const flags = new Uint8Array(n)
+    for (let d = 0; d < n; d++) flags[d] = values[d]! <= limit ? 1 : 0
+    return flags
+  }
   const limits = {
     workingConc: met(draws.workingConc_mM, profile.limitWorkingConc_mM), loss: met(draws.loss_frac, profile.limitLoss_frac),
     unbound: met(draws.unbound_uM, profile.limitUnbound_uM), freeMetal: met(draws.freeMetal_frac, profile.limitFreeMetal_frac),

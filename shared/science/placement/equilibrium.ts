@@ -1,14 +1,12 @@
 /** From log K evidence to pM and to the fraction still bound at equilibrium in the profile's plasma model. */
-import { boundInPlasma, type BoundInPlasma, type BoundRefused } from '../equilibria/boundInPlasma'
+import { boundInPlasma, type BoundInPlasma } from '../equilibria/boundInPlasma'
 import { pMWithError } from '../equilibria/conditional'
 import { PLASMA_COMPETITORS, type PlasmaCompetitor } from '../equilibria/media'
 import { logInterval } from '../kinetics/firstOrder'
-import { factOf, itemsOf, newestOf, placedFrom, textOf, Z_95 } from './read'
+import { factOf, itemsOf, newestOf, placedFrom, textOf, Z_95, type EvidenceIndex } from './read'
+import type { PlacementCache } from './cache'
 import type { ScreeningProfile } from './profile'
-import type { AgentEvidence, EvidenceItem, PlacedQuantity, PlacementFlag, ValueKind } from './types'
-
-/** Plasma equilibria already worked out, by constants and conditions: kept by the caller from one profile change to the next. */
-export type PlasmaCache = Map<string, BoundInPlasma | BoundRefused>
+import type { EvidenceItem, PlacedQuantity, PlacementFlag, ValueKind } from './types'
 
 export interface EquilibriumPlacement {
   readonly pM: PlacedQuantity | null
@@ -18,11 +16,15 @@ export interface EquilibriumPlacement {
   readonly flags: readonly PlacementFlag[]
 }
 
-interface LigandConstants {
+/** Constants of one ligand with its lanthanide, and what follows from them whatever the profile. */
+export interface LigandFacts {
   readonly item: EvidenceItem
   readonly protonation: readonly number[]
   readonly competitors: Partial<Record<PlasmaCompetitor, number>>
   readonly items: readonly EvidenceItem[]
+  readonly pM: PlacedQuantity
+  /** Names the constants, for the cache. */
+  readonly key: string
 }
 
 const isCompetitor = (metal: string | null): metal is PlasmaCompetitor => PLASMA_COMPETITORS.includes(metal as PlasmaCompetitor)
@@ -42,8 +44,8 @@ function protonationOf(item: EvidenceItem, all: readonly EvidenceItem[]): { valu
 }
 
 /** log K of the lanthanide with its ligand's protonation and what is known of competitors; null where either is missing. */
-function ligandConstants(agent: AgentEvidence, includeUnsigned: boolean): LigandConstants | null {
-  const all = itemsOf(agent.evidence, 'logK', includeUnsigned)
+function ligandFacts(index: EvidenceIndex): LigandFacts | null {
+  const all = itemsOf(index, 'logK')
   const metalOf = (item: EvidenceItem): string | null => textOf(item, 'metal')
   const item = newestOf(all.filter(one => !isCompetitor(metalOf(one)) && metalOf(one) !== 'H'))
   if (item === null) return null
@@ -57,26 +59,33 @@ function ligandConstants(agent: AgentEvidence, includeUnsigned: boolean): Ligand
     competitors[metal] = one.value
     used.push(one)
   }
-  return { item, protonation: protonation.values, competitors, items: used }
+  return {
+    item, protonation: protonation.values, competitors, items: used,
+    pM: placedPM(item, protonation.values), key: JSON.stringify([item.value, protonation.values, competitors]),
+  }
+}
+
+function cachedLigand(index: EvidenceIndex, cache: PlacementCache): LigandFacts | null {
+  const known = cache.ligands.get(index) ?? ligandFacts(index) ?? 'none'
+  cache.ligands.set(index, known)
+  return known === 'none' ? null : known
 }
 
 /** Everything that equilibrium says of an agent under a profile. Values given as evidence serve where nothing can be worked out. */
-export function equilibriumPlacement(agent: AgentEvidence, profile: ScreeningProfile, options: { includeUnsigned: boolean, cache: PlasmaCache }): EquilibriumPlacement {
-  const constants = ligandConstants(agent, options.includeUnsigned)
-  const given = (quantity: string, label: string): PlacedQuantity | null => placedFrom(newestOf(itemsOf(agent.evidence, quantity, options.includeUnsigned)), label)
-  if (constants === null) {
-    const [pM, bound] = [given('pM', 'pM'), given('boundAtEquilibrium_frac', 'Bound at equilibrium')]
-    const ids = [...(pM?.evidenceIds ?? []), ...(bound?.evidenceIds ?? [])]
-    return { pM, bound_frac: bound, plasma: null, items: agent.evidence.filter(item => ids.includes(item.id)), flags: [] }
+export function equilibriumPlacement(index: EvidenceIndex, profile: ScreeningProfile, cache: PlacementCache): EquilibriumPlacement {
+  const ligand = cachedLigand(index, cache)
+  if (ligand === null) {
+    const items = ['pM', 'boundAtEquilibrium_frac'].map(quantity => newestOf(itemsOf(index, quantity)))
+    return { pM: placedFrom(items[0]!, 'pM'), bound_frac: placedFrom(items[1]!, 'Bound at equilibrium'), plasma: null, items: items.filter(item => item !== null), flags: [] }
   }
-  const plasma = solvePlasma(constants, profile, options.cache)
+  const plasma = solvePlasma(ligand, profile, cache)
   return {
-    pM: placedPM(constants), bound_frac: plasma && placedBound(constants, plasma), plasma, items: constants.items,
+    pM: ligand.pM, bound_frac: plasma && placedBound(ligand, plasma), plasma, items: ligand.items,
     flags: plasma && plasma.leftOut.length ? [{ id: 'competitorsLeftOut', sentence: `Equilibrium in plasma: no log K for ${plasma.leftOut.join(', ')}; left out, so less may stay bound.` }] : [],
   }
 }
 
-function placedPM({ item, protonation }: LigandConstants): PlacedQuantity {
+function placedPM(item: EvidenceItem, protonation: readonly number[]): PlacedQuantity {
   const se = item.se ?? (item.interval === null ? null : (item.interval[1] - item.interval[0]) / (2 * Z_95))
   const { value, se: pMSe } = pMWithError(
     { logK: item.value, ligandProtonation: protonation },
@@ -88,30 +97,31 @@ function placedPM({ item, protonation }: LigandConstants): PlacedQuantity {
   }
 }
 
-function solvePlasma(constants: LigandConstants, profile: ScreeningProfile, cache: PlasmaCache): BoundInPlasma | null {
+function solvePlasma(ligand: LigandFacts, profile: ScreeningProfile, cache: PlacementCache): BoundInPlasma | null {
   const totals = {
     ca_mM: profile.plasmaCa_mM, mg_mM: profile.plasmaMg_mM, zn_uM: profile.plasmaZn_uM, cu_uM: profile.plasmaCu_uM, phosphate_mM: profile.plasmaPhosphate_mM,
     carbonate_mM: profile.plasmaCarbonate_mM, citrate_mM: profile.plasmaCitrate_mM, lactate_mM: profile.plasmaLactate_mM, histidine_mM: profile.plasmaHistidine_mM, albumin_mM: profile.plasmaAlbumin_mM,
   }
-  const agent = { logK: constants.item.value, ligandProtonation: constants.protonation, logKCompetitors: constants.competitors }
-  const conditions = { totals, pcH: profile.pH, agent_mM: profile.agentInPlasma_mM }
-  const key = JSON.stringify([agent, conditions])
-  const known = cache.get(key) ?? boundInPlasma(agent, conditions)
-  cache.set(key, known)
+  const key = [ligand.key, profile.pH, profile.agentInPlasma_mM, ...Object.values(totals)].join(' ')
+  const known = cache.plasma.get(key) ?? boundInPlasma(
+    { logK: ligand.item.value, ligandProtonation: ligand.protonation, logKCompetitors: ligand.competitors },
+    { totals, pcH: profile.pH, agent_mM: profile.agentInPlasma_mM },
+  )
+  cache.plasma.set(key, known)
   return known.ok ? known : null
 }
 
 /** A bound on log K bounds the fraction the same way; a competitor left out makes it an upper bound. Both against each other: not known. */
-function placedBound({ item, items }: LigandConstants, plasma: BoundInPlasma): PlacedQuantity | null {
+function placedBound({ item, items }: LigandFacts, plasma: BoundInPlasma): PlacedQuantity | null {
   if (item.kind === '>' && plasma.kind === '<') return null
   const kind: ValueKind = item.kind === '=' ? plasma.kind : item.kind
   return { value: plasma.bound_frac, kind, se: null, interval: null, unit: '', evidenceIds: items.map(one => one.id), label: 'Bound at equilibrium in the plasma model', carried: false }
 }
 
 /** Zinc–phosphate ratio and acid half-life, which are records of their own and never turned into a loss. */
-export function recordQuantities(agent: AgentEvidence, includeUnsigned: boolean): { readonly zincPhosphateRatio: PlacedQuantity | null, readonly acidHalfLife_s: PlacedQuantity | null, readonly items: readonly EvidenceItem[] } {
-  const ratio = newestOf(itemsOf(agent.evidence, 'zincPhosphateRatio', includeUnsigned))
-  const half = newestOf(itemsOf(agent.evidence, 'halfLifeAcid_s', includeUnsigned))
+export function recordQuantities(index: EvidenceIndex): { readonly zincPhosphateRatio: PlacedQuantity | null, readonly acidHalfLife_s: PlacedQuantity | null, readonly items: readonly EvidenceItem[] } {
+  const ratio = newestOf(itemsOf(index, 'zincPhosphateRatio'))
+  const half = newestOf(itemsOf(index, 'halfLifeAcid_s'))
   const acid = placedFrom(half, 'Half-life in acid')
   return {
     zincPhosphateRatio: placedFrom(ratio, 'Zinc–phosphate ratio at 72 h'),

@@ -3,9 +3,9 @@ import { halfLifeOf } from '../kinetics/firstOrder'
 import { evaluateRateLaw, type RateConstant, type RateLaw, type RateResult } from '../kinetics/rateLaw'
 import { RATE_CONSTANT_NAMES, RATE_TERMS, rateFormOf, type CompetitorMetal, type RateConditions, type RateConstantName, type SumConstant } from '../kinetics/rateTerms'
 import { lossOf, type Residence } from './loss'
-import { factOf, itemsOf, textOf, Z_95 } from './read'
+import { factOf, itemsOf, textOf, Z_95, type EvidenceIndex } from './read'
 import type { ScreeningProfile } from './profile'
-import type { AgentEvidence, EvidenceItem, PlacedQuantity, PlacementFlag } from './types'
+import type { EvidenceItem, PlacedQuantity, PlacementFlag } from './types'
 
 export interface KineticPlacement {
   readonly law: RateLaw
@@ -29,10 +29,10 @@ export function rateConditionsOf(profile: ScreeningProfile): RateConditions {
 }
 
 /** The item of each constant that counts: nearest to the profile's temperature, of those the newest. */
-function constantsOf(agent: AgentEvidence, profile: ScreeningProfile, includeUnsigned: boolean): Map<RateConstantName, EvidenceItem> {
+function constantsOf(index: EvidenceIndex, profile: ScreeningProfile): Map<RateConstantName, EvidenceItem> {
   const chosen = new Map<RateConstantName, EvidenceItem>()
   for (const name of RATE_CONSTANT_NAMES) {
-    const items = itemsOf(agent.evidence, name, includeUnsigned)
+    const items = itemsOf(index, name)
     const away = (item: EvidenceItem): number => Math.abs((factOf(item, 'temperature_K') ?? Infinity) - profile.temperature_K)
     const best = items.reduce<EvidenceItem | null>((kept, item) => (kept === null || away(item) < away(kept) || (away(item) === away(kept) && item.id > kept.id) ? item : kept), null)
     if (best) chosen.set(name, best)
@@ -58,8 +58,8 @@ export function correlationOf(items: readonly EvidenceItem[]): (a: string, b: st
 }
 
 /** The rate law of an agent from its evidence; null where it has no rate constant. */
-export function rateLawOf(agent: AgentEvidence, profile: ScreeningProfile, includeUnsigned: boolean): { readonly law: RateLaw, readonly items: readonly EvidenceItem[] } | null {
-  const chosen = constantsOf(agent, profile, includeUnsigned)
+export function rateLawOf(index: EvidenceIndex, profile: ScreeningProfile): { readonly law: RateLaw, readonly items: readonly EvidenceItem[] } | null {
+  const chosen = constantsOf(index, profile)
   if (chosen.size === 0) return null
   const items = [...chosen.values()]
   const metal = items.map(item => textOf(item, 'metal')).find((m): m is CompetitorMetal => m === 'Zn' || m === 'Cu' || m === 'Ca')
@@ -75,8 +75,8 @@ export function rateLawOf(agent: AgentEvidence, profile: ScreeningProfile, inclu
 }
 
 /** Rate, half-life and loss of an agent; a refusal of the rate law comes back as its sentence. */
-export function kineticPlacement(agent: AgentEvidence, profile: ScreeningProfile, includeUnsigned: boolean): { readonly ok: true, readonly kinetic: KineticPlacement } | { readonly ok: false, readonly message: string } {
-  const found = rateLawOf(agent, profile, includeUnsigned)
+export function kineticPlacement(index: EvidenceIndex, profile: ScreeningProfile): { readonly ok: true, readonly kinetic: KineticPlacement } | { readonly ok: false, readonly message: string } {
+  const found = rateLawOf(index, profile)
   if (found === null) return { ok: false, message: 'no rate constant is known' }
   const rate = evaluateRateLaw(found.law, rateConditionsOf(profile))
   if (!rate.ok) return { ok: false, message: rate.message }

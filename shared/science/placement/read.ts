@@ -24,14 +24,34 @@ export function textOf(item: EvidenceItem, key: string): string | null {
   return typeof value === 'string' && value !== '' ? value : null
 }
 
+/** Items that count, by quantity. */
+export type EvidenceIndex = ReadonlyMap<string, readonly EvidenceItem[]>
+
 /**
- * Items of one quantity that may be used: the signed ones, or, where unsigned ones are asked for and no signed one exists, those.
- * Values that are not finite never count.
+ * Sorts evidence by quantity. Of each quantity the signed items count; where unsigned ones are asked for and no signed one exists, those
+ * do. Values that are not finite never count.
  */
-export function itemsOf(evidence: readonly EvidenceItem[], quantity: string, includeUnsigned: boolean): EvidenceItem[] {
-  const all = evidence.filter(item => item.quantity === quantity && Number.isFinite(item.value))
-  const signed = all.filter(item => item.signed)
-  return signed.length > 0 || !includeUnsigned ? signed : all
+export function indexEvidence(evidence: readonly EvidenceItem[], includeUnsigned: boolean): EvidenceIndex {
+  const byQuantity = new Map<string, EvidenceItem[]>()
+  for (const item of evidence) {
+    if (!Number.isFinite(item.value) || !(item.signed || includeUnsigned)) continue
+    const known = byQuantity.get(item.quantity)
+    if (known) known.push(item)
+    else byQuantity.set(item.quantity, [item])
+  }
+  if (includeUnsigned) {
+    for (const [quantity, items] of byQuantity) {
+      const signed = items.filter(item => item.signed)
+      if (signed.length > 0 && signed.length < items.length) byQuantity.set(quantity, signed)
+    }
+  }
+  return byQuantity
+}
+
+const NONE: readonly EvidenceItem[] = []
+
+export function itemsOf(index: EvidenceIndex, quantity: string): readonly EvidenceItem[] {
+  return index.get(quantity) ?? NONE
 }
 
 /** The newest of several items: ids are time-ordered, so the largest id. Null for none. */

@@ -5,9 +5,9 @@
 import { logInterval } from '../kinetics/firstOrder'
 import { nearestItems, targetOf } from './matching'
 import { poolItems, type Pooled } from './pool'
-import { factOf, itemsOf, rootSumSquares } from './read'
+import { factOf, itemsOf, rootSumSquares, type EvidenceIndex } from './read'
 import type { ScreeningProfile } from './profile'
-import type { AgentEvidence, EvidenceItem, MissingItem, PlacedQuantity, SplitMark } from './types'
+import type { EvidenceItem, Mechanism, MissingItem, PlacedQuantity, SplitMark } from './types'
 
 export interface WorkingConcentration {
   readonly quantity: PlacedQuantity
@@ -26,16 +26,16 @@ interface Source {
   readonly target_per_s: number | null
 }
 
-function sourceOf(agent: AgentEvidence, profile: ScreeningProfile): Source {
-  if (agent.mechanism === 'T1') return { quantity: 'r1_per_mM_s', label: 'r1', target_per_s: profile.deltaRate1_per_s }
-  if (agent.mechanism === 'T2') return { quantity: 'r2_per_mM_s', label: 'r2', target_per_s: profile.deltaRate2_per_s }
+function sourceOf(mechanism: Mechanism, profile: ScreeningProfile): Source {
+  if (mechanism === 'T1') return { quantity: 'r1_per_mM_s', label: 'r1', target_per_s: profile.deltaRate1_per_s }
+  if (mechanism === 'T2') return { quantity: 'r2_per_mM_s', label: 'r2', target_per_s: profile.deltaRate2_per_s }
   return { quantity: 'workingConcentration_mM', label: 'working concentration from the detection model', target_per_s: null }
 }
 
 /** C_w of an agent under a profile, or what is missing for it. */
-export function workingConcentration(agent: AgentEvidence, profile: ScreeningProfile, includeUnsigned: boolean): { readonly ok: true, readonly working: WorkingConcentration } | { readonly ok: false, readonly missing: MissingItem } {
-  const source = sourceOf(agent, profile)
-  const all = itemsOf(agent.evidence, source.quantity, includeUnsigned)
+export function workingConcentration(index: EvidenceIndex, mechanism: Mechanism, profile: ScreeningProfile): { readonly ok: true, readonly working: WorkingConcentration } | { readonly ok: false, readonly missing: MissingItem } {
+  const source = sourceOf(mechanism, profile)
+  const all = itemsOf(index, source.quantity)
   const pooled = poolItems(nearestItems(all, targetOf(profile)))
   if (pooled === null) return { ok: false, missing: missingText(source, profile, all.length) }
   const toConcentration = (value: number): number => (source.target_per_s === null ? value : source.target_per_s / value)
@@ -72,8 +72,8 @@ export interface RelaxivityRatio {
 /**
  * r2/r1 at the profile's condition; null unless both are measured there. A scale error that both share cancels.
  */
-export function relaxivityRatio(agent: AgentEvidence, profile: ScreeningProfile, includeUnsigned: boolean): RelaxivityRatio | null {
-  const [r1, r2] = ['r1_per_mM_s', 'r2_per_mM_s'].map(quantity => poolItems(nearestItems(itemsOf(agent.evidence, quantity, includeUnsigned), targetOf(profile))))
+export function relaxivityRatio(index: EvidenceIndex, profile: ScreeningProfile): RelaxivityRatio | null {
+  const [r1, r2] = ['r1_per_mM_s', 'r2_per_mM_s'].map(quantity => poolItems(nearestItems(itemsOf(index, quantity), targetOf(profile))))
   if (!r1 || !r2 || r1.kind !== '=' || r2.kind !== '=') return null
   const value = r2.value / r1.value
   const items = [...r1.items, ...r2.items]
