@@ -10,6 +10,9 @@ export interface FigureWords {
   caption: string
 }
 
+/** Notation on one line, for titles and text alternatives. */
+const plain = (label: string): string => label.replace(/[_{}]/g, '')
+
 /** Rates over concentration with line, band and what was left out; null where there is no series to draw. */
 export function seriesFigureOf(outcome: AnalysisOutcome, words: FigureWords): FigureSpec | null {
   if (!outcome.ok) return null
@@ -17,7 +20,7 @@ export function seriesFigureOf(outcome: AnalysisOutcome, words: FigureWords): Fi
   const used = series.points.filter(point => point.excluded === null)
   const out = series.points.filter(point => point.excluded !== null)
   return {
-    id: 'series', title: `${words.rate.label} over concentration`, text: seriesText(series, words),
+    id: 'series', title: `${plain(words.rate.label)} over concentration`, text: seriesText(series, words),
     caption: `${words.caption} Bars are ±1 SE, the band is the 95 % interval of the line.`,
     x: { label: 'Concentration', unit: 'mM', scale: 'linear' }, y: { label: words.rate.label, unit: words.rate.unit, scale: 'linear' },
     layers: seriesLayers(series, used, out, words),
@@ -44,7 +47,7 @@ function seriesText({ headline, points }: SeriesResult, { rate }: FigureWords): 
   const out = points.filter(point => point.excluded !== null).length
   const leftOut = out === 0 ? '' : ` ${out} of them left out.`
   const se = headline.se === null ? '' : ` ± ${headline.se.toPrecision(2)}`
-  return `${rate.label} of ${points.length} tubes rises with concentration by ${headline.value.toPrecision(4)}${se} per mM.${leftOut}`
+  return `${plain(rate.label)} of ${points.length} tubes rises with concentration by ${headline.value.toPrecision(4)}${se} per mM.${leftOut}`
 }
 
 function seriesTable({ points }: SeriesResult, { rate }: FigureWords): FigureSpec['table'] {
@@ -87,5 +90,5 @@ function tubeText({ label, points, headline, refusal }: TubeResult): string {
   const leftOut = out === 0 ? '' : `, ${out} of them left out`
   if (headline === null) return `${label}: ${points.length} points${leftOut}; ${refusal?.message ?? 'no fit.'}`
   const se = headline.se === null ? '' : ` ± ${headline.se.toPrecision(2)}`
-  return `${label}: ${points.length} points${leftOut}; ${headline.label} ${headline.value.toPrecision(4)}${se} ${headline.unit}.`
+  return `${label}: ${points.length} points${leftOut}; ${plain(headline.label)} ${headline.value.toPrecision(4)}${se} ${headline.unit}.`
 }

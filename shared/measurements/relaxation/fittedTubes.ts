@@ -30,8 +30,8 @@ function tubeResult(tube: SeriesTube, { exclusions, conditions }: AnalysisInput)
   if (mean === null) {
     return { ...base, headline: null, parameters: [], refusal: { reason: 'tooFewPoints', message: 'No value of this tube is left.', accepted: 'At least one value.' }, points, flags: [] }
   }
-  const asRate: NamedQuantity = { name: rate, label: `R${digit}`, unit: 's^-1', kind: '=', evidenceId: null, ...mean }
-  const asTime = { ...rateOf(asRate, time, `T${digit}`), unit: 's' }
+  const asRate: NamedQuantity = { name: rate, label: `R_${digit}`, unit: 's^-1', kind: '=', evidenceId: null, ...mean }
+  const asTime = { ...rateOf(asRate, time, `T_${digit}`), unit: 's' }
   return { ...base, headline: asTime, parameters: [asTime, asRate], refusal: null, points, flags: flagsOf(tube, mean) }
 }
 

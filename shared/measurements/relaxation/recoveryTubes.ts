@@ -86,7 +86,7 @@ function tubeResult(parts: Parts): TubeResult {
   const named = fit.parameters.map(namedParameter)
   const t1 = named.find(parameter => parameter.name === 't1_s') ?? null
   return {
-    ...base, headline: t1, parameters: t1 === null ? named : [...named, rateOf(t1, 'rate1_per_s', 'R1')], refusal: null, points: analysedPoints(data.x, signal, fit, left.points),
+    ...base, headline: t1, parameters: t1 === null ? named : [...named, rateOf(t1, 'rate1_per_s', 'R_1')], refusal: null, points: analysedPoints(data.x, signal, fit, left.points),
     curve: curveOf(fit, parts), ...flagsOf(fit, signal, parts), statistics: statisticsOf(fit), secondOpinion: secondOpinionOf(fit),
   }
 }

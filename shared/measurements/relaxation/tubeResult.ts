@@ -4,8 +4,11 @@ import type { AnalysedPoint, FitStatistics, SecondOpinionResult } from '../types
 
 /** A fitted parameter as tables show it. */
 export function namedParameter({ name, label, unit, value, se, interval, atBound }: FittedParameter): NamedQuantity {
-  return { name, label, unit, value, kind: '=', se, interval: interval && [interval[0], interval[1]], evidenceId: null, atBound }
+  return { name, label: inNotation(label), unit, value, kind: '=', se, interval: interval && [interval[0], interval[1]], evidenceId: null, atBound }
 }
+
+/** 'T1' as 'T_1', so that screens lower the digit. */
+const inNotation = (label: string): string => label.replace(/^([A-Z])(\d)$/, '$1_$2')
 
 /** 1/T with its error, from T with its error: se/T². The interval is that of T turned over, and so not symmetric. */
 export function rateOf({ value, se, interval }: NamedQuantity, name: string, label: string): NamedQuantity {

@@ -1,0 +1,18 @@
+import { relaxFitted } from './relaxFitted'
+import { relaxT1Ir } from './relaxT1Ir'
+import type { MeasurementKind } from './types'
+
+/** Every kind of measurement, by id; the order is that of the choice on the upload page. Services take the record as an argument. */
+export const MEASUREMENTS: Readonly<Record<string, MeasurementKind>> = Object.fromEntries([relaxT1Ir, relaxFitted].map(kind => [kind.kind, kind]))
+
+/** The kind of an id that came from outside; null when there is none. */
+export function findMeasurement(kinds: Readonly<Record<string, MeasurementKind>>, id: string): MeasurementKind | null {
+  return Object.hasOwn(kinds, id) ? kinds[id] ?? null : null
+}
+
+/** @throws Error for an id that is not registered: for ids read from our own tables */
+export function measurement(id: string): MeasurementKind {
+  const kind = findMeasurement(MEASUREMENTS, id)
+  if (kind === null) throw new Error(`No measurement kind is called ${id}.`)
+  return kind
+}
