@@ -107,5 +107,7 @@ async function appendLink(deps: Deps, command: Command, trx: Knex.Transaction, e
 
 /** SHA-256 over the canonical text of a link with the hash before it: whoever changes a row must change every later one. */
 export function linkHash(link: { chainId: string, seq: number, at: Date, personId: string | null, command: string, subject: string, payload: string, previousHash: Buffer }): Buffer {
-  return sealed({ ...link, at: link.at.toISOString(), previousHash: link.previousHash.toString('hex') }).hash
+  // Named one by one: a stored link has more fields than are hashed.
+  const { chainId, seq, at, personId, command, subject, payload, previousHash } = link
+  return sealed({ chainId, seq, at: at.toISOString(), personId, command, subject, payload, previousHash: previousHash.toString('hex') }).hash
 }

@@ -23,5 +23,6 @@ export async function verifyAudit({ db }: Pick<Deps, 'db'>, chainId: string): Pr
   }
   const head = await auditHead(db, chainId)
   if ((head?.seq ?? 0) !== seq) return { whole: false, links: seq, brokenAt: seq + 1, why: 'links at the end are missing' }
+  if (head && !head.hash.equals(previous)) return { whole: false, links: seq - 1, brokenAt: seq, why: 'the last link is not the one that was written' }
   return { whole: true, links: seq }
 }
