@@ -102,8 +102,11 @@ export function fitLine(data: LineData, { level = 0.95 }: LineOptions = {}): Lin
   }
 }
 
+/** What a confidence band needs of a line, however it was fitted. */
+export type BandLine = Pick<LineDone, 'slope' | 'intercept' | 'slopeSe' | 'interceptSe' | 'covariance' | 'dof' | 'level'>
+
 /** Value of the line at x with the half-width of its confidence band; null where the line has no interval. */
-export function lineBand(line: LineDone, x: number): { value: number, halfWidth: number | null } {
+export function lineBand(line: BandLine, x: number): { value: number, halfWidth: number | null } {
   const value = line.intercept + line.slope * x
   if (line.dof < 1 || line.slopeSe === null || line.interceptSe === null || line.covariance === null) return { value, halfWidth: null }
   const variance = line.interceptSe ** 2 + 2 * x * line.covariance + (x * line.slopeSe) ** 2

@@ -49,6 +49,8 @@ interface Turn {
 }
 
 const TURNS = 200
+/** Relative change of the slope below which it has settled; the last digits may swing between doubles. */
+const SETTLED = 1e-13
 
 /**
  * Straight line through points whose x and y both have errors of their own.
@@ -64,12 +66,9 @@ export function fitYork(data: YorkData, { level = 0.95 }: { level?: number } = {
     const turn = improve(data, slope)
     iterations++
     if (!Number.isFinite(turn.slope)) return { ok: false, reason: 'notConverged', message: 'The slope ran away: the errors given leave no line.' }
-    if (Math.abs(turn.slope - slope) <= 1e-15 * Math.abs(turn.slope)) return report(data, improve(data, turn.slope), level, iterations)
-    // In the last digit the slope may swing between two doubles: then it has settled.
-    if (iterations >= TURNS) {
-      if (Math.abs(turn.slope - slope) <= 1e-12 * Math.abs(turn.slope)) return report(data, turn, level, iterations)
-      return { ok: false, reason: 'notConverged', message: `The slope did not settle in ${TURNS} turns.` }
-    }
+    const isSettled = Math.abs(turn.slope - slope) <= SETTLED * Math.abs(turn.slope)
+    if (isSettled) return report(data, improve(data, turn.slope), level, iterations)
+    if (iterations >= TURNS) return { ok: false, reason: 'notConverged', message: `The slope did not settle in ${TURNS} turns.` }
     slope = turn.slope
   }
 }
