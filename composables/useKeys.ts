@@ -3,7 +3,6 @@ import type { ShallowRef } from 'vue'
 /** A single key that does something on this screen. `key` as in KeyboardEvent.key; letters without regard to case. */
 export interface KeyBinding { key: string, words: string, run: (event: KeyboardEvent) => void, group?: string, enabled?: () => boolean }
 
-const YEAR_s = 60 * 60 * 24 * 365
 /** Boxes in which a letter is text or already has a meaning of its own. */
 const TYPING = 'input, textarea, select, [contenteditable=""], [contenteditable="true"], [role="textbox"], [role="combobox"], [role="listbox"], [role="menu"], [role="dialog"], [role="alertdialog"]'
 
@@ -19,8 +18,8 @@ export function keyMatches(binding: KeyBinding, event: KeyboardEvent): boolean {
 
 /** Whether single keys are on, kept for a year (WCAG 2.1.4: they can be switched off). */
 export function useKeySwitch() {
-  const cookie = useCookie<'on' | 'off'>('lanthorn-keys', { maxAge: YEAR_s, sameSite: 'lax', path: '/', default: () => 'on' })
-  return computed<boolean>({ get: () => cookie.value !== 'off', set: (on) => { cookie.value = on ? 'on' : 'off' } })
+  const kept = useLastingChoice('lanthorn-keys')
+  return computed<boolean>({ get: () => kept.value !== 'off', set: (on) => { kept.value = on ? 'on' : 'off' } })
 }
 
 /** Every binding alive now, in the order of the screens that registered them; KeyList shows it. */
