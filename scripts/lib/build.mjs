@@ -37,6 +37,6 @@ function isWhole(output) {
 function firstErrors(text) {
   // eslint-disable-next-line no-control-regex -- colours are escape sequences
   const lines = text.replaceAll(/\u001B\[[\d;]*m/g, '').split('\n')
-  const errors = lines.filter(line => /error/i.test(line) && !/✗ Build failed|^\s+at /.test(line))
+  const errors = lines.filter(line => /\bERROR\b|\bError\b.*:/.test(line) && !line.includes('✗ Build failed'))
   return lastLines((errors.length > 0 ? errors.slice(0, 3) : lines.slice(-3)).join('\n'), 3)
 }

@@ -26,6 +26,7 @@ export function ensureSecrets(data, env = process.env) {
   else {
     chmodSync(path, 0o600)
   }
+  /** @type {Record<string, string>} */
   const secrets = {}
   for (const [name, { isGood, rule }] of Object.entries(SECRETS)) {
     secrets[name] = env[name] || kept[name]
