@@ -7,7 +7,7 @@ export default defineRoute({
   variant: 'file',
   permission: 'upload.bytes',
   params: UploadParams,
-  output: z.instanceof(Uint8Array),
+  output: z.custom<Uint8Array>(value => value instanceof Uint8Array),
   async run({ event, params, actor, programmeId, scope }) {
     return sendFile(event, await readUploadFile(useDeps(), { actor, programmeId, scope, id: params.id }))
   },
