@@ -54,3 +54,12 @@ export async function agentDecisions(db: Knex, programmeId: string, complexId?: 
     .orderBy('d.at', 'desc').orderBy('d.id', 'desc').select('d.id', 'd.complex_id', 'd.outcome', 'd.reasons', 'p.name', 'd.at') as { id: Buffer, complex_id: Buffer, outcome: AgentDecisionRow['outcome'], reasons: string, name: string, at: Date }[]
   return rows.map(row => ({ id: fromBinary(row.id), complexId: fromBinary(row.complex_id), outcome: row.outcome, reasons: row.reasons, personName: row.name, at: row.at }))
 }
+
+/** Number of series of each agent that stand. */
+export async function countSeries(db: Knex, programmeId: string): Promise<Map<string, number>> {
+  const rows = await db('series as s').where('s.programme_id', toBinary(programmeId))
+    .whereNotExists(db('series_event as w').whereRaw('w.series_id = s.id').where('w.event', 'withdrawn').select(db.raw('1')))
+    .whereNotExists(db('series as r').whereRaw('r.replaces = s.id').select(db.raw('1')))
+    .groupBy('s.complex_id').select('s.complex_id').count({ n: '*' }) as unknown as { complex_id: Buffer, n: number }[]
+  return new Map(rows.map(row => [fromBinary(row.complex_id), Number(row.n)]))
+}

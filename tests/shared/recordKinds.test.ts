@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest'
+import { evidenceQuantity } from '../../shared/evidence/quantities'
 import type { RecordContext } from '../../shared/evidence/records/define'
 import type { RecordEntry } from '../../shared/evidence/records/entry'
 import { RECORD_KINDS } from '../../shared/evidence/records/index'
@@ -71,8 +72,8 @@ describe('stability constants as a record', () => {
 describe('a rate law as a record', () => {
   it('emits each constant with its bound, its own unit and the measured range', () => {
     const evidence = emitted(rateLaw!, rateLawEntry({ k0_per_s: { value: 5e-8, kind: '<' }, k1_per_M_s: { value: 0.58, se: 0.04 }, kZn_per_M_s: { value: 0.056, se: 0.006 } }))
-    expect(evidence.k0_per_s!.value).toMatchObject({ kind: '<', value: 5e-8, se: null, interval: null, unit: 's^{-1}' })
-    expect(evidence.k1_per_M_s!.value).toMatchObject({ kind: '=', value: 0.58, se: 0.04, unit: 'M^{-1} s^{-1}' })
+    expect(evidence.k0_per_s!.value).toMatchObject({ kind: '<', value: 5e-8, se: null, interval: null, unit: evidenceQuantity('k0_per_s').unit })
+    expect(evidence.k1_per_M_s!.value).toMatchObject({ kind: '=', value: 0.58, se: 0.04, unit: evidenceQuantity('k1_per_M_s').unit })
     expect(evidence.k1_per_M_s!.conditions).toMatchObject({ temperature_K: 298.15, pHMin: 3.5, pHMax: 5.2 })
     expect(evidence.k2_per_M2_s).toBeUndefined()
   })

@@ -7,4 +7,4 @@ import { zincPhosphate } from './zincPhosphate'
 /** Registered kinds of typed records, in the order they are offered. */
 export const RECORD_KINDS: Readonly<Record<string, RecordKind>> = Object.fromEntries([thermo, rateLaw, acidHalfLife, zincPhosphate].map(kind => [kind.kind, kind]))
 
-export const recordKind = (kind: string): RecordKind | null => RECORD_KINDS[kind] ?? null
+export const recordKind = (kind: string): RecordKind | null => (Object.hasOwn(RECORD_KINDS, kind) ? RECORD_KINDS[kind] ?? null : null)
