@@ -1,7 +1,7 @@
 import { AppError } from '../../shared/errors'
 import type { MeasurementKind } from '../../shared/measurements/types'
 import type { KindDto } from '../../shared/schemas/preset'
-import { fromStored, unitOf } from '../../shared/science/units'
+import { toShown } from '../../shared/measurements/shownCondition'
 import type { Deps } from '../platform/deps'
 
 /** Every measurement kind as its forms and menus need it, in the order of the registry. */
@@ -22,13 +22,8 @@ function kindDto(kind: MeasurementKind): KindDto {
     models: kind.models.map(({ id, title }) => ({ id, title })), columns: kind.columns.map(({ stem, label, dimension, required, help }) => ({ stem, label, dimension, required, help })),
     conditions: kind.conditions.map(spec => ({
       key: spec.key, label: spec.label, type: spec.type, unit: spec.shownUnit ?? null, required: spec.required, help: spec.help,
-      choices: (spec.choices ?? []).map(({ value, label }) => ({ value, label })), dimension: spec.dimension ?? null, min: shown(spec, spec.min), max: shown(spec, spec.max),
+      choices: (spec.choices ?? []).map(({ value, label }) => ({ value, label })), dimension: spec.dimension ?? null, min: spec.min === undefined ? null : toShown(spec, spec.min), max: spec.max === undefined ? null : toShown(spec, spec.max),
       when: spec.when ? { key: spec.when.key, is: [...spec.when.is] } : null,
     })),
   }
-}
-
-function shown({ dimension, shownUnit }: MeasurementKind['conditions'][number], value: number | undefined): number | null {
-  if (value === undefined) return null
-  return dimension && shownUnit !== undefined ? Number(fromStored(value, unitOf(shownUnit, dimension)).toPrecision(6)) : value
 }

@@ -1,9 +1,9 @@
 import { AppError } from '../../shared/errors'
 import { formatFixed, NBSP } from '../../shared/format'
+import { toShown } from '../../shared/measurements/shownCondition'
 import type { ConditionSpec } from '../../shared/measurements/types'
 import type { Scope } from '../../shared/permissions'
 import type { SeriesDto } from '../../shared/schemas/series'
-import { fromStored, unitOf } from '../../shared/science/units'
 import type { Deps } from '../platform/deps'
 import { hex } from '../platform/hashes'
 import { agentMark } from '../queries/agentMarks'
@@ -50,8 +50,7 @@ function conditionDto(spec: ConditionSpec, { conditions }: SeriesRow): SeriesDto
 /** A stored condition in the unit that the trade writes: 310.15 K as 37.0 °C. */
 export function shownCondition(spec: ConditionSpec, value: number | string): string {
   if (typeof value === 'string') return spec.choices?.find(choice => choice.value === value)?.label ?? value
-  const shown = spec.dimension && spec.shownUnit !== undefined ? fromStored(value, unitOf(spec.shownUnit, spec.dimension)) : value
-  // Six digits: what was typed comes back, without the last bits of the conversion.
+  const shown = toShown(spec, value)
   const digits = String(Number(shown.toPrecision(6))).split('.')[1]?.length ?? 0
   return `${formatFixed(shown, digits)}${spec.shownUnit ? `${NBSP}${spec.shownUnit}` : ''}`
 }

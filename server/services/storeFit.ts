@@ -63,8 +63,14 @@ async function write(deps: Deps, work: Work, { job, programmeId, payload, loaded
   for (const one of payload.exclusions) await insertExclusion(work.trx, { ...one, at: new Date(one.at), id: work.id(), programmeId, fitId })
   if (outcome.ok) {
     for (const draft of kind.evidence(outcome, input)) {
-      await insertEvidence(work.trx, { id: work.id(), programmeId, complexId: series.complexId, batchId: series.batchId, origin: { kind: 'fit', id: fitId }, draft: EvidenceDraft.parse(draft), at: work.now })
+      await insertEvidence(work.trx, { id: work.id(), programmeId, complexId: series.complexId, batchId: series.batchId, origin: { kind: 'fit', id: fitId }, draft: ofBatch(draft, series.batchId), at: work.now })
     }
   }
   return { fitId, versionNo, outcome: outcome.ok ? 'ok' : 'refused', resultHash: hex(result.hash) }
+}
+
+/** A kind names a shared error by what the form says of the stock; two batches that say the same are still two stocks. */
+function ofBatch(draft: EvidenceDraft, batchId: string): EvidenceDraft {
+  const { covarianceGroup, ...rest } = EvidenceDraft.parse(draft)
+  return { ...rest, covarianceGroup: covarianceGroup && { ...covarianceGroup, id: `batch:${batchId}/${covarianceGroup.id}` } }
 }

@@ -1,5 +1,5 @@
 import type { Conditions, ConditionSpec, MeasurementKind, UploadProblem } from './types'
-import { fromStored, unitOf } from '../science/units'
+import { toShown } from './shownCondition'
 import { acceptedFor, readDate, type FoundCondition } from './tabular/metadata'
 import { blocks } from './tabular/problem'
 
@@ -44,7 +44,7 @@ function checkCondition(spec: ConditionSpec, value: number | string | null): Upl
 
 function acceptedWithRange(spec: ConditionSpec): string {
   if (spec.type !== 'number' || (spec.min === undefined && spec.max === undefined)) return acceptedFor(spec)
-  const shown = (value: number) => String(Number((spec.dimension && spec.shownUnit ? fromStored(value, unitOf(spec.shownUnit, spec.dimension)) : value).toPrecision(6)))
+  const shown = (value: number) => String(Number(toShown(spec, value).toPrecision(6)))
   const ends = [spec.min === undefined ? null : `from ${shown(spec.min)}`, spec.max === undefined ? null : `up to ${shown(spec.max)}`]
   return [acceptedFor(spec), ...ends.filter(end => end !== null)].join(' ')
 }
