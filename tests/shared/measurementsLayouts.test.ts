@@ -53,6 +53,10 @@ function fileOf(rows: string[][], { delimiter, mark, lineEnd, metadata, decimal 
   return new TextEncoder().encode(mark ? `\uFEFF${text}` : text)
 }
 
+/** More runs where time is given. */
+const runs = process.env.LANTHORN_TEST === 'full' ? 300 : 60
+const TIMEOUT = 60_000
+
 describe('every layout, mark, decimal mark, byte-order mark and line end gives the same tubes', () => {
   it.each(Object.keys(WRITERS))('%s [property, seed 20261130]', (layout) => {
     fc.assert(fc.property(phantom, style, (given, how) => {
@@ -62,8 +66,8 @@ describe('every layout, mark, decimal mark, byte-order mark and line end gives t
         conc_mM: tube.conc_mM, rows: given.ti_ms.map((ti, i) => [ti / 1000, Number((tube.signals[i] ?? 0).toFixed(2))]),
       })))
       if (how.metadata) expect(understood.conditions).toMatchObject({ b0_T: 3, temperature_K: 310.15, pH: 7.4 })
-    }), { seed: 20261130, numRuns: 150 })
-  })
+    }), { seed: 20261130, numRuns: runs })
+  }, TIMEOUT)
 
   it('finds the mark and the decimal mark by itself wherever a decimal stands in the file [property, seed 20261130]', () => {
     fc.assert(fc.property(phantom, style, fc.constantFrom(...Object.keys(WRITERS)), (given, how, layout) => {
@@ -72,6 +76,6 @@ describe('every layout, mark, decimal mark, byte-order mark and line end gives t
       expect(understood.delimiter).toBe(how.delimiter)
       expect(understood.decimal).toBe(how.decimal === ',' ? 'comma' : 'point')
       expect(understood.layout).toBe(layout.replace('WithRow', ''))
-    }), { seed: 20261130, numRuns: 200 })
-  })
+    }), { seed: 20261130, numRuns: runs })
+  }, TIMEOUT)
 })

@@ -4,7 +4,7 @@ import type { ColumnSpec } from '../types'
 export const TUBE_COLUMNS: readonly ColumnSpec[] = [
   {
     stem: 'tube', field: 'tube', label: 'Tube', dimension: 'text', role: 'tube', required: false, help: 'Name or number of the tube',
-    synonyms: ['tube', 'vial', 'sample', 'tube name', 'tube no', 'tube number', 'tube id', 'sample name', 'sample id', 'label', 'name', 'position', 'well', 'region', 'roi', 'phantom'],
+    synonyms: ['tube', 'vial', 'sample', 'tube name', 'tube no', 'tube number', 'tube id', 'sample name', 'sample id', 'label', 'name', 'position', 'well', 'region', 'roi', 'phantom', 'sphere', 'bottle', 'compartment', 'cuvette', 'no', 'nr', '#', 'id'],
   },
   {
     stem: 'agent', field: 'agent', label: 'Agent', dimension: 'text', role: 'agent', required: false, help: 'Code of the agent as registered; empty for a blank',

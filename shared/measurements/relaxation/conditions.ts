@@ -31,7 +31,7 @@ export const SAMPLE_CONDITIONS: readonly ConditionSpec[] = [
     choices: [{ value: 'activity', label: 'activity (glass electrode, buffers)', synonyms: ['activity', 'nist', 'electrode'] }, { value: 'concentration', label: 'concentration (-log [H])', synonyms: ['concentration', 'p[h]'] }, { value: 'nominal', label: 'as labelled on the medium', synonyms: ['nominal', 'label'] }],
   },
   {
-    key: 'medium', label: 'Medium', type: 'choice', required: true, help: 'What the tubes are filled with', synonyms: ['medium', 'matrix', 'solvent', 'sample medium'],
+    key: 'medium', label: 'Medium', type: 'choice', wordsKey: 'mediumDetail', required: true, help: 'What the tubes are filled with', synonyms: ['medium', 'matrix', 'solvent', 'sample medium'],
     choices: [
       { value: 'water', label: 'water', synonyms: ['h2o', 'pure water', 'deionised water', 'distilled water'] }, { value: 'buffer', label: 'buffer', synonyms: ['hepes', 'pbs', 'tris', 'mes', 'phosphate buffer', 'hepes buffer'] },
       { value: 'saline', label: 'saline', synonyms: ['nacl', 'physiological saline', '0.9 % nacl'] }, { value: 'plasma', label: 'plasma', synonyms: ['human plasma', 'bovine plasma', 'blood plasma'] },

@@ -9,7 +9,7 @@ import { fitTubes, type PooledNoise } from '../../science/relaxometry/tubes'
 import type { AnalysisInput, Conditions, SeriesTube, TubeResult } from '../types'
 import { leftOutOf, type LeftOut } from './exclusions'
 import { signalsOf, tisOf } from './recoveryForm'
-import { analysedPoints, curveOver, namedParameter, rateOf, secondOpinionOf, statisticsOf } from './tubeResult'
+import { analysedPoints, curveOver, namedParameter, passedText, rateOf, secondOpinionOf, statisticsOf } from './tubeResult'
 
 /** The recovery model that a timing calls for. */
 export function recoveryModelFor(conditions: Conditions): string {
@@ -106,7 +106,7 @@ function flagsOf(fit: FitDone, signal_au: readonly number[], { one: { tube, data
   const raised = reports.filter(report => report.state === 'raised')
   return {
     flags: raised.map(({ id, title, detail, advice }) => ({ id, title, sentence: [detail, advice].filter(Boolean).join(' '), tubeNo: tube.tubeNo })),
-    passed: reports.filter(report => report.state === 'passed').map(report => report.title),
+    passed: reports.filter(report => report.state === 'passed').map(({ title, detail }) => passedText(title, detail)),
   }
 }
 

@@ -4,6 +4,7 @@ import { SERIES_FLAGS } from '../../science/relaxometry/seriesFlags'
 import type { NamedQuantity } from '../../evidence/quantity'
 import type { Conditions, Flag, SeriesResult } from '../types'
 import type { TubeRate } from './tubeRate'
+import { passedText } from './tubeResult'
 import { MIN_TUBES } from './tubeSet'
 
 export interface SlopeDone { ok: true, series: SeriesResult, line: RelaxivityDone, used: TubeRate[], flags: Flag[], passed: string[] }
@@ -24,7 +25,7 @@ export function fitSlope(rates: readonly TubeRate[], conditions: Conditions, dig
     ok: true, line, used, series: seriesResult(rates, used, line, digit),
     flags: reports.filter(report => report.state === 'raised')
       .map(({ id, title, detail, advice }) => ({ id, title, sentence: [namedTubes(detail ?? '', used), advice].filter(Boolean).join(' '), tubeNo: null })),
-    passed: reports.filter(report => report.state === 'passed').map(report => report.title),
+    passed: reports.filter(report => report.state === 'passed').map(({ title, detail }) => passedText(title, namedTubes(detail ?? '', used))),
   }
 }
 

@@ -47,6 +47,9 @@ export function analysedPoints(x: readonly number[], y: readonly number[], fit: 
   })
 }
 
+/** A test that was passed, with what it saw: 'Outlier: no. Point 3 has the largest ...'. */
+export const passedText = (title: string, detail: string | null): string => `${title}: no.${detail ? ` ${detail}` : ''}`
+
 const CURVE_POINTS = 97
 
 /** Model values over the range of the points, denser where the recovery bends: spaced by the square of their index. */

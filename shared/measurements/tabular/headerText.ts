@@ -57,7 +57,15 @@ export function matchHeader(text: string, specs: readonly ColumnSpec[], present:
       fallback ??= { spec, unit: null, unknownUnit: spec.dimension === 'text' ? null : reading.unit }
     }
   }
-  return fallback
+  return fallback ?? matchByUnit(text, specs)
+}
+
+/** A head that is a substance with a unit of concentration behind it ('NiCl2 (mM)', 'Gd-DOTA / µM') is a column of concentrations. */
+function matchByUnit(text: string, specs: readonly ColumnSpec[]): HeaderMatch | null {
+  const spec = specs.find(candidate => candidate.role === 'conc')
+  const match = /^\s*([^()[\]/]*[A-Za-z][^()[\]/]*)(?:[([]([^()[\]]+)[)\]]|\s\/\s(.+))\s*$/.exec(text)
+  const unit = spec && spec.dimension !== 'text' ? findUnit(match?.[2] ?? match?.[3] ?? '', spec.dimension) : null
+  return spec && unit ? { spec, unit, unknownUnit: null } : null
 }
 
 export function findUnit(text: string, dimension: Dimension): Unit | null {

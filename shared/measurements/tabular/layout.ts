@@ -6,7 +6,7 @@ import type { Unit } from '../../science/units'
 
 export type Layout = MeasurementKind['layouts'][number]
 
-const HEADER_ROWS_LOOKED_AT = 200
+const HEADER_ROWS_LOOKED_AT = 60
 
 /** A number across the head of a table: '50', '50 ms', 'TI = 50 ms'. */
 export interface HeadNumber { text: string, unit: Unit | null, unitText: string | null }

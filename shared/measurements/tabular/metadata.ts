@@ -97,12 +97,18 @@ function matchCondition(key: string, specs: readonly ConditionSpec[]): Condition
 function readValue(line: MetadataLine, { spec, unitText }: ConditionMatch): { key: string, value: number | string }[] | null {
   if (spec.type === 'text') return [{ key: spec.key, value: line.value.slice(0, 500) }]
   if (spec.type === 'date') return single(spec.key, readDate(line.value))
-  if (spec.type === 'choice') return single(spec.key, readChoice(line.value, spec))
+  if (spec.type === 'choice') return withWords(single(spec.key, readChoice(line.value, spec)), line.value, spec)
   return readNumbers(line.value, spec, unitText)
 }
 
 function single(key: string, value: string | null): { key: string, value: string }[] | null {
   return value === null ? null : [{ key, value }]
+}
+
+/** Words of the file that say more than the choice they were read as are kept beside it. */
+function withWords(values: { key: string, value: string }[] | null, text: string, { wordsKey, choices }: ConditionSpec): { key: string, value: string }[] | null {
+  const isPlain = choices?.some(choice => [choice.value, choice.label].some(name => plainWords(name) === plainWords(text)))
+  return values === null || wordsKey === undefined || isPlain ? values : [...values, { key: wordsKey, value: text.slice(0, 500) }]
 }
 
 /** A day written without doubt: 2026-11-30, or 30.11.2026. With slashes day and month cannot be told apart. */
