@@ -2,6 +2,7 @@ import { readFileSync } from 'node:fs'
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import { compileSystem, type EquilibriumSystem } from '#shared/science/equilibria/system'
+import { sharesOf, sweepPcH } from '#shared/science/equilibria/speciation'
 import { BALANCE_TOLERANCE, solveSystem } from '#shared/science/equilibria/solve'
 
 interface Case extends EquilibriumSystem { free_M: Record<string, number> }
@@ -127,5 +128,32 @@ describe('speciation solver', () => {
     })
     if (!compiled.ok) throw new Error(compiled.message)
     expect(solveSystem(compiled).ok).toBe(false)
+  })
+})
+
+describe('species against pH', () => {
+  const species = [
+    { name: 'ML', stoichiometry: { M: 1, L: 1 }, logBeta: 17.35 },
+    ...[10.17, 16.28, 18.96, 20.96].map((logBeta, j) => ({ name: `H${j + 1}L`, stoichiometry: { L: 1, H: j + 1 }, logBeta })),
+  ]
+  const components = [{ name: 'M', total_M: 1e-3 }, { name: 'L', total_M: 1e-3 }]
+  const pcH = Array.from({ length: 29 }, (_, i) => i * 0.5)
+
+  it('gives the same point by point as from scratch, and shares of the metal that sum to 1 [EDTA with gadolinium]', () => {
+    const sweep = sweepPcH({ components, species, pcH })
+    if (!sweep.ok) throw new Error(sweep.message)
+    const shares = sharesOf(sweep, { M: 1, ML: 1 })
+    for (const [i, one] of pcH.entries()) {
+      const alone = solved({ components: [...components, { name: 'H', logFree: -one }], species })
+      expect(sweep.species_M.ML![i]! / alone.species_M.ML!).toBeCloseTo(1, 10)
+      expect(shares.M![i]! + shares.ML![i]!).toBeCloseTo(1, 14)
+    }
+    // free in strong acid, bound from pH 4 on
+    expect(shares.M![0]!).toBeGreaterThan(0.9)
+    expect(shares.ML![8]!).toBeGreaterThan(0.99)
+  })
+
+  it('refuses a system that is none', () => {
+    expect(sweepPcH({ components, species: [{ name: 'ML', stoichiometry: { X: 1 }, logBeta: 1 }], pcH })).toMatchObject({ ok: false, reason: 'unknownComponent' })
   })
 })

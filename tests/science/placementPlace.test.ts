@@ -46,6 +46,26 @@ describe('published complexes on the map', () => {
   })
 })
 
+describe('records that meet', () => {
+  it('takes the pM that its record emitted, with the errors of the protonation constants, before one worked out anew', () => {
+    const base = [relaxivity(4), item('logK', 22.46, { se: 0.1, parameters: { metal: 'Gd', protonation: [10.49, 8.6] } })]
+    expect(one(agent('a', base)).pM).toMatchObject({ se: expect.closeTo(0.1, 6) as number })
+    const emitted = item('pM', 18.9, { se: 0.2, parameters: { mixedMedia: true, mediumNote: 'log K and protonation constants come from different media: electrolyte NaCl and KCl.' } })
+    const p = one(agent('a', [...base, emitted]))
+    expect(p.pM).toMatchObject({ value: 18.9, se: 0.2, evidenceIds: [emitted.id] })
+    expect(p.flags.find(flag => flag.id === 'mediumAssumed')!.sentence).toMatch(/different media/)
+  })
+
+  it('never mixes the constants of the sum form with those of the saturation form: the newest record decides', () => {
+    const sum = ['k0_per_s', 'k1_per_M_s'].map((name, i) => rateItem(name, 10 ** (-9 - i), { parameters: { form: 'sum' } }))
+    const saturation = [['k0_per_s', 5e-9], ['k1_per_s', 1e-5], ['kProton_per_M', 100]].map(([name, value]) => rateItem(name as string, value as number, { parameters: { form: 'saturation' } }))
+    const later = one(agent('a', [relaxivity(4), ...sum, ...saturation]))
+    expect(new Set(later.kd_per_s!.evidenceIds)).toEqual(new Set(saturation.map(i => i.id)))
+    const newer = rateItem('k1_per_M_s', 1e-3, { parameters: { form: 'sum' } })
+    expect(new Set(one(agent('a', [relaxivity(4), ...sum, ...saturation, newer])).kd_per_s!.evidenceIds)).toEqual(new Set([sum[0]!.id, newer.id]))
+  })
+})
+
 describe('verdict', () => {
   it('shows a low log K that does not let go for what it is: equilibrium against it, kinetics for it', () => {
     const tetraamide = agent('amide', [relaxivity(2.5), rateItem('k0_per_s', 1e-10), item('logK', 12.8, { parameters: { metal: 'Gd', protonation: [9.56, 5.95] } })])

@@ -62,5 +62,5 @@ export const RATE_CONSTANT_NAMES = [...new Set<RateConstantName>([...SUM_CONSTAN
 
 /** Which form a set of constants belongs to: a binding constant of the complex means saturation. */
 export function rateFormOf(names: readonly string[]): 'sum' | 'saturation' {
-  return names.includes('kProton_per_M') || names.includes('kMetal_per_M') || names.includes('k3_per_s') ? 'saturation' : 'sum'
+  return ['kProton_per_M', 'kMetal_per_M', 'k1_per_s', 'k3_per_s'].some(name => names.includes(name)) ? 'saturation' : 'sum'
 }

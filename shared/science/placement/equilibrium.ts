@@ -74,15 +74,16 @@ function cachedLigand(index: EvidenceIndex, cache: PlacementCache): LigandFacts 
 /** Everything that equilibrium says of an agent under a profile. Values given as evidence serve where nothing can be worked out. */
 export function equilibriumPlacement(index: EvidenceIndex, profile: ScreeningProfile, cache: PlacementCache): EquilibriumPlacement {
   const ligand = cachedLigand(index, cache)
-  if (ligand === null) {
-    const items = ['pM', 'boundAtEquilibrium_frac'].map(quantity => newestOf(itemsOf(index, quantity)))
-    return { pM: placedFrom(items[0]!, 'pM'), bound_frac: placedFrom(items[1]!, 'Bound at equilibrium'), plasma: null, items: items.filter(item => item !== null), flags: [] }
-  }
+  const [pMItem, boundItem] = ['pM', 'boundAtEquilibrium_frac'].map(quantity => newestOf(itemsOf(index, quantity)))
+  // a pM that was emitted with its record carries the errors of the protonation constants too
+  const pM = placedFrom(pMItem!, 'pM (pH 7.4, 1 µM metal, 10 µM ligand)') ?? ligand?.pM ?? null
+  const mixed = pMItem?.parameters?.mixedMedia === true ? textOf(pMItem, 'mediumNote') : null
+  const flags: PlacementFlag[] = mixed ? [{ id: 'mediumAssumed', sentence: mixed }] : []
+  const given = [pMItem!, boundItem!].filter(item => item !== null)
+  if (ligand === null) return { pM, bound_frac: placedFrom(boundItem!, 'Bound at equilibrium'), plasma: null, items: given, flags }
   const plasma = solvePlasma(ligand, profile, cache)
-  return {
-    pM: ligand.pM, bound_frac: plasma && placedBound(ligand, plasma), plasma, items: ligand.items,
-    flags: plasma && plasma.leftOut.length ? [{ id: 'competitorsLeftOut', sentence: `Equilibrium in plasma: no log K for ${plasma.leftOut.join(', ')}; left out, so less may stay bound.` }] : [],
-  }
+  if (plasma && plasma.leftOut.length) flags.push({ id: 'competitorsLeftOut', sentence: `Equilibrium in plasma: no log K for ${plasma.leftOut.join(', ')}; left out, so less may stay bound.` })
+  return { pM, bound_frac: plasma && placedBound(ligand, plasma), plasma, items: [...ligand.items, ...(pMItem ? [pMItem] : [])], flags }
 }
 
 function placedPM(item: EvidenceItem, protonation: readonly number[]): PlacedQuantity {

@@ -28,11 +28,23 @@ export function rateConditionsOf(profile: ScreeningProfile): RateConditions {
   }
 }
 
-/** The item of each constant that counts: nearest to the profile's temperature, of those the newest. */
+/** The form that a constant belongs to: as stated, or by its name; null for k0, which both forms have. */
+function formOfItem(name: RateConstantName, item: EvidenceItem): 'sum' | 'saturation' | null {
+  const stated = textOf(item, 'form')
+  if (stated === 'sum' || stated === 'saturation') return stated
+  return name === 'k0_per_s' ? null : rateFormOf([name])
+}
+
+/**
+ * The item of each constant that counts: nearest to the profile's temperature, of those the newest. Constants of the two forms mean different
+ * things and are never mixed: the form of the newest item decides.
+ */
 function constantsOf(index: EvidenceIndex, profile: ScreeningProfile): Map<RateConstantName, EvidenceItem> {
+  const all = RATE_CONSTANT_NAMES.flatMap(name => itemsOf(index, name).map(item => ({ name, item, form: formOfItem(name, item) })))
+  const newest = all.filter(one => one.form !== null).reduce<(typeof all)[number] | null>((best, one) => (best === null || one.item.id > best.item.id ? one : best), null)
   const chosen = new Map<RateConstantName, EvidenceItem>()
   for (const name of RATE_CONSTANT_NAMES) {
-    const items = itemsOf(index, name)
+    const items = all.filter(one => one.name === name && (one.form === null || one.form === newest?.form)).map(one => one.item)
     const away = (item: EvidenceItem): number => Math.abs((factOf(item, 'temperature_K') ?? Infinity) - profile.temperature_K)
     const best = items.reduce<EvidenceItem | null>((kept, item) => (kept === null || away(item) < away(kept) || (away(item) === away(kept) && item.id > kept.id) ? item : kept), null)
     if (best) chosen.set(name, best)
