@@ -80,7 +80,9 @@ function partAttributes({ above, header, below, isTransposed }: Parting, { kind,
   const width = filledCells(header ?? below[0] ?? { row: 0, cells: [], raw: '' })
   const read = (record: TableRecord): AttributeRow | null => {
     const match = matchHeader(record.cells[0] ?? '', kind.columns, present)
-    if (match === null || !roles.includes(match.spec.role) || (filledCells(record) < 3 && width > 2)) return null
+    if (match === null || !roles.includes(match.spec.role)) return null
+    const isResult = match.spec.role === 'y' || match.spec.role === 'sigma'
+    if (filledCells(record) < 3 && width > 2 && !isResult) return null
     const chosen = draft.units?.[match.spec.stem]
     const unit = chosen && match.spec.dimension !== 'text' ? findUnit(chosen, match.spec.dimension) : match.unit
     return { record, spec: match.spec, unit }
