@@ -35,8 +35,21 @@ export function tTwoSidedP(t: number, dof: number): number {
   return Math.min(1, 2 * tUpperTail(Math.abs(t), dof))
 }
 
-/** t with P(T ≤ t) = p. @param p in [0, 1] @param dof > 0 */
+const knownT = new Map<string, number>()
+const KNOWN_LIMIT = 4096
+
+/** t with P(T ≤ t) = p. Every fit asks for the same few, so found ones are kept. @param p in [0, 1] @param dof > 0 */
 export function tQuantile(p: number, dof: number): number {
+  const key = `${p}/${dof}`
+  const known = knownT.get(key)
+  if (known !== undefined) return known
+  const found = findTQuantile(p, dof)
+  if (knownT.size >= KNOWN_LIMIT) knownT.clear()
+  knownT.set(key, found)
+  return found
+}
+
+function findTQuantile(p: number, dof: number): number {
   if (!(p >= 0 && p <= 1) || !(dof > 0)) return NaN
   if (dof === Infinity) return normalQuantile(p)
   if (p === 0.5) return 0

@@ -19,16 +19,18 @@ const EPSILON = 2 ** -52
  * @param held parameters without an error of their own
  */
 export function informationOf(jacobian: Float64Array, n: number, held: readonly boolean[]): Information {
-  const free = held.flatMap((isHeld, j) => isHeld ? [] : [j])
+  const free: number[] = []
+  for (let j = 0; j < held.length; j++) if (!held[j]) free.push(j)
   const k = free.length
   const nothing = { inverse: null, condition: null, leverage: null, freeCount: k }
-  const lengths = free.map(j => Math.sqrt(jacobian.subarray(j * n, (j + 1) * n).reduce((sum, a) => sum + a * a, 0)))
-  if (k > n || lengths.some(length => !(length > 0 && length < Infinity))) return { ...nothing, rank: 0 }
-
+  const lengths = new Float64Array(k)
   const q = new Float64Array(n * k)
-  free.forEach((j, c) => {
-    for (let i = 0; i < n; i++) q[c * n + i] = jacobian[j * n + i]! / lengths[c]!
-  })
+  for (let c = 0; c < k; c++) {
+    const length = normOf(jacobian, free[c]! * n, n)
+    if (k > n || !(length > 0 && length < Infinity)) return { ...nothing, rank: 0 }
+    lengths[c] = length
+    for (let i = 0; i < n; i++) q[c * n + i] = jacobian[free[c]! * n + i]! / length
+  }
   const r = orthogonalise(q, n, k)
   const rank = pivotRank(r, k, n)
   if (rank < k) return { ...nothing, rank }
@@ -41,24 +43,28 @@ export function informationOf(jacobian: Float64Array, n: number, held: readonly 
   return { inverse: spread(inverseR, free, lengths, held.length), condition: singular[0]! / singular[k - 1]!, rank, freeCount: k, leverage }
 }
 
+function normOf(values: Float64Array, from: number, count: number): number {
+  let square = 0
+  for (let i = 0; i < count; i++) square += values[from + i]! * values[from + i]!
+  return Math.sqrt(square)
+}
+
 /** Gram–Schmidt, every column twice, which is as orthogonal as Householder; q becomes Q, R is returned by row. */
 function orthogonalise(q: Float64Array, n: number, k: number): Float64Array {
   const r = new Float64Array(k * k)
   for (let c = 0; c < k; c++) {
-    const column = q.subarray(c * n, (c + 1) * n)
+    const at = c * n
     for (let pass = 0; pass < 2; pass++) {
       for (let b = 0; b < c; b++) {
         let product = 0
-        for (let i = 0; i < n; i++) product += q[b * n + i]! * column[i]!
+        for (let i = 0; i < n; i++) product += q[b * n + i]! * q[at + i]!
         r[b * k + c]! += product
-        for (let i = 0; i < n; i++) column[i]! -= product * q[b * n + i]!
+        for (let i = 0; i < n; i++) q[at + i]! -= product * q[b * n + i]!
       }
     }
-    let square = 0
-    for (let i = 0; i < n; i++) square += column[i]! ** 2
-    const length = Math.sqrt(square)
+    const length = normOf(q, at, n)
     r[c * k + c] = length
-    if (length > 0) for (let i = 0; i < n; i++) column[i]! /= length
+    if (length > 0) for (let i = 0; i < n; i++) q[at + i]! /= length
   }
   return r
 }
@@ -84,7 +90,7 @@ function invertTriangle(r: Float64Array, k: number): Float64Array {
 }
 
 /** R⁻¹R⁻ᵀ with the column lengths put back, spread over all m parameters. */
-function spread(inverseR: Float64Array, free: readonly number[], lengths: readonly number[], m: number): Float64Array {
+function spread(inverseR: Float64Array, free: readonly number[], lengths: Float64Array, m: number): Float64Array {
   const k = free.length
   const inverse = new Float64Array(m * m)
   for (let a = 0; a < k; a++) {
@@ -104,7 +110,7 @@ function spread(inverseR: Float64Array, free: readonly number[], lengths: readon
  * @source Demmel & Veselić, SIAM J. Matrix Anal. Appl. 13, 1204 (1992)
  */
 export function singularValues(matrix: Float64Array, k: number): number[] {
-  const a = Float64Array.from(matrix)
+  const a = matrix.slice()
   for (let sweep = 0; sweep < 60; sweep++) {
     let isRotated = false
     for (let p = 0; p < k - 1; p++) {
@@ -112,7 +118,8 @@ export function singularValues(matrix: Float64Array, k: number): number[] {
     }
     if (!isRotated) break
   }
-  const lengths = Array.from({ length: k }, (_, p) => Math.sqrt(a.subarray(p * k, (p + 1) * k).reduce((sum, x) => sum + x * x, 0)))
+  const lengths: number[] = []
+  for (let p = 0; p < k; p++) lengths.push(normOf(a, p * k, k))
   return lengths.sort((x, y) => y - x)
 }
 
@@ -155,12 +162,15 @@ export function correlationOf(covariance: readonly (readonly number[])[]): numbe
  * @param dof points minus parameters; with fewer than 2 none is defined
  * @returns null where undefined (dof < 2, or a point that the fit goes through by force)
  */
-export function studentise(residual: Float64Array, leverage: Float64Array, dof: number): (number | null)[] {
-  const rss = residual.reduce((sum, e) => sum + e * e, 0)
-  return Array.from(residual, (e, i) => {
+export function studentise(residual: ArrayLike<number>, leverage: ArrayLike<number>, dof: number): (number | null)[] {
+  let rss = 0
+  for (let i = 0; i < residual.length; i++) rss += residual[i]! * residual[i]!
+  const studentised: (number | null)[] = []
+  for (let i = 0; i < residual.length; i++) {
+    const e = residual[i]!
     const open = 1 - leverage[i]!
-    if (dof < 2 || !(open > 1e-10)) return null
-    const others = (rss - (e * e) / open) / (dof - 1)
-    return others > 0 ? e / Math.sqrt(others * open) : null
-  })
+    const others = dof < 2 || !(open > 1e-10) ? 0 : (rss - (e * e) / open) / (dof - 1)
+    studentised.push(others > 0 ? e / Math.sqrt(others * open) : null)
+  }
+  return studentised
 }

@@ -43,7 +43,10 @@ export function factor(ws: Workspace, point: Point): void {
 /** Householder QR of the free columns: fills `r` and `qtr`. */
 export function factorQr(ws: Workspace, point: Point): void {
   const { n, m, columns, rotated, r, qtr, free, freeCount } = ws
-  for (let c = 0; c < freeCount; c++) columns.set(point.jacobian.subarray(free[c]! * n, (free[c]! + 1) * n), c * n)
+  for (let c = 0; c < freeCount; c++) {
+    const from = free[c]! * n
+    for (let i = 0; i < n; i++) columns[c * n + i] = point.jacobian[from + i]!
+  }
   rotated.set(point.residual)
   for (let c = 0; c < freeCount; c++) {
     const pivot = reflect(ws, c)

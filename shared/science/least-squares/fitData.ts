@@ -31,17 +31,20 @@ export function refuse(reason: RefusalReason, message: string, accepted: string)
 /** Checks the data against the model: what no choice of parameters could mend is refused, with the place and what would be accepted. */
 export function prepareData(model: Model, data: FitData, given: Settings, freeCount: number): PreparedData | FitRefused {
   const settings = withStandards(model.settings, given)
-  const excluded = [...new Set(data.exclude ?? [])].sort((a, b) => a - b)
+  const excluded = data.exclude ? [...new Set(data.exclude)].sort((a, b) => a - b) : []
   const problem = findShapeProblem(data, excluded) ?? findSettingProblem(model, settings)
   if (problem) return problem
-  const left = new Set(excluded)
-  const used = data.x.flatMap((_, i) => left.has(i) ? [] : [i])
-  const sigma = data.sigma ?? null
-  const prepared: PreparedData = {
-    ok: true, x: used.map(i => data.x[i]!), y: used.map(i => data.y[i]!),
-    sigma: sigma === null ? null : used.map(i => typeof sigma === 'number' ? sigma : sigma[i]!), used, excluded, settings,
-  }
+  const prepared = { ok: true, ...takeUsed(data, excluded), excluded, settings } as const
   return findValueProblem(prepared) ?? findCountProblem(prepared, freeCount) ?? model.refuse(prepared.x, settings) ?? prepared
+}
+
+function takeUsed({ x, y, sigma }: FitData, excluded: readonly number[]): Pick<PreparedData, 'x' | 'y' | 'sigma' | 'used'> {
+  const left = new Set(excluded)
+  const used: number[] = []
+  for (let i = 0; i < x.length; i++) if (!left.has(i)) used.push(i)
+  const pick = (values: readonly number[]) => left.size === 0 ? values.slice() : used.map(i => values[i]!)
+  const each = typeof sigma === 'number' ? x.map(() => sigma) : sigma
+  return { x: pick(x), y: pick(y), sigma: each ? pick(each) : null, used }
 }
 
 function findShapeProblem({ x, y, sigma }: FitData, excluded: readonly number[]): FitRefused | null {
@@ -64,7 +67,8 @@ function findSettingProblem(model: Model, settings: Settings): FitRefused | null
 }
 
 function findValueProblem({ x, y, sigma, used }: PreparedData): FitRefused | null {
-  for (const [i, point] of used.entries()) {
+  for (let i = 0; i < used.length; i++) {
+    const point = used[i]!
     if (!Number.isFinite(x[i]) || !Number.isFinite(y[i])) {
       return refuse('notFinite', `Point ${point + 1}: ${Number.isFinite(x[i]) ? 'the signal' : 'x'} is not a number.`, 'Finite numbers, or the point left out.')
     }

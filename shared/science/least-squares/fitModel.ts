@@ -17,6 +17,9 @@ export interface PooledSigma {
   readonly dof: number
 }
 
+/** Accuracy of ln τ that the projection brings to the start; the descent brings the rest. */
+const START_TOLERANCE = 0.05
+
 export interface FitOptions {
   /** Numbers of the acquisition that the model needs (TR, angle). */
   readonly settings?: Settings
@@ -86,7 +89,7 @@ function project(model: Model, { x, y, sigma, settings }: PreparedData, options:
   if (!separable || Object.keys(options.fixed ?? {}).length > 0) return null
   const search = options.search ?? prepareSeparable(model, x, sigma && sigma.map(s => 1 / s), settings)
   if (!search) return null
-  const { tau, linear } = search.search(y)
+  const { tau, linear } = search.search(y, START_TOLERANCE)
   return Object.fromEntries([[separable.nonlinear, tau], ...separable.linear.map((name, c) => [name, linear[c]!] as const)])
 }
 

@@ -21,7 +21,7 @@ export interface LeastSquaresProblem {
  */
 export type StopReason = 'smallReduction' | 'smallStep' | 'zeroGradient' | 'exact' | 'maxEvaluations' | 'notFinite'
 
-/** Where a solve ended. `parameters`, `residual` and `jacobian` are copies the caller may keep. */
+/** Where a solve ended. The arrays are the caller's to keep. */
 export interface Solution {
   readonly parameters: Float64Array
   readonly residual: Float64Array

@@ -37,7 +37,8 @@ export function reportFit(parts: Parts): FitDone {
   const intervalDof = sigmaUsed === 'pooled' ? options.pooledSigma!.dof : dof
   const half = noInterval === null && intervalDof > 0 ? tQuantile((1 + level) / 2, intervalDof) : null
   const fitted = fittedValues(parts)
-  const rss = prepared.used.reduce((sum, i) => sum + (data.y[i]! - fitted[i]!) ** 2, 0)
+  const misfit = prepared.used.map(i => data.y[i]! - fitted[i]!)
+  const rss = misfit.reduce((sum, e) => sum + e * e, 0)
   return {
     ok: true, modelId: model.id, modelVersion: model.version, engineVersion: ENGINE_VERSION,
     parameters: free.map((j, c) => parameterOf(parts, j, c, covariance, half)),
@@ -46,7 +47,7 @@ export function reportFit(parts: Parts): FitDone {
     sigma: sigmaUsed === 'known' ? commonValue(prepared.sigma!) : variance === null ? null : Math.sqrt(variance),
     sigmaUsed, dof, intervalDof, level, aicc: aiccOf(prepared, free.length, solution.sumOfSquares), r2: r2Of(prepared, solution.sumOfSquares),
     condition: information.condition, evaluations: solution.evaluations, stop: solution.stop, converged: solution.converged, noInterval, fitted,
-    residuals: spreadOver(data.x.length, prepared.used, prepared.used.map(i => data.y[i]! - fitted[i]!)),
+    residuals: spreadOver(data.x.length, prepared.used, misfit),
     studentised: spreadOver(data.x.length, prepared.used, studentisedOf(parts, dof)),
     excluded: prepared.excluded, secondOpinion: parts.secondOpinion,
   }
@@ -74,7 +75,13 @@ function findNoInterval({ model, free, solution, information }: Parts, dof: numb
 }
 
 function scaleInverse(inverse: Float64Array, m: number, factor: number): number[][] {
-  return Array.from({ length: m }, (_, a) => Array.from({ length: m }, (_, b) => inverse[a * m + b]! * factor))
+  const rows: number[][] = []
+  for (let a = 0; a < m; a++) {
+    const row: number[] = []
+    for (let b = 0; b < m; b++) row.push(inverse[a * m + b]! * factor)
+    rows.push(row)
+  }
+  return rows
 }
 
 /** @param c position among the free parameters @param half Student-t factor; null for no interval */
@@ -95,10 +102,11 @@ function fittedValues({ model, data, prepared, parameters }: Parts): number[] {
 function studentisedOf({ solution, information }: Parts, dof: number): (number | null)[] {
   if (!information.leverage) return Array.from(solution.residual, () => null)
   // The solver's residual is model minus data; shown residuals are data minus model.
-  return studentise(solution.residual.map(r => -r), information.leverage, dof)
+  return studentise(Array.from(solution.residual, r => -r), information.leverage, dof)
 }
 
 function spreadOver(length: number, used: readonly number[], values: readonly (number | null)[]): (number | null)[] {
+  if (length === values.length) return values.slice()
   const all = new Array<number | null>(length).fill(null)
   used.forEach((i, k) => { all[i] = values[k]! })
   return all
@@ -113,10 +121,16 @@ function aiccOf({ x, sigma }: PreparedData, m: number, sum: number): number | nu
 }
 
 function r2Of({ y, sigma }: PreparedData, sum: number): number {
-  const weights = y.map((_, i) => sigma ? 1 / sigma[i]! ** 2 : 1)
-  const total = weights.reduce((s, w) => s + w, 0)
-  const mean = y.reduce((s, value, i) => s + weights[i]! * value, 0) / total
-  const spread = y.reduce((s, value, i) => s + weights[i]! * (value - mean) ** 2, 0)
+  const weightOf = (i: number) => sigma ? 1 / sigma[i]! ** 2 : 1
+  let total = 0
+  let weighted = 0
+  for (let i = 0; i < y.length; i++) {
+    total += weightOf(i)
+    weighted += weightOf(i) * y[i]!
+  }
+  const mean = weighted / total
+  let spread = 0
+  for (let i = 0; i < y.length; i++) spread += weightOf(i) * (y[i]! - mean) ** 2
   return 1 - sum / spread
 }
 

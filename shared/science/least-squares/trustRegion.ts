@@ -2,7 +2,7 @@ import { findDamping } from './damping'
 import { factor, measureColumns } from './factor'
 import { polish, stationarity } from './polish'
 import type { LeastSquaresProblem, Solution, SolveOptions, StopReason } from './problem'
-import { createPoint, createWorkspace, sumOfSquares, takeTrial, type Search, type Workspace } from './workspace'
+import { giveBack, sumOfSquares, takeMemory, takeTrial, type Search, type Workspace } from './workspace'
 
 const EPSILON = 2 ** -52
 /** Scaled length of the first step allowed, in units of the scaled start. */
@@ -27,13 +27,14 @@ export function solve(problem: LeastSquaresProblem, start: ArrayLike<number>, op
 
 function openSearch(problem: LeastSquaresProblem, start: ArrayLike<number>, options: SolveOptions): Search {
   const { n, m, lower, upper } = problem
-  const current = createPoint(n, m)
+  const memory = takeMemory(n, m)
+  const [current, trial] = memory.points
   for (let j = 0; j < m; j++) current.p[j] = Math.min(Math.max(start[j]!, lower[j]!), upper[j]!)
   problem.evaluate(current.p, current.residual, current.jacobian)
   current.sum = sumOfSquares(current.residual)
   const defaults = { reductionTolerance: 1e-10, stepTolerance: 1e-10, gradientTolerance: 1e-12, maxEvaluations: 200 * (m + 1), polishSteps: 80 }
   return {
-    problem, options: { ...defaults, ...options }, ws: createWorkspace(n, m), current, trial: createPoint(n, m),
+    problem, options: { ...defaults, ...options }, memory, ws: memory.ws, current, trial,
     radius: 0, lambda: 0, evaluations: 1, taken: 0, stop: stopOfSum(current.sum),
   }
 }
@@ -180,10 +181,11 @@ function close(search: Search, found: boolean): Solution {
   const { problem, current, ws } = search
   const offset = found ? stationarity(search) : Infinity
   const converged = found && (search.stop === 'exact' || offset <= STATIONARY)
-  const isFree = new Set(ws.free.subarray(0, ws.freeCount))
+  const atBound = new Array<boolean>(problem.m).fill(found)
+  for (let c = 0; c < ws.freeCount; c++) atBound[ws.free[c]!] = false
+  giveBack(search.memory)
   return {
     parameters: current.p.slice(), residual: current.residual.slice(), jacobian: current.jacobian.slice(), sumOfSquares: current.sum,
-    atBound: Array.from({ length: problem.m }, (_, j) => found && !isFree.has(j)),
-    evaluations: search.evaluations, stop: search.stop ?? 'maxEvaluations', converged,
+    atBound, evaluations: search.evaluations, stop: search.stop ?? 'maxEvaluations', converged,
   }
 }

@@ -11,14 +11,16 @@ export interface Projection {
 
 /** A search prepared for one set of times: the grid of orthonormal basis vectors is computed once and serves every signal measured there. */
 export interface SeparableSearch {
-  /** @param y signal at the times of the search */
-  search: (y: ArrayLike<number>) => Projection
+  /**
+   * @param y signal at the times of the search
+   * @param logTolerance accuracy of ln τ; coarse where a descent follows. Default 1e-7
+   */
+  search: (y: ArrayLike<number>, logTolerance?: number) => Projection
   /** The same for one given τ. */
   projectAt: (tau: number, y: ArrayLike<number>) => Projection
 }
 
 const GRID = 64
-const LOG_TOLERANCE = 1e-7
 
 /**
  * Variable projection: for each τ the linear coefficients have a closed form, which leaves a search in one dimension, on a logarithmic grid and then
@@ -58,25 +60,37 @@ export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: Ar
     const { products, rest } = project(scratch, weighted(y, weightAt, n), n, k)
     return { tau, linear: backSubstitute(r, products, k), rss: rest }
   }
-  const search = (y: ArrayLike<number>): Projection => {
+  const search = (y: ArrayLike<number>, logTolerance = 1e-7): Projection => {
     const wy = weighted(y, weightAt, n)
-    let best = 0
-    let least = Infinity
-    grid.forEach((q, g) => {
-      const { rest } = project(q, wy, n, k)
-      if (rest < least) {
-        least = rest
-        best = g
-      }
-    })
+    const best = mostAligned(grid, wy, n, k)
     const objective = (logTau: number) => {
       fill(Math.exp(logTau), scratch)
       return project(scratch, wy, n, k).rest
     }
     const bracket = [best - 1, best, best + 1].map(g => Math.log(taus[Math.min(Math.max(g, 0), GRID - 1)]!)) as [number, number, number]
-    return projectAt(Math.exp(minimise(objective, bracket, least)), y)
+    return projectAt(Math.exp(minimise(objective, bracket, logTolerance)), y)
   }
   return { search, projectAt }
+}
+
+/** Grid point whose basis holds most of y: the one that leaves least. */
+function mostAligned(grid: readonly Float64Array[], y: Float64Array, n: number, k: number): number {
+  let best = 0
+  let most = -1
+  for (let g = 0; g < grid.length; g++) {
+    const q = grid[g]!
+    let held = 0
+    for (let c = 0; c < k; c++) {
+      let product = 0
+      for (let i = 0; i < n; i++) product += q[c * n + i]! * y[i]!
+      held += product * product
+    }
+    if (held > most) {
+      most = held
+      best = g
+    }
+  }
+  return best
 }
 
 function weighted(y: ArrayLike<number>, weightAt: (i: number) => number, n: number): Float64Array {
@@ -138,19 +152,20 @@ function backSubstitute(r: Float64Array, products: readonly number[], k: number)
  * Minimum of a function between the outer points of a bracket: steps of successive parabolas, halving the larger side where a parabola fails.
  * At the edge of the grid two points of the bracket coincide and the edge itself may be the answer.
  */
-function minimise(objective: (x: number) => number, bracket: readonly [number, number, number], atMiddle: number): number {
+function minimise(objective: (x: number) => number, bracket: readonly [number, number, number], tolerance: number): number {
   let [low, best, high] = bracket
-  let value = atMiddle
+  let value = objective(best)
   let atLow = low === best ? value : objective(low)
   let atHigh = high === best ? value : objective(high)
-  for (let turn = 0; turn < 60 && high - low > LOG_TOLERANCE; turn++) {
+  for (let turn = 0; turn < 60 && high - low > tolerance; turn++) {
     const left = best - low
     const right = high - best
     const numerator = left * left * (value - atHigh) - right * right * (value - atLow)
     const denominator = 2 * (left * (value - atHigh) + right * (value - atLow))
     let next = best - numerator / denominator
-    const isBad = !(next > low && next < high) || Math.abs(next - best) < LOG_TOLERANCE / 4 || turn % 4 === 3
-    if (isBad) next = left > right ? best - 0.38 * left : best + 0.38 * right
+    const isInside = next > low && next < high
+    if (isInside && Math.abs(next - best) < tolerance) return next
+    if (!isInside || turn % 4 === 3) next = left > right ? best - 0.38 * left : best + 0.38 * right
     const found = objective(next)
     if (found < value) {
       if (next > best) [low, atLow] = [best, value]

@@ -45,6 +45,32 @@ export function createPoint(n: number, m: number): Point {
   return { p: new Float64Array(m), residual: new Float64Array(n), jacobian: new Float64Array(n * m), sum: NaN }
 }
 
+/** Everything one solve writes to. */
+export interface SolveMemory {
+  readonly ws: Workspace
+  readonly points: readonly [Point, Point]
+}
+
+const idle = new Map<number, SolveMemory[]>()
+const IDLE_LIMIT = 4
+
+/**
+ * Memory for a solve of this size: some that an earlier solve gave back, or new. Allocation is what a small fit spends most of its time on. Nothing is
+ * read before it is written, so what was in it changes no result; a solve inside a solve takes another piece.
+ */
+export function takeMemory(n: number, m: number): SolveMemory {
+  const found = idle.get(n * 65536 + m)?.pop()
+  return found ?? { ws: createWorkspace(n, m), points: [createPoint(n, m), createPoint(n, m)] }
+}
+
+export function giveBack(memory: SolveMemory): void {
+  const { n, m } = memory.ws
+  const key = n * 65536 + m
+  const kept = idle.get(key)
+  if (!kept) idle.set(key, [memory])
+  else if (kept.length < IDLE_LIMIT) kept.push(memory)
+}
+
 export function sumOfSquares(values: Float64Array): number {
   let sum = 0
   for (let i = 0; i < values.length; i++) sum += values[i]! * values[i]!
@@ -55,6 +81,7 @@ export function sumOfSquares(values: Float64Array): number {
 export interface Search {
   readonly problem: LeastSquaresProblem
   readonly options: Required<SolveOptions>
+  readonly memory: SolveMemory
   readonly ws: Workspace
   current: Point
   trial: Point

@@ -108,8 +108,12 @@ export function defineModel<P extends string>(spec: ModelSpec<P>): Model<P> {
 
 /** The settings given, with the standard value for each that has one and was left out. */
 export function withStandards(declared: Readonly<Record<string, ModelSetting>>, given: Settings): Settings {
-  const standards = Object.entries(declared).flatMap(([name, setting]) => setting.standard === null ? [] : [[name, setting.standard] as const])
-  return { ...Object.fromEntries(standards), ...given }
+  const settings: Record<string, number> = {}
+  for (const name in declared) {
+    const { standard } = declared[name]!
+    if (standard !== null) settings[name] = standard
+  }
+  return Object.assign(settings, given)
 }
 
 function checkSpec<P extends string>(spec: ModelSpec<P>, names: readonly P[]): void {
