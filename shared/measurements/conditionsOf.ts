@@ -13,11 +13,14 @@ export function mergeConditions(kind: MeasurementKind, found: readonly FoundCond
   return Object.fromEntries(Object.entries(merged).filter(([key, value]) => value !== null && isAsked(kind, key, merged)))
 }
 
+/** What isAsked needs to know of a kind: the kind itself, or what a screen was told of it. */
+export interface AskedFields { readonly conditions: readonly { readonly key: string, readonly when?: { readonly key: string, readonly is: readonly string[] } | null }[] }
+
 /** True where the condition belongs to the form, given the others. */
-export function isAsked(kind: MeasurementKind, key: string, conditions: Conditions): boolean {
+export function isAsked(kind: AskedFields, key: string, conditions: Conditions): boolean {
   const spec = kind.conditions.find(candidate => candidate.key === key)
   if (spec === undefined) return false
-  return spec.when === undefined || spec.when.is.includes(String(conditions[spec.when.key] ?? ''))
+  return !spec.when || spec.when.is.includes(String(conditions[spec.when.key] ?? ''))
 }
 
 /** What is wrong with the conditions: missing, of the wrong type, outside its range, not of this kind. */

@@ -114,6 +114,13 @@ describe('tables of fitted values', () => {
     expect(blocking(understood)).toEqual([])
   })
 
+  it('is not misled by tubes that are called t1 and t2', () => {
+    const text = 'tube,t1,t2,t3\nconc (mM),0,0.5,1\nT1 (ms),1800,380,210\n'
+    const { layout, tubes } = understandTable({ text, kind: relaxFitted })
+    expect(layout).toBe('columnPerTube')
+    expect(tubes.map(tube => [tube.label, tube.conc_mM, tube.points.rows])).toEqual([['t1', 0, [[1.8]]], ['t2', 0.5, [[0.38]]], ['t3', 1, [[0.21]]]])
+  })
+
   it('reads R2 with a column per tube', () => {
     const understood = understandUpload('good/fitted-r2-column-per-tube.tsv', relaxFitted, { complexCode: 'SK-07', lot: 'B2' })
     expect(understood).toMatchObject({ layout: 'columnPerTube', conditions: { quantity: 'T2' } })

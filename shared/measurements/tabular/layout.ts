@@ -78,10 +78,11 @@ export function guessLayout(input: { kind: MeasurementKind, header: TableRecord 
 
 /** A table of results with a column per tube has its heads down the first column. */
 function isTransposed({ kind, matches, header, body }: { kind: MeasurementKind, matches: readonly (HeaderMatch | null)[], header: TableRecord | null, body: readonly TableRecord[] }): boolean {
-  const across = matches.filter(match => match !== null).length
+  const stems = (list: readonly (HeaderMatch | null)[]) => new Set(list.flatMap(match => match ? [match.spec.stem] : [])).size
   const rows = header === null ? body : [header, ...body]
   const down = rows.slice(0, 20).flatMap(record => matchHeader(record.cells[0] ?? '', kind.columns) ?? [])
-  return down.some(match => match.spec.role === 'y') && down.length >= 2 && across < 2
+  // A tube can be called 't1', as a time is: the direction that names more different things is the head.
+  return down.some(match => match.spec.role === 'y') && stems(down) >= 2 && stems(down) > stems(matches)
 }
 
 export function numericShare(body: readonly TableRecord[], column: number, decimal: DecimalMark): number {

@@ -9,7 +9,7 @@ export const FITTED_TEMPLATES = [
   },
   {
     fileName: 'fitted-r2-column-per-tube.csv',
-    text: [...LINES, '', ['tube', ...CONCS_mM.map((_, j) => `t${j + 1}`)], ['agent', '', ...CONCS_mM.slice(1).map(() => 'AGENT')], ['conc (mM)', ...CONCS_mM], ['R2 (1/s)', ...CONCS_mM.map(() => '')], ['SE (1/s)', ...CONCS_mM.map(() => '')]]
+    text: [...LINES, '', ['tube', ...CONCS_mM.map((_, j) => `v${j + 1}`)], ['agent', '', ...CONCS_mM.slice(1).map(() => 'AGENT')], ['conc (mM)', ...CONCS_mM], ['R2 (1/s)', ...CONCS_mM.map(() => '')], ['SE (1/s)', ...CONCS_mM.map(() => '')]]
       .map(row => typeof row === 'string' ? row : row.join(',')).join('\r\n') + '\r\n',
   },
 ] as const
