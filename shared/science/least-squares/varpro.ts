@@ -1,4 +1,4 @@
-import type { Model, Settings } from '../models/define'
+import { withStandards, type Model, type ModelParameter, type Settings } from '../models/define'
 
 /** Best fit over the nonlinear parameter, the linear ones eliminated. */
 export interface Projection {
@@ -35,20 +35,17 @@ export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: Ar
   if (!separable) return null
   const k = separable.linear.length
   const n = x.length
-  const limits = model.params[separable.nonlinear]!
-  const [low, high] = separable.range(x)
-  const from = Math.max(low, limits.min)
-  const ratio = Math.min(high, limits.max) / from
+  const known = withStandards(model.settings, settings)
   const phi = new Float64Array(k)
   const weightAt = (i: number) => weights ? weights[i]! : 1
   const fill = (tau: number, q: Float64Array) => {
     for (let i = 0; i < n; i++) {
-      separable.basis(x[i]!, tau, settings, phi)
+      separable.basis(x[i]!, tau, known, phi)
       for (let c = 0; c < k; c++) q[c * n + i] = phi[c]! * weightAt(i)
     }
     return orthonormalise(q, n, k)
   }
-  const taus = Array.from({ length: GRID }, (_, g) => from * ratio ** (g / (GRID - 1)))
+  const taus = logarithmicGrid(separable.range(x), model.params[separable.nonlinear]!)
   const grid = taus.map((tau) => {
     const q = new Float64Array(n * k)
     fill(tau, q)
@@ -71,6 +68,12 @@ export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: Ar
     return projectAt(Math.exp(minimise(objective, bracket, logTolerance)), y)
   }
   return { search, projectAt }
+}
+
+function logarithmicGrid([low, high]: readonly [number, number], { min, max }: ModelParameter): number[] {
+  const from = Math.max(low, min)
+  const ratio = Math.min(high, max) / from
+  return Array.from({ length: GRID }, (_, g) => from * ratio ** (g / (GRID - 1)))
 }
 
 /** Grid point whose basis holds most of y: the one that leaves least. */
