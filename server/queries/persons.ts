@@ -78,3 +78,8 @@ export async function lockAdministrators(trx: Knex.Transaction): Promise<string[
   const rows = await trx('person').where({ is_administrator: true, state: 'active' }).orderBy('id').forUpdate().select('id') as { id: Buffer }[]
   return rows.map(row => fromBinary(row.id))
 }
+
+/** Makes people known as demo accounts, whose password everybody knows. */
+export async function markDemoPersons(db: Knex, ids: readonly string[]): Promise<void> {
+  await db('person').whereIn('id', ids.map(toBinary)).update({ is_demo: true })
+}

@@ -1,0 +1,82 @@
+import type { WorkerDeps } from '../../../server/jobs/define'
+import { JOBS } from '../../../server/jobs/index'
+import { drainJobs } from '../../../server/jobs/runJobs'
+import type { fixedClock } from '../../../server/platform/clock'
+import { countPersons, markDemoPersons } from '../../../server/queries/persons'
+import { enterRecord } from '../../../server/services/enterRecord'
+import { registerAgent } from '../../../server/services/registerAgent'
+import { registerBatch } from '../../../server/services/registerBatch'
+import { savePreset } from '../../../server/services/savePreset'
+import { SourceInput } from '../../../shared/schemas/source'
+import { DEMO_AGENTS } from './agents'
+import { agentBody, batchPayload } from './bodies'
+import { decideOn, saveStartingProfile } from './decisions'
+import { type Institute, makeInstitute } from './institute'
+import { DEMO_RECORDS, type DemoRecord } from './records'
+import { DEMO_FILES } from './series'
+import { measure } from './measure'
+import { signAs } from './sign'
+
+export interface DemoDeps extends WorkerDeps { clock: ReturnType<typeof fixedClock> }
+
+/** Reads one raw file of the demonstration. */
+export type ReadDemoFile = (fileName: string) => Promise<Uint8Array>
+
+const MINUTE_MS = 60_000
+const at = (day: string, hour: number): Date => new Date(`${day}T${String(hour).padStart(2, '0')}:00:00.000Z`)
+
+/**
+ * Loads the demonstration into an empty database, the way people would have: registered, uploaded, fitted, checked, signed, decided, through the same
+ * services and on invented days.
+ * @throws Error when anybody has an account already
+ */
+export async function loadDemo(deps: DemoDeps, readFile: ReadDemoFile): Promise<Institute> {
+  if (await countPersons(deps.db) > 0) throw new Error('The demonstration is loaded into an empty database only; this one has accounts.')
+  deps.clock.set(at('2026-09-01', 8))
+  const institute = await makeInstitute(deps)
+  await registerAll(deps, institute)
+  await enterAll(deps, institute)
+  deps.clock.set(at('2026-09-07', 9))
+  const profile = await saveStartingProfile(deps, institute)
+  await savePreset(deps, {
+    actor: institute.people.idris, programmeId: institute.programmeId,
+    preset: { name: 'Bay 3, inversion recovery in plasma', kind: 'relax.t1.ir', conditions: { instrument: 'Bay 3', b0_T: 3, temperature_K: 310.15, pH: 7.4, medium: 'plasma', timing: 'longTr', signalForm: 'signed', concBasis: 'icp', concScaleError_frac: 0.015 } },
+  })
+  for (const file of [...DEMO_FILES].sort((a, b) => (a.day < b.day ? -1 : 1))) {
+    deps.clock.set(at(file.day, 10))
+    await measure(deps, institute, file, await readFile(file.fileName))
+    await decideOn(deps, institute, { profileVersionId: profile.id, after: file.fileName })
+  }
+  await drainJobs(deps, JOBS, institute.programmeId)
+  await markDemoPersons(deps.db, Object.values(institute.people).map(one => one.personId))
+  return institute
+}
+
+async function registerAll(deps: DemoDeps, { programmeId, people }: Institute): Promise<void> {
+  for (const agent of DEMO_AGENTS) {
+    deps.clock.advance(20 * MINUTE_MS)
+    const [first, ...more] = agent.batches
+    const made = await registerAgent(deps, { actor: people.idris, programmeId, body: agentBody(agent, first!) })
+    if (first!.freeMetal) await signAs(deps, { programmeId, sender: people.idris, signer: people.oren, kind: 'batchVersion', id: made.batchVersionId })
+    for (const batch of more) {
+      const { id } = await registerBatch(deps, { actor: people.idris, programmeId, code: agent.code, lot: batch.lot, payload: batchPayload(batch) })
+      if (batch.freeMetal) await signAs(deps, { programmeId, sender: people.idris, signer: people.oren, kind: 'batchVersion', id })
+    }
+  }
+}
+
+async function enterAll(deps: DemoDeps, institute: Institute): Promise<void> {
+  deps.clock.set(at('2026-09-03', 9))
+  for (const record of DEMO_RECORDS) {
+    deps.clock.advance(15 * MINUTE_MS)
+    await enterOne(deps, institute, record)
+  }
+}
+
+async function enterOne(deps: DemoDeps, { programmeId, people }: Institute, record: DemoRecord): Promise<void> {
+  const actor = people[record.by]
+  const source = SourceInput.parse({ citation: record.citation, origin: record.origin })
+  const { id } = await enterRecord(deps, { actor, programmeId, body: { kind: record.kind, agent: record.agent, lot: null, entry: record.entry, source } })
+  if (record.fate === 'draft') return
+  await signAs(deps, { programmeId, sender: actor, signer: record.fate === 'signed' ? people.oren : null, kind: 'record', id })
+}
