@@ -3,9 +3,9 @@
  * alone would do, however long it takes.
  */
 import { PLASMA_ASSUMPTIONS, PLASMA_COMPETITORS, PLASMA_SPECIES, type PlasmaCompetitor, type PlasmaTotals } from './media'
-import { overallFromStepwise } from './protonation'
+import { logAlphaProton, overallFromStepwise } from './protonation'
 import { solveSystem } from './solve'
-import { compileSystem, type Component, type Species } from './system'
+import { compileSystem, type CompiledSystem, type Component, type Species } from './system'
 
 export interface AgentConstants {
   /** log K of the lanthanide complex ML, M⁻¹. */
@@ -44,15 +44,44 @@ export interface BoundRefused {
   readonly message: string
 }
 
-function components(conditions: PlasmaConditions): Component[] {
-  const { totals, pcH, agent_mM } = conditions
+/** The plasma model without an agent: free concentrations, from which the solution with any agent is a few steps away. */
+export interface PlasmaBackground {
+  readonly ok: true
+  readonly free_M: Readonly<Record<string, number>>
+}
+
+function backgroundComponents({ totals, pcH }: PlasmaConditions): Component[] {
   const milli = (name: string, amount_mM: number): Component => ({ name, total_M: amount_mM / 1e3 })
   return [
-    milli('Ln', agent_mM), milli('L', agent_mM), { name: 'H', logFree: -pcH },
+    { name: 'H', logFree: -pcH },
     milli('Ca', totals.ca_mM), milli('Mg', totals.mg_mM), milli('Zn', totals.zn_uM / 1e3), milli('Cu', totals.cu_uM / 1e3),
     milli('PO4', totals.phosphate_mM), milli('CO3', totals.carbonate_mM), milli('Cit', totals.citrate_mM),
     milli('Lac', totals.lactate_mM), milli('His', totals.histidine_mM), milli('Alb', totals.albumin_mM),
   ]
+}
+
+/** OH⁻ (H⁻¹ alone) needs no balance where pH is held. */
+const BACKGROUND_SPECIES = PLASMA_SPECIES.filter(species => species.name !== 'OH')
+
+/** Solves the plasma model without an agent; the same for all agents under one profile. */
+export function plasmaBackground(conditions: PlasmaConditions): PlasmaBackground | BoundRefused {
+  const compiled = compileSystem({ components: [{ name: 'Ln', total_M: 0 }, ...backgroundComponents(conditions)], species: BACKGROUND_SPECIES })
+  if (!compiled.ok) return { ok: false, reason: 'badInput', message: compiled.message }
+  const answer = solveSystem(compiled)
+  return answer.ok ? { ok: true, free_M: answer.free_M } : { ok: false, reason: 'notConverged', message: answer.message }
+}
+
+/** ln(free) as if a thousandth of the agent had let go and the background had not noticed. */
+function startFrom(background: PlasmaBackground, system: CompiledSystem, agent: AgentConstants, conditions: PlasmaConditions): Float64Array {
+  const agent_M = conditions.agent_mM / 1e3
+  let alpha = 10 ** logAlphaProton(agent.ligandProtonation, conditions.pcH)
+  for (const metal of PLASMA_COMPETITORS) alpha += 10 ** (agent.logKCompetitors[metal] ?? -Infinity) * (background.free_M[metal] ?? 0)
+  const lnLigand = Math.log(1e-3 * agent_M / alpha)
+  return Float64Array.from(system.unknowns, (name) => {
+    if (name === 'L') return lnLigand
+    if (name === 'Ln') return Math.log(0.999 * agent_M) - agent.logK * Math.LN10 - lnLigand
+    return Math.log(background.free_M[name]!)
+  })
 }
 
 function agentSpecies(agent: AgentConstants): Species[] {
@@ -72,16 +101,21 @@ function agentSpecies(agent: AgentConstants): Species[] {
  */
 const LOG_K_PHOSPHATE_SOLID = 11.978
 
-/** Solves the plasma model with one agent in it. `start` comes from an earlier answer's `lnFree` for the same conditions. */
-export function boundInPlasma(agent: AgentConstants, conditions: PlasmaConditions): BoundInPlasma | BoundRefused {
+/**
+ * Solves the plasma model with one agent in it. `background` may be passed in where many agents share one set of conditions; the
+ * answer is the same.
+ */
+export function boundInPlasma(agent: AgentConstants, conditions: PlasmaConditions, background = plasmaBackground(conditions)): BoundInPlasma | BoundRefused {
   if (!(conditions.agent_mM > 0)) return { ok: false, reason: 'badInput', message: 'the concentration of the agent in plasma must be above zero' }
-  // OH⁻ (H⁻¹ alone) needs no balance where pH is held
-  const species = [...PLASMA_SPECIES.filter(s => s.name !== 'OH'), ...agentSpecies(agent)]
-  const compiled = compileSystem({ components: components(conditions), species })
-  if (!compiled.ok) return { ok: false, reason: 'badInput', message: compiled.message }
-  const answer = solveSystem(compiled)
-  if (!answer.ok) return { ok: false, reason: 'notConverged', message: answer.message }
+  if (!background.ok) return background
   const agent_M = conditions.agent_mM / 1e3
+  const compiled = compileSystem({
+    components: [{ name: 'Ln', total_M: agent_M }, { name: 'L', total_M: agent_M }, ...backgroundComponents(conditions)],
+    species: [...BACKGROUND_SPECIES, ...agentSpecies(agent)],
+  })
+  if (!compiled.ok) return { ok: false, reason: 'badInput', message: compiled.message }
+  const answer = solveSystem(compiled, startFrom(background, compiled, agent, conditions))
+  if (!answer.ok) return { ok: false, reason: 'notConverged', message: answer.message }
   const held = (name: string): number => (answer.species_M[name] ?? 0) / agent_M
   const leftOut = PLASMA_COMPETITORS.filter(metal => agent.logKCompetitors[metal] === undefined)
   const ligandShare: Record<string, number> = { Ln: held('LnL'), free: held('L') + agent.ligandProtonation.reduce((sum, _, j) => sum + held(`H${j + 1}L`), 0) }

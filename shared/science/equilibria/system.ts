@@ -54,43 +54,57 @@ export interface SystemRefused {
 
 const isHeld = (component: Component): component is HeldComponent => 'logFree' in component
 
-function problemOf(system: EquilibriumSystem): SystemRefused | null {
+function problemOf(system: EquilibriumSystem, signed: ReadonlySet<string>): SystemRefused | null {
   const refuse = (reason: SystemRefusal, message: string): SystemRefused => ({ ok: false, reason, message })
-  const names = new Set<string>()
+  const components = new Set<string>()
   for (const component of system.components) {
-    if (names.has(component.name)) return refuse('duplicateName', `${component.name} is listed twice`)
-    names.add(component.name)
+    if (components.has(component.name)) return refuse('duplicateName', `${component.name} is listed twice`)
+    components.add(component.name)
     const value = isHeld(component) ? component.logFree : component.total_M
     if (!Number.isFinite(value)) return refuse('notFinite', `the amount of ${component.name} is not a number`)
-    const canBeNegative = system.species.some(species => (species.stoichiometry[component.name] ?? 0) < 0)
-    if (!isHeld(component) && value < 0 && !canBeNegative) return refuse('negativeTotal', `the total of ${component.name} is negative`)
+    if (!isHeld(component) && value < 0 && !signed.has(component.name)) return refuse('negativeTotal', `the total of ${component.name} is negative`)
   }
+  const names = new Set(components)
   for (const species of system.species) {
     if (names.has(species.name)) return refuse('duplicateName', `${species.name} is listed twice`)
     names.add(species.name)
-    const powers = Object.entries(species.stoichiometry)
-    if (powers.every(([, power]) => power === 0)) return refuse('emptySpecies', `${species.name} is made of nothing`)
-    for (const [component, power] of powers) {
-      if (!system.components.some(other => other.name === component)) return refuse('unknownComponent', `${species.name} contains ${component}, which is no component`)
+    let parts = 0
+    for (const component in species.stoichiometry) {
+      const power = species.stoichiometry[component]!
+      if (power !== 0) parts++
+      if (!components.has(component)) return refuse('unknownComponent', `${species.name} contains ${component}, which is no component`)
       if (!Number.isFinite(power)) return refuse('notFinite', `a power in ${species.name} is not a number`)
     }
+    if (parts === 0) return refuse('emptySpecies', `${species.name} is made of nothing`)
     if (!Number.isFinite(species.logBeta)) return refuse('notFinite', `log β of ${species.name} is not a number`)
   }
   return null
 }
 
+/** Components that occur with a negative power in some species. */
+function signedComponents(species: readonly Species[]): Set<string> {
+  const signed = new Set<string>()
+  for (const one of species) for (const name in one.stoichiometry) if (one.stoichiometry[name]! < 0) signed.add(name)
+  return signed
+}
+
 /** Checks a system and lays it out for the solver, or says what is wrong with it. */
 export function compileSystem(system: EquilibriumSystem): CompiledSystem | SystemRefused {
-  const problem = problemOf(system)
+  const signed = signedComponents(system.species)
+  const problem = problemOf(system, signed)
   if (problem) return problem
   const held = system.components.filter(isHeld)
-  const signed = new Set(system.species.flatMap(s => Object.entries(s.stoichiometry).filter(([, p]) => p < 0).map(([name]) => name)))
   const totals = system.components.filter((c): c is TotalComponent => !isHeld(c))
   const absentNames = new Set(totals.filter(c => c.total_M === 0 && !signed.has(c.name)).map(c => c.name))
   const present = totals.filter(c => !absentNames.has(c.name))
-  const possible = system.species.filter(s => !Object.entries(s.stoichiometry).some(([name, power]) => power !== 0 && absentNames.has(name)))
+  const isPossible = (one: Species): boolean => {
+    for (const name in one.stoichiometry) if (one.stoichiometry[name] !== 0 && absentNames.has(name)) return false
+    return true
+  }
+  const possible = absentNames.size === 0 ? system.species : system.species.filter(isPossible)
   const n = present.length
   const m = n + possible.length
+  const place = new Map(present.map((component, k) => [component.name, k]))
   const powers = new Float64Array(n * m)
   const lnBeta = new Float64Array(m)
   for (let k = 0; k < n; k++) powers[k * m + k] = 1
@@ -99,7 +113,10 @@ export function compileSystem(system: EquilibriumSystem): CompiledSystem | Syste
     let logBeta = species.logBeta
     for (const component of held) logBeta += (species.stoichiometry[component.name] ?? 0) * component.logFree
     lnBeta[j] = logBeta * Math.LN10
-    for (let k = 0; k < n; k++) powers[k * m + j] = species.stoichiometry[present[k]!.name] ?? 0
+    for (const name in species.stoichiometry) {
+      const k = place.get(name)
+      if (k !== undefined) powers[k * m + j] = species.stoichiometry[name]!
+    }
   }
   return {
     ok: true,
@@ -107,6 +124,6 @@ export function compileSystem(system: EquilibriumSystem): CompiledSystem | Syste
     totals_M: Float64Array.from(present, c => c.total_M),
     names: [...present.map(c => c.name), ...possible.map(s => s.name)],
     powers, lnBeta, held,
-    absent: [...absentNames, ...system.species.filter(s => !possible.includes(s)).map(s => s.name)],
+    absent: [...absentNames, ...(absentNames.size === 0 ? [] : system.species.filter(one => !isPossible(one)).map(one => one.name))],
   }
 }

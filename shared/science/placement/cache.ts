@@ -3,7 +3,7 @@
  * recognised by identity, so evidence that changed must come in a new object.
  */
 import { indexEvidence, type EvidenceIndex } from './read'
-import type { BoundInPlasma, BoundRefused } from '../equilibria/boundInPlasma'
+import type { BoundInPlasma, BoundRefused, PlasmaBackground } from '../equilibria/boundInPlasma'
 import type { LigandFacts } from './equilibrium'
 import type { AgentEvidence } from './types'
 
@@ -13,10 +13,12 @@ export interface PlacementCache {
   readonly ligands: WeakMap<EvidenceIndex, LigandFacts | 'none'>
   /** Plasma equilibria by constants and conditions: the slow part. */
   readonly plasma: Map<string, BoundInPlasma | BoundRefused>
+  /** The plasma model without an agent, by conditions. */
+  readonly backgrounds: Map<string, PlasmaBackground | BoundRefused>
 }
 
 export function createPlacementCache(): PlacementCache {
-  return { signedOnly: new WeakMap(), withUnsigned: new WeakMap(), ligands: new WeakMap(), plasma: new Map() }
+  return { signedOnly: new WeakMap(), withUnsigned: new WeakMap(), ligands: new WeakMap(), plasma: new Map(), backgrounds: new Map() }
 }
 
 export function cachedIndex(cache: PlacementCache, agent: AgentEvidence, includeUnsigned: boolean): EvidenceIndex {

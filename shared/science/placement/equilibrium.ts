@@ -1,5 +1,5 @@
 /** From log K evidence to pM and to the fraction still bound at equilibrium in the profile's plasma model. */
-import { boundInPlasma, type BoundInPlasma } from '../equilibria/boundInPlasma'
+import { boundInPlasma, plasmaBackground, type BoundInPlasma } from '../equilibria/boundInPlasma'
 import { pMWithError } from '../equilibria/conditional'
 import { PLASMA_COMPETITORS, type PlasmaCompetitor } from '../equilibria/media'
 import { logInterval } from '../kinetics/firstOrder'
@@ -103,11 +103,15 @@ function solvePlasma(ligand: LigandFacts, profile: ScreeningProfile, cache: Plac
     ca_mM: profile.plasmaCa_mM, mg_mM: profile.plasmaMg_mM, zn_uM: profile.plasmaZn_uM, cu_uM: profile.plasmaCu_uM, phosphate_mM: profile.plasmaPhosphate_mM,
     carbonate_mM: profile.plasmaCarbonate_mM, citrate_mM: profile.plasmaCitrate_mM, lactate_mM: profile.plasmaLactate_mM, histidine_mM: profile.plasmaHistidine_mM, albumin_mM: profile.plasmaAlbumin_mM,
   }
-  const key = [ligand.key, profile.pH, profile.agentInPlasma_mM, ...Object.values(totals)].join(' ')
-  const known = cache.plasma.get(key) ?? boundInPlasma(
-    { logK: ligand.item.value, ligandProtonation: ligand.protonation, logKCompetitors: ligand.competitors },
-    { totals, pcH: profile.pH, agent_mM: profile.agentInPlasma_mM },
-  )
+  const conditions = { totals, pcH: profile.pH, agent_mM: profile.agentInPlasma_mM }
+  const place = [profile.pH, ...Object.values(totals)].join(' ')
+  const key = `${ligand.key} ${profile.agentInPlasma_mM} ${place}`
+  let known = cache.plasma.get(key)
+  if (known === undefined) {
+    const background = cache.backgrounds.get(place) ?? plasmaBackground(conditions)
+    cache.backgrounds.set(place, background)
+    known = boundInPlasma({ logK: ligand.item.value, ligandProtonation: ligand.protonation, logKCompetitors: ligand.competitors }, conditions, background)
+  }
   cache.plasma.set(key, known)
   return known.ok ? known : null
 }
