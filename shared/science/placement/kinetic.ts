@@ -98,7 +98,7 @@ export function kineticPlacement(index: EvidenceIndex, profile: ScreeningProfile
     ok: true,
     kinetic: {
       law: found.law, rate, items: found.items.filter(item => rate.evidenceIds.includes(item.id)),
-      kd_per_s: { ...plain(rate), unit: 's⁻¹', label: 'Dissociation rate', ...base },
+      kd_per_s: { ...plain(rate), unit: 's^-1', label: 'Dissociation rate', ...base },
       halfLife_s: { ...halfLifeOf(rate), unit: 's', label: 'Half-life', ...base },
       loss_frac: { ...lossOf(rate, residenceOf(profile)), unit: '', label: 'Lets go before it is eliminated (model)', ...base },
       flags: flagsOf(found.law, rate, profile),

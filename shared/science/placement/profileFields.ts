@@ -8,7 +8,7 @@ export type ProfileNumberKey = { [K in keyof ScreeningProfile]: ScreeningProfile
 export interface ProfileField {
   readonly key: ProfileNumberKey
   readonly label: string
-  /** Stored unit; '' for a plain number. */
+  /** Stored unit in the notation of units on screens (s^-1); '' for a plain number. */
   readonly unit: string
   /** Unit on the screen with its size in stored units, and the offset for °C. */
   readonly shown?: { readonly unit: string, readonly size: number, readonly offset?: number }
@@ -33,10 +33,10 @@ const plasma = (key: ProfileNumberKey, label: string, unit: string, max: number,
   field(key, 'plasma', { label, unit, min: 0, max, step, help: 'Total in the plasma model. Screening assumption.' })
 
 export const PROFILE_FIELDS: readonly ProfileField[] = [
-  field('deltaRate1_per_s', 'contrast', { label: 'ΔR1 asked for', unit: 's⁻¹', min: 0.05, max: 50, step: 0.1, help: 'Change of R1 that counts as contrast. Screening assumption.' }),
-  field('deltaRate2_per_s', 'contrast', { label: 'ΔR2 asked for', unit: 's⁻¹', min: 0.5, max: 500, step: 1, help: 'Change of R2 that counts as contrast, for T2 agents. Screening assumption.' }),
-  field('tissueRate1_per_s', 'contrast', { label: 'R1 of the tissue', unit: 's⁻¹', min: 0.05, max: 10, step: 0.05, help: 'Used for detection by saturation transfer. Screening assumption.' }),
-  field('tissueRate2_per_s', 'contrast', { label: 'R2 of the tissue', unit: 's⁻¹', min: 0.5, max: 500, step: 1, help: 'Used for detection by saturation transfer. Screening assumption.' }),
+  field('deltaRate1_per_s', 'contrast', { label: 'ΔR1 asked for', unit: 's^-1', min: 0.05, max: 50, step: 0.1, help: 'Change of R1 that counts as contrast. Screening assumption.' }),
+  field('deltaRate2_per_s', 'contrast', { label: 'ΔR2 asked for', unit: 's^-1', min: 0.5, max: 500, step: 1, help: 'Change of R2 that counts as contrast, for T2 agents. Screening assumption.' }),
+  field('tissueRate1_per_s', 'contrast', { label: 'R1 of the tissue', unit: 's^-1', min: 0.05, max: 10, step: 0.05, help: 'Used for detection by saturation transfer. Screening assumption.' }),
+  field('tissueRate2_per_s', 'contrast', { label: 'R2 of the tissue', unit: 's^-1', min: 0.5, max: 500, step: 1, help: 'Used for detection by saturation transfer. Screening assumption.' }),
   field('b0_T', 'contrast', { label: 'Field', unit: 'T', min: 0.01, max: 25, step: 0.1, help: 'A measurement counts within 5 % of this field.' }),
   field('temperature_K', 'contrast', { label: 'Temperature', unit: 'K', shown: { unit: '°C', size: 1, offset: 273.15 }, min: 273.15, max: 333.15, step: 0.5, help: 'A measurement counts within 2 K; rate constants are carried here by their activation enthalpy.' }),
   field('pH', 'contrast', { label: 'pH', unit: '', min: 3, max: 10, step: 0.1, help: 'A measurement counts within 0.2; rate laws and the plasma model are evaluated here.' }),
