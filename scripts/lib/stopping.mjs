@@ -30,14 +30,22 @@ export function hasBegunToStop() {
 
 /** Ctrl-C, a closed terminal and a polite kill all stop what this command started, and nothing else. */
 export function stopOnSignals({ say, exitCode = 0 }) {
-  for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) {
-    process.on(signal, async () => {
-      if (isStopping) return
-      say('Stopping ...')
-      await stopAll()
-      process.exit(exitCode)
-    })
+  const stop = async () => {
+    if (isStopping) return
+    say('Stopping ...')
+    await stopAll()
+    process.exit(exitCode)
   }
+  for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP']) process.on(signal, stop)
+  if (process.env.npm_lifecycle_event !== undefined) stopWithParent(stop)
+}
+
+/** npm dies of a signal without passing it on; whoever stopped npm start means all of it. */
+function stopWithParent(stop) {
+  const parent = process.ppid
+  setInterval(() => {
+    if (process.ppid !== parent) void stop()
+  }, 500).unref()
 }
 
 /**

@@ -8,7 +8,7 @@ import { afterAll, afterEach, beforeAll, describe, expect, it } from 'vitest'
 import { runningMariadb, startMariadb, stopMariadb } from '../../scripts/lib/mariadb.mjs'
 import { connectionUrl, ensureSchema } from '../../scripts/lib/mariadbAccounts.mjs'
 import { root } from '../../scripts/lib/paths.mjs'
-import { anyFreePort } from '../../scripts/lib/ports.mjs'
+import { anyFreePort, isPortFree } from '../../scripts/lib/ports.mjs'
 import { isAlive } from '../../scripts/lib/processes.mjs'
 import { makeRunFolder } from '../../scripts/lib/runFolders.mjs'
 
@@ -18,10 +18,14 @@ let data: string
 let port: number
 const children: ChildProcess[] = []
 
+function environment(more: Record<string, string> = {}): NodeJS.ProcessEnv {
+  return { ...process.env, LANTHORN_DATA: data, PORT: String(port), LANTHORN_DEMO: '0', LANTHORN_DB_BUFFER: '64M', ...more }
+}
+
 /** npm start as a person would run it, in a data folder and on a port of the test. */
 function start(env: Record<string, string> = {}): Started {
   const child = spawn(process.execPath, ['scripts/start.mjs'], {
-    cwd: root, env: { ...process.env, LANTHORN_DATA: data, PORT: String(port), LANTHORN_DEMO: '0', LANTHORN_DB_BUFFER: '64M', ...env }, stdio: ['ignore', 'pipe', 'pipe'],
+    cwd: root, env: environment(env), stdio: ['ignore', 'pipe', 'pipe'],
   })
   children.push(child)
   let text = ''
@@ -40,17 +44,10 @@ const health = async () => (await fetch(`http://127.0.0.1:${port}/api/health`)).
 const databasePid = () => runningMariadb(join(data, 'mariadb'))?.pid ?? null
 
 async function untilHealthy(): Promise<void> {
-  for (;;) {
-    try {
-      if (await health() === 200) return
-    }
-    catch (error) {
-      // Nobody listens while the web process is coming back.
-      if (!(error instanceof TypeError)) throw error
-    }
-    await delay(100)
-  }
+  while (!await isListening() || await health() !== 200) await delay(100)
 }
+
+const isListening = async () => !await isPortFree(port)
 
 /** Web, worker, mail catcher and database. */
 function allPids(child: ChildProcess): number[] {
@@ -120,6 +117,18 @@ describe.runIf(process.env.LANTHORN_OUTPUT_DIR !== undefined)('npm start', { tim
     second.child.kill('SIGTERM')
     expect(await second.ended).toBe(0)
     expect(databasePid()).toBeNull()
+  })
+
+  it('stops all of it when only npm is told to stop, for npm does not pass a signal on', async () => {
+    const npm = spawn('npm', ['start'], { cwd: root, env: environment(), stdio: ['ignore', 'pipe', 'pipe'] })
+    children.push(npm)
+    let text = ''
+    npm.stdout.setEncoding('utf8').on('data', (piece: string) => { text += piece })
+    while (!text.includes('Lanthorn is ready on')) await delay(50)
+    const database = databasePid()
+    npm.kill('SIGTERM')
+    while (databasePid() !== null || await isListening()) await delay(100)
+    expect(database).not.toBeNull()
   })
 
   it('brings web, worker and database back when each is killed', async () => {
