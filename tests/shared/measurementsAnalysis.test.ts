@@ -178,8 +178,10 @@ describe('what comes out', () => {
     expect(EvidenceDraft.parse(evidence)).toEqual(evidence)
     expect(evidence).toMatchObject({
       quantity: 'r1_per_mM_s', conditions: { b0_T: 3, temperature_K: 310.15, pH: 7.4, medium: 'plasma', mediumClass: 'plasma' },
-      covarianceGroup: { id: 'stock:stock 3', scaleFraction: 0.015 }, detail: { nTubes: 6, nTubesLeftOut: 0, preparations: 2, nPoints: 72 },
+      covarianceGroup: { id: 'stock:stock 3', scaleFraction: 0.015 }, detail: { nTubes: 6, nTubesLeftOut: 0, preparations: 2, nPoints: 72, hasBlank: true, lowestConc_mM: 0, highestConc_mM: 1 },
     })
+    const { fitSe } = evidence?.detail ?? {}
+    expect(Math.hypot(Number(fitSe), 0.015 * (evidence?.value.value ?? 0))).toBeCloseTo(evidence?.value.se ?? 0, 9)
     expect(evidenceQuantity(evidence?.quantity ?? '')).toMatchObject({ base: 'r', sub: '1', better: 'higher' })
     expect(() => evidenceQuantity('toString')).toThrow('toString')
     expect(Object.entries(EVIDENCE_QUANTITIES).every(([id, quantity]) => quantity.id === id)).toBe(true)

@@ -17,7 +17,7 @@ const phantom: fc.Arbitrary<Phantom> = fc.record({
 const style: fc.Arbitrary<Style> = fc.record({
   pair: fc.constantFrom([',', '.'], [';', '.'], [';', ','], ['\t', '.'], ['\t', ',']), mark: fc.boolean(), lineEnd: fc.constantFrom('\n', '\r\n'),
   metadata: fc.boolean(), unit: fc.constantFrom('ms' as const, 's' as const), head: fc.nat(3),
-}).map(({ pair: [delimiter = ',', decimal = '.'], ...rest }) => ({ delimiter, decimal, ...rest }))
+}).map(({ pair, ...rest }) => ({ delimiter: pair[0], decimal: pair[1], ...rest }))
 
 function written({ decimal, unit, head }: Style) {
   const number = (value: number, digits = 2) => value.toFixed(digits).replace('.', decimal)

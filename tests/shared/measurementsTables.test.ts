@@ -98,6 +98,19 @@ describe('what the person chose wins over what was found', () => {
     expect(understood.how).toEqual({ delimiter: 'chosen', decimal: 'chosen', headerRow: 'chosen', layout: 'chosen' })
   })
 
+  it('a head over two rows is one head', () => {
+    const rows = 'tube,conc (mM),TI (ms),,,\n,,50,100,500,1000\na,0,-900,-880,-300,10\nb,0.5,-800,-500,100,500\nc,1,-700,-100,600,900\n'
+    const { layout, tubes, problems } = understandTable({ text: rows, kind: relaxT1Ir, draft: { ...form, complexCode: 'SK-07', lot: 'B1' } })
+    expect(layout).toBe('rowPerTube')
+    expect(tubes[1]).toMatchObject({ label: 'b', conc_mM: 0.5, points: { rows: [[0.05, -800], [0.1, -500], [0.5, 100], [1, 500]] } })
+    expect(problems).toEqual([])
+  })
+
+  it('a concentration that is still open is the only thing said of its series', () => {
+    const { problems } = understandTable({ text: 'TI (ms),1,2,3\n50,-9,-8,-7\n500,1,2,3\n900,4,5,6\n5000,8,8,9\n', kind: relaxT1Ir, draft: { ...form, complexCode: 'SK-07', lot: 'B1' } })
+    expect(problems.map(problem => `${problem.id} ${problem.row} ${problem.column}`)).toEqual(['noConcentration 1 2', 'noConcentration 1 3', 'noConcentration 1 4'])
+  })
+
   it('a bare time across the head takes its unit from the choice', () => {
     const rows = 'tube,conc (mM),50,100,500\na,0,1,2,3\nb,1,2,3,4\nc,2,3,4,5\n'
     expect(understandTable({ text: rows, kind: relaxT1Ir }).looseUnits).toMatchObject([{ stem: 'ti', unit: null, place: 'row 1' }])

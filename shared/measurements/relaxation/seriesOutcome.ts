@@ -1,7 +1,7 @@
 import type { EvidenceDraft } from '../../evidence/types'
 import type { AnalysisInput, AnalysisOutcome, Conditions, Flag, TubeResult } from '../types'
 import { evidenceConditions } from './conditions'
-import { fitSlope } from './slope'
+import { fitSlope, lineSeLabel } from './slope'
 import { ratesFrom } from './tubeRate'
 
 interface Parts {
@@ -27,7 +27,7 @@ export function relaxivityEvidence(outcome: Extract<AnalysisOutcome, { ok: true 
   const { name, value, kind, se, interval, unit } = headline
   const used = points.filter(point => point.excluded === null)
   const dia = parameters.find(parameter => parameter.name.endsWith('Dia_per_s'))
-  const fitSe = statistics.find(({ label }) => label.endsWith('from the line'))?.value ?? null
+  const fitSe = statistics.find(({ label }) => label === lineSeLabel(name.charAt(1)))?.value ?? null
   return [{
     quantity: name, value: { value, kind, se, interval, unit }, conditions: evidenceConditions(conditions), covarianceGroup: stockGroup(conditions),
     detail: {

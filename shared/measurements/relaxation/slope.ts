@@ -12,6 +12,9 @@ export interface SlopeRefused { ok: false, reason: string, message: string, acce
 
 const LINE_POINTS = 41
 
+/** The statistic that holds the part of the error which the line itself gives. */
+export const lineSeLabel = (digit: string): string => `SE of r_${digit} from the line`
+
 /** Relaxivity of a series from the rates of its tubes; refused by value where they give no slope. */
 export function fitSlope(rates: readonly TubeRate[], conditions: Conditions, digit: '1' | '2'): SlopeDone | SlopeRefused {
   const used = rates.filter(rate => rate.excluded === null)
@@ -82,7 +85,7 @@ function statisticsOf(line: RelaxivityDone, digit: '1' | '2'): SeriesResult['sta
   return [
     { label: 'Line', value: null, text: methods[line.method] },
     { label: 'Tubes on the line', value: line.points.length, text: `${line.points.length}, ${line.dof} degrees of freedom` },
-    { label: `SE of r_${digit} from the line`, value: line.fitSe_per_mM_s, text: `${shown(line.fitSe_per_mM_s)} mM^-1 s^-1` },
+    { label: lineSeLabel(digit), value: line.fitSe_per_mM_s, text: `${shown(line.fitSe_per_mM_s)} mM^-1 s^-1` },
     { label: `SE of r_${digit} from the common concentration error`, value: line.scaleSe_per_mM_s, text: line.scaleSe_per_mM_s === null ? 'not given' : `${shown(line.scaleSe_per_mM_s)} mM^-1 s^-1` },
     { label: 'Reduced χ²', value: line.reducedChi2, text: line.reducedChi2 === null ? 'not available: no errors of the rates' : `${shown(line.reducedChi2)}, p = ${shown(line.chi2P, 2)}` },
     { label: 'p of a quadratic term', value: line.quadraticP, text: shown(line.quadraticP, 2) },

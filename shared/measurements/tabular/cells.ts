@@ -46,10 +46,10 @@ function numberProblem(cell: ValueCell, parsed: Extract<NumberCell, { ok: false 
 function domainProblem({ spec, text, row, column }: ValueCell, value: number): UploadProblem | null {
   const name = `${spec.label}: ${quoted(text)}`
   if (spec.above !== undefined && value <= spec.above) {
-    return blocks('outOfDomain', `${name} is not above ${spec.above}.`, `${spec.label.toLowerCase()} above ${spec.above}, or an empty cell`, { row, column })
+    return blocks('outOfDomain', `${name} is not above ${spec.above}.`, `a number above ${spec.above}, or an empty cell`, { row, column })
   }
   if (spec.min !== undefined && value < spec.min) {
-    return blocks('outOfDomain', `${name} is ${spec.min === 0 ? 'negative' : `below ${spec.min}`}.`, `${spec.label.toLowerCase()} of ${spec.min} or more`, { row, column })
+    return blocks('outOfDomain', `${name} is ${spec.min === 0 ? 'negative' : `below ${spec.min}`}.`, `a number of ${spec.min} or more`, { row, column })
   }
   return null
 }

@@ -19,9 +19,10 @@ export function asks(id: string, message: string, accepted: string, where: Where
   return { ...blocks(id, message, accepted, where), severity: 'asks' }
 }
 
-/** Those of the form and the whole file first, then as the file reads; beyond the limit only their number. */
+/** Each problem once, those of the form and the whole file first, then as the file reads; beyond the limit only their number. */
 export function listProblems(problems: readonly UploadProblem[]): UploadProblem[] {
-  const ordered = problems
+  const once = new Map(problems.map(problem => [JSON.stringify([problem.id, problem.row, problem.column, problem.field, problem.message]), problem]))
+  const ordered = [...once.values()]
     .map((problem, index) => ({ problem, index }))
     .sort((a, b) => (a.problem.row ?? 0) - (b.problem.row ?? 0) || (a.problem.column ?? 0) - (b.problem.column ?? 0) || a.index - b.index)
     .map(({ problem }) => problem)

@@ -9,12 +9,16 @@ interface Input { kind: MeasurementKind, series: readonly SeriesPart[], tubes: r
 export function seriesProblems({ kind, series, tubes, conditions, raw }: Input): UploadProblem[] {
   if (tubes.length === 0) return []
   if (series.length === 0) return [blocks('noSample', 'No tube is a sample with a concentration.', 'at least three tubes with different concentrations, a blank among them')]
-  const problems = series.flatMap(part => [...ownerProblems(part), ...blankProblems(part), ...kind.checkTubes(part.tubes, conditions).map(problem => placed(problem, part, raw))])
-  return problems.filter((problem, i) => problems.findIndex(other => other.id === problem.id && other.row === problem.row && other.column === problem.column && other.message === problem.message) === i)
+  return series.flatMap((part) => {
+    const samples = tubes.filter(tube => tube.role === 'sample' && tube.agent === part.complexCode && tube.batch === part.lot)
+    const owner = ownerProblems(part, samples.map(tube => tube.tubeNo))
+    // A concentration still open blocks by itself; what a series lacks can be said only when its tubes are complete.
+    if (samples.some(tube => tube.conc_mM === null)) return owner
+    return [...owner, ...blankProblems(part), ...kind.checkTubes(part.tubes, conditions).map(problem => placed(problem, part, raw))]
+  })
 }
 
-function ownerProblems({ complexCode, lot, tubes }: SeriesPart): UploadProblem[] {
-  const names = tubes.filter(tube => tube.role === 'sample').map(tube => tube.tubeNo)
+function ownerProblems({ complexCode, lot }: SeriesPart, names: readonly number[]): UploadProblem[] {
   const which = names.length > 6 ? `${names.length} tubes` : `tube${names.length > 1 ? 's' : ''} ${names.join(', ')}`
   if (complexCode === null) return [blocks('noAgent', `Nothing says which agent is in ${which}.`, 'an agent of the registry chosen for all tubes or tube by tube', { field: 'complexCode' })]
   return lot === null ? [blocks('noBatch', `Nothing says which batch of ${complexCode} is in ${which}.`, 'a batch of the agent chosen for all tubes or tube by tube', { field: 'lot' })] : []

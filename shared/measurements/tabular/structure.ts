@@ -37,8 +37,10 @@ export function findStructure(input: StructureInput): TableStructure {
   const records = filled.filter(record => !isComment(record, kind))
   const headerIndex = pickHeader({ ...input, records })
   const start = headerIndex ?? firstValues(records, decimal)
-  const header = headerIndex === null ? null : records[headerIndex] ?? null
-  const below = records.slice(headerIndex === null ? start : start + 1)
+  const found = headerIndex === null ? null : records[headerIndex] ?? null
+  const spread = found === null ? null : spreadHead(found, records[start + 1], input)
+  const header = spread ?? found
+  const below = records.slice(headerIndex === null ? start : start + (spread === null ? 1 : 2))
   const matches = header === null ? [] : matchHeaders(header.cells, kind.columns)
   const layout = draft.layout ?? guessLayout({ kind, header, matches, body: below, decimal })
   const isTransposed = layout === 'columnPerTube' && specsOf(kind, 'x').length === 0
@@ -59,6 +61,16 @@ function pickHeader({ records, kind, decimal, draft }: StructureInput): number |
   if (draft.headerRow === undefined) return findHeader(records, kind, decimal)
   const index = records.findIndex(record => record.row === draft.headerRow)
   return index < 0 ? null : index
+}
+
+/** A head over two rows: 'TI (ms)' once, and the times themselves beneath it and to its right. Joined into one row; null where the head is no such one. */
+function spreadHead(head: TableRecord, next: TableRecord | undefined, { kind, decimal }: StructureInput): TableRecord | null {
+  const at = matchHeaders(head.cells, kind.columns).findIndex(match => match?.spec.role === 'x')
+  if (next === undefined || at < 1 || head.cells.slice(at + 1).some(cell => cell !== '') || next.cells.slice(0, at).some(cell => cell !== '')) return null
+  const times = next.cells.slice(at)
+  if (filledCells({ ...next, cells: times }) < 3 || !times.every(cell => cell === '' || parseNumberCell(cell, decimal).ok)) return null
+  const unit = matchHeader(head.cells[at] ?? '', kind.columns)?.unit?.symbol ?? ''
+  return { row: next.row, raw: next.raw, cells: [...head.cells.slice(0, at), ...times.map(time => `${time} ${unit}`.trim())] }
 }
 
 /** Without a head the table begins at the first line with at least two cells, one of them a number. */
