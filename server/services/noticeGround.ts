@@ -5,7 +5,7 @@ import { programmeAddressees, programmeCode } from '../queries/addresses'
 import { listDecisionRows, findDecision, signaturesOf } from '../queries/decisions'
 import { insertNotice, listNotices } from '../queries/notices'
 import { findProfileVersion } from '../queries/profiles'
-import { takeSnapshot } from './takeSnapshot'
+import { readGround } from './takeSnapshot'
 import { unitOfWork, type Work } from './unitOfWork'
 
 export interface NoticeGroundInput { programmeId: string, cause: string }
@@ -40,7 +40,7 @@ async function wasTold(deps: Deps, programmeId: string, decisionId: string, chan
 async function changesOf(deps: Deps, programmeId: string, decisionId: string) {
   const decision = (await findDecision(deps.db, programmeId, decisionId))!
   const profile = (await findProfileVersion(deps.db, programmeId, decision.profileVersionId))!
-  const now = await takeSnapshot(deps.db, { programmeId, agentCode: decision.agentCode, profile, personId: decision.personId, at: deps.clock.now() })
+  const now = await readGround(deps.db, { programmeId, agentCode: decision.agentCode, profile })
   return groundMoved(decision.snapshot, now)
 }
 
