@@ -54,7 +54,7 @@ const digits = (value: number) => Number(value.toPrecision(3)).toString()
 const percent = (fraction: number) => `${digits(100 * fraction)} %`
 
 /** Compares T1 with a time of the acquisition; not applicable where T1 was held. */
-function compareWithT1(context: TubeContext, pick: (times: number[]) => number, judge: (time: number, t1: number) => FlagFinding): FlagFinding {
+function compareWithT1(context: TubeContext, pick: (times: number[]) => number, judge: (time_s: number, t1_s: number) => FlagFinding): FlagFinding {
   const t1 = t1Of(context.fit)
   return t1 ? judge(pick(usedOf(context).map(i => context.ti_s[i]!)), t1.value) : null
 }
