@@ -104,21 +104,21 @@ describe('laws a fit obeys', () => {
       const [one, other] = [done({ x: TI_S, y }), done({ x: TI_S.map(t => t * factor), y })]
       expectRelative([other.parameters[2]!.value, other.parameters[2]!.se!], [one.parameters[2]!.value * factor, one.parameters[2]!.se! * factor], 1e-8)
     }), { seed: 3, numRuns: 60 })
-  })
+  }, 60_000)
   it('T1 does not change when the signal is scaled; amplitudes scale along [property]', () => {
     fc.assert(fc.property(seeds, fc.double({ min: 1e-6, max: 1e6, noNaN: true }), (seed, factor) => {
       const y = noisy(seed, 10)
       const [one, other] = [done({ x: TI_S, y }), done({ x: TI_S, y: y.map(v => v * factor) })]
       expectRelative(valuesOf(other), valuesOf(one).map((v, j) => j < 2 ? v * factor : v), 1e-8)
     }), { seed: 4, numRuns: 60 })
-  })
+  }, 60_000)
   it('the order of the points does not matter [property]', () => {
     fc.assert(fc.property(seeds, fc.shuffledSubarray(TI_S.map((_, i) => i), { minLength: TI_S.length }), (seed, order) => {
       const y = noisy(seed, 10)
       const shuffled = done({ x: order.map(i => TI_S[i]!), y: order.map(i => y[i]!) })
       expectRelative(valuesOf(shuffled), valuesOf(done({ x: TI_S, y })), 1e-10)
     }), { seed: 5, numRuns: 60 })
-  })
+  }, 60_000)
   it('a point left out changes nothing, whatever its value, NaN included [property]', () => {
     const y = noisy('left out', 10)
     const base = done({ x: TI_S, y, exclude: [3] })

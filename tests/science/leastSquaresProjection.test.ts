@@ -87,7 +87,7 @@ describe('residual bootstrap', () => {
       expect(high).toBeGreaterThan(value)
     })
     expect(found.failed).toBe(0)
-  })
+  }, 60_000)
   it('draws the same for the same seed and other for another', () => {
     const run = (seed: string) => bootstrapFit(recovery, data, fit, { seed, samples: 50 })
     expect(run('a')).toEqual(run('a'))

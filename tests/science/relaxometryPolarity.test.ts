@@ -30,7 +30,7 @@ describe('polarity of magnitude data', () => {
       expect(polarity.signal).toEqual(signed)
       expect(polarity.isAmbiguous).toBe(false)
     }), { seed: 21, numRuns: 150 })
-  })
+  }, 60_000)
   it('gives the fit of the signed data to the last bit when the signs come out right', () => {
     const { signed, magnitude } = magnitudes(0.9, 5, 'same')
     const lost = fitRecovery(recovery, { x: TI_S, y: magnitude }, 'magnitude')

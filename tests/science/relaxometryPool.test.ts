@@ -56,7 +56,7 @@ describe('replicates', () => {
     // Never narrower than the plain interval makes it err on the wide side.
     expect(inside / 1500).toBeGreaterThan(0.935)
     expect(inside / 1500).toBeLessThan(0.985)
-  })
+  }, 60_000)
   it('refuse an empty list and an error of zero', () => {
     expect(poolReplicates([])).toMatchObject({ ok: false, reason: 'none' })
     expect(poolReplicates([{ value: 1, se: 0, preparation: 'a' }])).toMatchObject({ ok: false, reason: 'badError' })

@@ -124,11 +124,11 @@ describe('r2/r1', () => {
     expect(ratio(0.05)).toEqual(ratio(null))
     expect(ratio(null).value).toBeCloseTo(done(two).relaxivity_per_mM_s.value / done(one).relaxivity_per_mM_s.value, 14)
   })
-  it('has the error that 1 500 simulated pairs scatter by, to 10 % [simulation with 3 % pipetting errors common to both]', () => {
+  it('has the error that 600 simulated pairs scatter by, to 12 % [simulation with 3 % pipetting errors common to both]', () => {
     const random = createRandom('ratio')
     const ratios: number[] = []
     const errors: number[] = []
-    for (let k = 0; k < 1500; k++) {
+    for (let k = 0; k < 600; k++) {
       const actual = CONC_MM.map(c => c * (1 + 0.03 * random.normal()))
       const measure = (r: number, dia: number): RelaxivityTube[] => CONC_MM.map((conc_mM, i) => {
         const time_s = (1 + 0.01 * random.normal()) / (dia + r * actual[i]!)
@@ -141,9 +141,9 @@ describe('r2/r1', () => {
     }
     const mean = ratios.reduce((sum, r) => sum + r, 0) / ratios.length
     const sd = Math.sqrt(ratios.reduce((sum, r) => sum + (r - mean) ** 2, 0) / ratios.length)
-    const typical = errors.sort((a, b) => a - b)[750]!
-    expect(Math.abs(typical / sd - 1)).toBeLessThan(0.1)
-  })
+    const typical = errors.sort((a, b) => a - b)[300]!
+    expect(Math.abs(typical / sd - 1)).toBeLessThan(0.12)
+  }, 60_000)
   it('is not stated for lines on different tubes', () => {
     expect(relaxivityRatio(done(tubesOf()), done(tubesOf().slice(1)), tubesOf())).toBeNull()
   })

@@ -6,6 +6,8 @@ export interface LineData {
   readonly y: readonly number[]
   /** Standard error of each y; absent for an unweighted line. */
   readonly sigma?: readonly number[] | null
+  /** Degrees of freedom σ itself was estimated with; null or absent = taken as well known. */
+  readonly sigmaDof?: number | null
 }
 
 export interface LineOptions {
@@ -36,7 +38,10 @@ export interface LineDone {
   readonly covariance: number | null
   readonly slopeInterval: readonly [number, number] | null
   readonly interceptInterval: readonly [number, number] | null
+  /** Points minus 2. */
   readonly dof: number
+  /** Degrees of freedom of the interval: those of what the errors rest on, the scatter about the line or σ as given; null = unlimited. */
+  readonly intervalDof: number | null
   readonly level: number
   readonly sigmaUsed: 'known' | 'estimated'
   /** Weighted sum of squares; with σ known it is χ². */
@@ -74,8 +79,9 @@ interface Sums {
 /**
  * Weighted straight line y = intercept + slope·x, with what is needed to judge it.
  *
- * With σ known the errors are those of (XᵀWX)⁻¹ scaled by max(1, χ²red); otherwise by s². Intervals are Student's with n − 2 degrees of freedom. Sums are
- * taken about the weighted means, so no digits are lost to a far-off origin.
+ * With σ known the errors are those of (XᵀWX)⁻¹ scaled by max(1, χ²red); otherwise by s². Intervals are Student's with the degrees of freedom of what the
+ * errors rest on: n − 2 where they come from the scatter about the line, those of σ where the scatter does not exceed it. Sums are taken about the weighted
+ * means, so no digits are lost to a far-off origin.
  * @source Draper & Smith, Applied Regression Analysis, 3rd ed. (1998), chapters 1, 8 and 9; Cook, Technometrics 19, 15 (1977)
  */
 export function fitLine(data: LineData, { level = 0.95 }: LineOptions = {}): LineOutcome {
@@ -91,26 +97,32 @@ export function fitLine(data: LineData, { level = 0.95 }: LineOptions = {}): Lin
   const variance = dof > 0 ? (sigma ? Math.max(1, rss / dof) : rss / dof) : sigma ? 1 : null
   const slopeSe = variance === null ? null : Math.sqrt(variance / sums.sxx)
   const interceptSe = variance === null ? null : Math.sqrt(variance * (1 / sums.total + sums.meanX ** 2 / sums.sxx))
-  const half = dof > 0 ? tQuantile((1 + level) / 2, dof) : null
+  const intervalDof = sigma && rss <= dof ? data.sigmaDof ?? null : dof
+  const half = dof > 0 ? studentFactor(level, intervalDof) : null
   const around = (value: number, se: number | null) => se === null || half === null ? null : [value - half * se, value + half * se] as const
   const spread = y.reduce((sum, value, i) => sum + sums.weights[i]! * (value - sums.meanY) ** 2, 0)
   return {
     ok: true, slope: sums.slope, intercept, slopeSe, interceptSe, covariance: variance === null ? null : (-variance * sums.meanX) / sums.sxx,
-    slopeInterval: around(sums.slope, slopeSe), interceptInterval: around(intercept, interceptSe), dof, level, sigmaUsed: sigma ? 'known' : 'estimated', rss,
+    slopeInterval: around(sums.slope, slopeSe), interceptInterval: around(intercept, interceptSe), dof, intervalDof, level, sigmaUsed: sigma ? 'known' : 'estimated', rss,
     reducedChi2: sigma && dof > 0 ? rss / dof : null, chi2P: sigma && dof > 0 ? chi2UpperP(rss, dof) : null,
     sigma: variance === null ? null : Math.sqrt(variance), r2: spread > 0 ? 1 - rss / spread : 1, quadraticP: quadraticP(data, sums), points: judgePoints(data, sums, residuals),
   }
 }
 
 /** What a confidence band needs of a line, however it was fitted. */
-export type BandLine = Pick<LineDone, 'slope' | 'intercept' | 'slopeSe' | 'interceptSe' | 'covariance' | 'dof' | 'level'>
+export type BandLine = Pick<LineDone, 'slope' | 'intercept' | 'slopeSe' | 'interceptSe' | 'covariance' | 'dof' | 'intervalDof' | 'level'>
 
 /** Value of the line at x with the half-width of its confidence band; null where the line has no interval. */
 export function lineBand(line: BandLine, x: number): { value: number, halfWidth: number | null } {
   const value = line.intercept + line.slope * x
   if (line.dof < 1 || line.slopeSe === null || line.interceptSe === null || line.covariance === null) return { value, halfWidth: null }
   const variance = line.interceptSe ** 2 + 2 * x * line.covariance + (x * line.slopeSe) ** 2
-  return { value, halfWidth: tQuantile((1 + line.level) / 2, line.dof) * Math.sqrt(Math.max(0, variance)) }
+  return { value, halfWidth: studentFactor(line.level, line.intervalDof) * Math.sqrt(Math.max(0, variance)) }
+}
+
+/** Student's factor of a two-sided interval; null = unlimited degrees of freedom. */
+export function studentFactor(level: number, dof: number | null): number {
+  return tQuantile((1 + level) / 2, dof ?? Infinity)
 }
 
 function refuseLine({ x, y, sigma }: LineData): LineRefused | null {

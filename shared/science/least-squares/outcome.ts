@@ -39,8 +39,8 @@ export interface FitDone {
   readonly sigmaUsed: SigmaUsed
   /** Points used minus parameters. */
   readonly dof: number
-  /** Degrees of freedom behind the interval: `dof`, or those of the pooled σ. */
-  readonly intervalDof: number
+  /** Degrees of freedom of what the errors rest on: `dof` for the scatter of this fit, those of a pooled σ; null = unlimited, for a known σ that holds. */
+  readonly intervalDof: number | null
   readonly level: number
   /** Akaike's criterion with the small-sample term, σ² counted as a parameter; null with too few points. */
   readonly aicc: number | null

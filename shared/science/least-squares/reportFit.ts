@@ -1,10 +1,10 @@
 import type { Model } from '../models/define'
-import { tQuantile } from '../statistics'
 import { correlationOf, studentise, type Information } from './covariance'
 import { ENGINE_VERSION } from './engine'
 import type { FitData, PreparedData } from './fitData'
 import type { FitOptions } from './fitModel'
 import type { FitDone, FittedParameter, NoIntervalReason, SecondOpinion, SigmaUsed } from './outcome'
+import { studentFactor } from './line'
 import type { Solution } from './problem'
 
 /** Condition number of the scaled Jacobian above which parameters are not told apart. */
@@ -34,8 +34,9 @@ export function reportFit(parts: Parts): FitDone {
   const noInterval = findNoInterval(parts, dof)
   const isRegular = noInterval === null || noInterval.reason === 'onBound' || noInterval.reason === 'tooFewPoints'
   const covariance = isRegular && variance !== null && information.inverse ? scaleInverse(information.inverse, free.length, variance) : null
-  const intervalDof = sigmaUsed === 'pooled' ? options.pooledSigma!.dof : dof
-  const half = noInterval === null && intervalDof > 0 ? tQuantile((1 + level) / 2, intervalDof) : null
+  const isWithinSigma = sigmaUsed === 'known' && solution.sumOfSquares <= dof
+  const intervalDof = sigmaUsed === 'pooled' ? options.pooledSigma!.dof : isWithinSigma ? null : dof
+  const half = noInterval === null ? studentFactor(level, intervalDof) : null
   const fitted = fittedValues(parts)
   const misfit = prepared.used.map(i => data.y[i]! - fitted[i]!)
   const rss = misfit.reduce((sum, e) => sum + e * e, 0)

@@ -1,4 +1,5 @@
-import { chi2UpperP, tQuantile } from '../statistics'
+import { chi2UpperP } from '../statistics'
+import { studentFactor } from './line'
 
 export interface YorkData {
   readonly x: readonly number[]
@@ -9,6 +10,8 @@ export interface YorkData {
   readonly ySigma: readonly number[]
   /** Correlation of the two errors of each point. Default 0. */
   readonly correlation?: readonly number[]
+  /** Degrees of freedom the errors were estimated with; null or absent = taken as well known. */
+  readonly sigmaDof?: number | null
 }
 
 export interface YorkDone {
@@ -25,6 +28,8 @@ export interface YorkDone {
   readonly slopeInterval: readonly [number, number] | null
   readonly interceptInterval: readonly [number, number] | null
   readonly dof: number
+  /** As of the plain line: n − 2 where χ²red exceeds 1, otherwise those of the errors given; null = unlimited. */
+  readonly intervalDof: number | null
   readonly level: number
   /** Σ Wᵢ·(yᵢ − a − b·xᵢ)². */
   readonly chi2: number
@@ -109,7 +114,7 @@ function improve({ x, y, xSigma, ySigma, correlation }: YorkData, slope: number)
   return { slope: above / below, meanX, meanY, weights, beta }
 }
 
-function report({ x, y }: YorkData, { slope, meanX, meanY, weights, beta }: Turn, level: number, iterations: number): YorkDone {
+function report({ x, y, sigmaDof = null }: YorkData, { slope, meanX, meanY, weights, beta }: Turn, level: number, iterations: number): YorkDone {
   const n = x.length
   const intercept = meanY - slope * meanX
   const total = weights.reduce((sum, w) => sum + w, 0)
@@ -124,11 +129,12 @@ function report({ x, y }: YorkData, { slope, meanX, meanY, weights, beta }: Turn
   const factor = dof > 0 ? Math.max(1, chi2 / dof) : 1
   const slopeSe = Math.sqrt(factor * slopeVariance)
   const interceptSe = Math.sqrt(factor * interceptVariance)
-  const half = dof > 0 ? tQuantile((1 + level) / 2, dof) : null
+  const intervalDof = chi2 <= dof ? sigmaDof : dof
+  const half = dof > 0 ? studentFactor(level, intervalDof) : null
   const around = (value: number, se: number) => half === null ? null : [value - half * se, value + half * se] as const
   return {
     ok: true, slope, intercept, slopeSeUnscaled: Math.sqrt(slopeVariance), interceptSeUnscaled: Math.sqrt(interceptVariance), slopeSe, interceptSe,
-    covariance: -factor * centre * slopeVariance, slopeInterval: around(slope, slopeSe), interceptInterval: around(intercept, interceptSe), dof, level, chi2,
+    covariance: -factor * centre * slopeVariance, slopeInterval: around(slope, slopeSe), interceptInterval: around(intercept, interceptSe), dof, intervalDof, level, chi2,
     reducedChi2: dof > 0 ? chi2 / dof : null, chi2P: dof > 0 ? chi2UpperP(chi2, dof) : null, iterations,
   }
 }

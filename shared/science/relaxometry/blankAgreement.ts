@@ -28,5 +28,5 @@ export function compareWithBlank(tubes: readonly RelaxivityTube[], rate_per_s: r
   if (line.interceptSe === null || rateSe_per_s === null || line.dof < 1) return { ...base, se_per_s: null, p: null }
   const blankSe = Math.hypot(...pick(rateSe_per_s, true)) / blanks.length
   const se_per_s = Math.hypot(line.interceptSe, blankSe)
-  return { ...base, se_per_s, p: tTwoSidedP(difference_per_s / se_per_s, line.dof) }
+  return { ...base, se_per_s, p: tTwoSidedP(difference_per_s / se_per_s, line.intervalDof ?? Infinity) }
 }

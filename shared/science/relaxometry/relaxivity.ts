@@ -1,6 +1,5 @@
-import { fitLine, lineBand, type LineDone } from '../least-squares/line'
+import { fitLine, lineBand, studentFactor, type LineDone } from '../least-squares/line'
 import { fitYork, type YorkDone } from '../least-squares/york'
-import { tQuantile } from '../statistics'
 import { compareWithBlank, type BlankAgreement } from './blankAgreement'
 
 /** One tube of a series, as the line sees it. */
@@ -18,6 +17,8 @@ export interface RelaxivityTube {
 export interface RelaxivityOptions {
   /** Relative standard error common to all concentrations (stock assay); null = not given. */
   readonly scale_frac?: number | null
+  /** Degrees of freedom behind the errors of the relaxation times (of the pooled σ); null or absent = taken as well known. */
+  readonly timeSeDof?: number | null
   /** Coverage of intervals and band. Default 0.95. */
   readonly level?: number
 }
@@ -54,6 +55,8 @@ export interface RelaxivityDone {
   readonly diamagnetic_per_s: LineEstimate
   readonly method: LineMethod
   readonly dof: number
+  /** Degrees of freedom of the line's intervals; null = unlimited. */
+  readonly intervalDof: number | null
   readonly level: number
   readonly reducedChi2: number | null
   readonly chi2P: number | null
@@ -85,7 +88,7 @@ export type RelaxivityOutcome = RelaxivityDone | RelaxivityRefused
  * @param tubes left-out tubes removed by the caller
  * @source Draper & Smith (1998) for the line; York et al., Am. J. Phys. 72, 367 (2004)
  */
-export function fitRelaxivity(tubes: readonly RelaxivityTube[], { scale_frac = null, level = 0.95 }: RelaxivityOptions = {}): RelaxivityOutcome {
+export function fitRelaxivity(tubes: readonly RelaxivityTube[], { scale_frac = null, timeSeDof = null, level = 0.95 }: RelaxivityOptions = {}): RelaxivityOutcome {
   const refusal = refuseTubes(tubes, scale_frac)
   if (refusal) return refusal
   const x = tubes.map(tube => tube.conc_mM)
@@ -93,10 +96,10 @@ export function fitRelaxivity(tubes: readonly RelaxivityTube[], { scale_frac = n
   const ySigma = tubes.every(tube => tube.timeSe_s !== null) ? tubes.map(tube => tube.timeSe_s! / tube.time_s ** 2) : null
   const xSigma = tubes.map(tube => tube.concSe_mM ?? 0)
   const method: LineMethod = ySigma === null ? 'unweighted' : xSigma.some(s => s > 0) ? 'york' : 'weighted'
-  const york = method === 'york' ? fitYork({ x, y, xSigma, ySigma: ySigma! }, { level }) : null
+  const york = method === 'york' ? fitYork({ x, y, xSigma, ySigma: ySigma!, sigmaDof: timeSeDof }, { level }) : null
   if (york && !york.ok) return refuse('notConverged', york.message, 'Errors of rates and concentrations that leave a line.')
   // With the slope known, an error of the concentration is one more error of the rate: that is how York's line is judged point by point.
-  const judged = fitLine({ x, y, sigma: ySigma && ySigma.map((s, i) => Math.hypot(s, (york?.slope ?? 0) * xSigma[i]!)) }, { level })
+  const judged = fitLine({ x, y, sigma: ySigma && ySigma.map((s, i) => Math.hypot(s, (york?.slope ?? 0) * xSigma[i]!)), sigmaDof: timeSeDof }, { level })
   if (!judged.ok) return refuse('tooFewPoints', judged.message, judged.accepted)
   return report({ tubes, x, y, ySigma, method, judged, line: york ?? judged, scale_frac, level })
 }
@@ -138,7 +141,7 @@ function report({ tubes, x, y, ySigma, method, judged, line, scale_frac, level }
   const slope = withScale(line, scaleSe, level)
   return {
     ok: true, relaxivity_per_mM_s: slope, fitSe_per_mM_s: line.slopeSe, scaleSe_per_mM_s: scaleSe,
-    diamagnetic_per_s: { value: line.intercept, se: line.interceptSe, interval: line.interceptInterval }, method, dof: line.dof, level,
+    diamagnetic_per_s: { value: line.intercept, se: line.interceptSe, interval: line.interceptInterval }, method, dof: line.dof, intervalDof: line.intervalDof, level,
     reducedChi2: line.reducedChi2, chi2P: line.chi2P, quadraticP: judged.quadraticP, r2: judged.r2,
     blank: compareWithBlank(tubes, y, ySigma), span: line.intercept > 0 ? Math.max(...y) / line.intercept : null,
     points: judged.points.map((point, i) => ({
@@ -150,19 +153,21 @@ function report({ tubes, x, y, ySigma, method, judged, line, scale_frac, level }
 }
 
 /** Error and interval of the slope with the scale error added; the scale error counts as well known, so the degrees of freedom rise (Welch–Satterthwaite). */
-function withScale({ slope, slopeSe, dof }: LineDone | YorkDone, scaleSe: number | null, level: number): LineEstimate {
+function withScale({ slope, slopeSe, dof, intervalDof }: LineDone | YorkDone, scaleSe: number | null, level: number): LineEstimate {
   if (slopeSe === null) return { value: slope, se: null, interval: null }
   const se = Math.hypot(slopeSe, scaleSe ?? 0)
   if (dof < 1) return { value: slope, se, interval: null }
-  const half = se === 0 ? 0 : tQuantile((1 + level) / 2, dof * (se / slopeSe) ** 4) * se
+  // An exact line leaves no error to share out.
+  const effectiveDof = intervalDof === null || slopeSe === 0 ? null : intervalDof * (se / slopeSe) ** 4
+  const half = studentFactor(level, effectiveDof) * se
   return { value: slope, se, interval: [slope - half, slope + half] }
 }
 
 /** Line and confidence band at a concentration. The common scale error is left out: it moves the axis, not the line on it. */
 export function relaxivityBand(series: RelaxivityDone, conc_mM: number): { rate_per_s: number, low_per_s: number | null, high_per_s: number | null } {
-  const { relaxivity_per_mM_s: slope, diamagnetic_per_s: intercept, fitSe_per_mM_s, covariance, dof, level } = series
+  const { relaxivity_per_mM_s: slope, diamagnetic_per_s: intercept, fitSe_per_mM_s, covariance, dof, intervalDof, level } = series
   const { value, halfWidth } = lineBand({
-    intercept: intercept.value, slope: slope.value, interceptSe: intercept.se, slopeSe: fitSe_per_mM_s, covariance, dof, level,
+    intercept: intercept.value, slope: slope.value, interceptSe: intercept.se, slopeSe: fitSe_per_mM_s, covariance, dof, intervalDof, level,
   }, conc_mM)
   return { rate_per_s: value, low_per_s: halfWidth === null ? null : value - halfWidth, high_per_s: halfWidth === null ? null : value + halfWidth }
 }
