@@ -90,7 +90,8 @@ export function domainOf(values: readonly number[], kind: 'linear' | 'log', roun
   return [lowEnd, Math.ceil(high / step - SLACK) * step]
 }
 
-function decimalsOfStep(step: number): number {
+/** Decimals that a step between ticks needs. */
+export function decimalsOfStep(step: number): number {
   const decimals = Math.max(0, -Math.floor(Math.log10(step) + SLACK))
   // 0.25 needs one place more than its size says.
   return Math.abs(step * 10 ** decimals - Math.round(step * 10 ** decimals)) > 1e-6 ? decimals + 1 : decimals
