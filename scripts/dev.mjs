@@ -27,7 +27,7 @@ async function develop() {
     ...partEnvironment({ settings, secrets, databaseUrl, smtpUrl }),
     NODE_ENV: 'development', LANTHORN_OUTPUT_DIR: settings.output, LANTHORN_BUILD_DIR: settings.build,
   }
-  const people = await ensureFirstPeople({ settings, env, say })
+  const people = await ensureFirstPeople({ settings, env, migrationUrl, say })
   const args = {
     web: ['node_modules/nuxt/bin/nuxt.mjs', 'dev', '--no-fork', '--host', settings.host, '--port', String(settings.port)],
     worker: ['node_modules/tsx/dist/cli.mjs', 'watch', '--clear-screen=false', 'server/worker/main.ts'],

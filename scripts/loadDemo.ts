@@ -9,12 +9,13 @@ import { listDemoAccounts } from '../server/services/listDemoAccounts'
 import { closeDeps, useDeps } from '../server/utils/deps'
 
 // Loads the demonstration into an empty database and prints { loaded, accounts } as JSON. --look: only says which demo accounts there are.
+// What a load that was cut short has left is cleared away in either case: its accounts have a password that everybody knows.
 const folder = new URL('../fixtures/demo/', import.meta.url)
 const deps = useDeps()
 const mailer = smtpMailer(process.env.SMTP_URL ?? 'smtp://127.0.0.1:1025', process.env.LANTHORN_MAIL_FROM ?? 'Lanthorn <lanthorn@localhost>')
 try {
   const mayLoad = !process.argv.includes('--look')
-  if (mayLoad && await isHalfLoaded(deps.db)) await emptyHalfLoaded(process.env.DATABASE_MIGRATION_URL)
+  if (await isHalfLoaded(deps.db)) await emptyHalfLoaded(process.env.DATABASE_MIGRATION_URL)
   const loads = mayLoad && await countPersons(deps.db) === 0
   if (loads) {
     const worker = { ...deps, clock: fixedClock(new Date()), mailer, analyse: async (input: Parameters<(typeof MEASUREMENTS)[string]['analyse']>[0]) => MEASUREMENTS[input.kind]!.analyse(input) }

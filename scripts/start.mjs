@@ -27,7 +27,7 @@ async function start() {
   await ensureBuild(settings, say)
   const smtpUrl = await openMail({ settings, say, onStop })
   const env = partEnvironment({ settings, secrets, databaseUrl, smtpUrl })
-  const people = await ensureFirstPeople({ settings, env, say })
+  const people = await ensureFirstPeople({ settings, env, migrationUrl, say })
   await requirePort(settings)
   const { address } = await keepParts({ settings, env, say, onStop, args: builtParts(settings) })
   say(banner({ ...people, address, mailFolder: settings.smtpUrl === null ? settings.mail : null }))

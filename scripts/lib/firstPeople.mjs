@@ -1,21 +1,18 @@
-import { existsSync } from 'node:fs'
-import { join } from 'node:path'
 import { Failure } from './failure.mjs'
 import { runQuietly } from './children.mjs'
-import { root } from './paths.mjs'
 import { lastLines } from './processes.mjs'
 import { isLoopback } from './settings.mjs'
 
 /**
  * First start: demo data into an empty database, on loopback and unless LANTHORN_DEMO=0; otherwise a one-time link that makes the first administrator.
- * @param env environment of the parts
+ * @param options.env environment of the parts
+ * @param options.migrationUrl connection of the schema's owner, given to the demo script alone: it clears a load that was cut short
  * @returns demoAccounts (email, password and roles of each) and firstAdministratorLink (text or null)
  * @throws Failure when this would show demo accounts beyond loopback
  */
-export async function ensureFirstPeople({ settings, env, say }) {
-  if (!existsSync(join(root, 'scripts/loadDemo.ts'))) return { demoAccounts: [], firstAdministratorLink: await firstLink(env) }
+export async function ensureFirstPeople({ settings, env, migrationUrl, say }) {
   const mayLoad = settings.wantsDemo && isLoopback(settings.host)
-  const demo = await runScript(['scripts/loadDemo.ts', ...(mayLoad ? [] : ['--look'])], env, 'The demo data could not be loaded.')
+  const demo = await runScript(['scripts/loadDemo.ts', ...(mayLoad ? [] : ['--look'])], { ...env, DATABASE_MIGRATION_URL: migrationUrl }, 'The demo data could not be loaded.')
   if (demo.accounts.length > 0 && !isLoopback(settings.host)) {
     throw new Failure(`This database holds demo accounts, whose passwords are known: it is served on loopback only, not on ${settings.host}. Use another LANTHORN_DATA with LANTHORN_DEMO=0.`)
   }

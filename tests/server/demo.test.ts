@@ -1,4 +1,11 @@
-import { readFile, readdir } from 'node:fs/promises'
+import { spawn } from 'node:child_process'
+import { once } from 'node:events'
+import { mkdtemp, readFile, readdir, rm } from 'node:fs/promises'
+import { tmpdir } from 'node:os'
+import { join } from 'node:path'
+import { text } from 'node:stream/consumers'
+import { setTimeout as delay } from 'node:timers/promises'
+import { fileURLToPath } from 'node:url'
 import { afterAll, describe, expect, it } from 'vitest'
 import { demoFileText } from '../../db/seeds/demo/forward'
 import { emptyHalfLoaded, isHalfLoaded } from '../../db/seeds/demo/halfLoaded'
@@ -50,17 +57,30 @@ describe('the demonstration', () => {
     await expect(loadDemo(deps, async () => new Uint8Array())).rejects.toThrow('empty database')
   }, 120_000)
 
-  it('recognises a load that was cut short, and clears it away with the owner\'s account', async () => {
+  it('clears away what a load leaves that is killed, with the owner\'s account, before anybody is let in', async () => {
     const deps = await makeOwnDeps()
+    const env = { ...process.env, DATABASE_URL: deps.databaseUrl, DATABASE_MIGRATION_URL: deps.databaseMigrationUrl, SMTP_URL: 'smtp://127.0.0.1:9', LANTHORN_STORAGE: await mkdtemp(join(tmpdir(), 'lanthorn-demo-')) }
+    const begin = (...words: string[]) => spawn(process.execPath, ['--import', 'tsx', 'scripts/loadDemo.ts', ...words], { cwd: fileURLToPath(new URL('../..', import.meta.url)), env, stdio: ['ignore', 'pipe', 'inherit'] })
     try {
-      await expect(loadDemo(deps, () => Promise.reject(new Error('cut short')))).rejects.toThrow('cut short')
+      const killed = begin()
+      const end = once(killed, 'close')
+      while (await countPersons(deps.db) === 0 && killed.exitCode === null) await delay(20)
+      killed.kill('SIGKILL')
+      expect(await end).toEqual([null, 'SIGKILL'])
       expect(await isHalfLoaded(deps.db)).toBe(true)
-      await emptyHalfLoaded(deps.databaseMigrationUrl)
+      const second = begin('--look')
+      const said = await text(second.stdout)
+      expect(JSON.parse(said.trim().split('\n').at(-1)!)).toEqual({ loaded: false, accounts: [] })
       expect(await isHalfLoaded(deps.db)).toBe(false)
       expect(await countPersons(deps.db)).toBe(0)
     }
     finally {
+      await rm(env.LANTHORN_STORAGE, { recursive: true, force: true })
       await deps.close()
     }
   }, 120_000)
+
+  it('says what is missing when the owner\'s account is not given', async () => {
+    await expect(emptyHalfLoaded(undefined)).rejects.toThrow('DATABASE_MIGRATION_URL')
+  })
 })

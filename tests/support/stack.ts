@@ -51,7 +51,7 @@ async function start(withDemo: boolean, onStop: (step: () => unknown) => void): 
   onStop(schema.drop)
   const smtpUrl = await openMail({ settings, say, onStop })
   const env = partEnvironment({ settings, secrets: ensureSecrets(settings.data), databaseUrl: schema.databaseUrl, smtpUrl })
-  if (withDemo) await ensureFirstPeople({ settings, env, say })
+  if (withDemo) await ensureFirstPeople({ settings, env, migrationUrl: schema.databaseMigrationUrl, say })
   const { web, worker, address } = await keepParts({ settings, env, say, onStop, args: builtParts(settings) })
   const kill = (part: Part) => {
     const { pid } = { web, worker }[part]

@@ -10,6 +10,9 @@ export async function isHalfLoaded(db: Knex): Promise<boolean> {
   return (await listDemoPersons(db)).length === 0 && await countPersons(db) <= 7
 }
 
+/** The tables by which a half-loaded demonstration is told, emptied last: a clearing that is cut short itself is taken up again. */
+const TOLD_BY = ['person', 'programme']
+
 /** Empties every table, as the schema's owner, so that the load starts afresh. @throws Error when the owner's connection is not given */
 export async function emptyHalfLoaded(migrationUrl: string | undefined): Promise<void> {
   if (!migrationUrl) throw new Error('The demonstration was left half loaded, and DATABASE_MIGRATION_URL is not set to clear it away.')
@@ -17,7 +20,8 @@ export async function emptyHalfLoaded(migrationUrl: string | undefined): Promise
   try {
     const [tables] = await owner.raw('SELECT table_name AS name FROM information_schema.tables WHERE table_schema = DATABASE() AND table_type = \'BASE TABLE\' AND table_name NOT LIKE \'knex%\'') as [{ name: string }[]]
     await owner.raw('SET FOREIGN_KEY_CHECKS = 0')
-    for (const { name } of tables) await owner.raw('TRUNCATE TABLE ??', [name])
+    const names = [...tables.map(one => one.name).filter(name => !TOLD_BY.includes(name)), ...TOLD_BY]
+    for (const name of names) await owner.raw('TRUNCATE TABLE ??', [name])
     await owner.raw('SET FOREIGN_KEY_CHECKS = 1')
   }
   finally {
