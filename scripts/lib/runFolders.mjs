@@ -17,7 +17,7 @@ export async function clearAbandonedRuns(parent = PARENT) {
   if (!existsSync(parent)) return
   for (const name of readdirSync(parent)) {
     if (isAlive(Number.parseInt(name, 10))) continue
-    await stopMariadb(join(parent, name, 'mariadb'))
+    for (const folder of [join(parent, name, 'mariadb'), join(parent, name)]) await stopMariadb(folder)
     rmSync(join(parent, name), { recursive: true, force: true })
   }
 }
