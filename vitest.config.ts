@@ -31,6 +31,8 @@ export default defineConfig({
       await defineVitestProject({
         test: {
           name: 'components', environment: 'nuxt', include: ['tests/components/**/*.test.ts'],
+          // Starting the application is the slow part, and these run beside a build.
+          testTimeout: 30_000, hookTimeout: 120_000,
           environmentOptions: { nuxt: { rootDir: at('.'), domEnvironment: 'happy-dom' } },
         },
       }),
