@@ -1,6 +1,5 @@
-import { hostname } from 'node:os'
+import { availableParallelism, hostname } from 'node:os'
 import { fileURLToPath } from 'node:url'
-import { availableParallelism } from 'node:os'
 import Piscina from 'piscina'
 import { JOBS } from '../jobs/index'
 import { runNextJob } from '../jobs/runJobs'
