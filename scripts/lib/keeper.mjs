@@ -12,10 +12,11 @@ const STEADY_MS = 60_000
  * Keeps one program running: when it ends without being asked, starts it again after a pause that doubles while it keeps failing.
  * What it writes goes to a log; lines on its error stream are shown as well.
  * @param part.name how to call it on screen
+ * @param part.longestPause_ms where the doubling ends
  * @param part.command () => { args, env }, asked anew at each start
  * @returns stop(), the present pid, and whether the present process has ended
  */
-export function keepRunning({ name, command, log, say, onEnd = () => {} }) {
+export function keepRunning({ name, command, log, say, onEnd = () => {}, longestPause_ms = LONGEST_PAUSE_MS }) {
   mkdirSync(dirname(log), { recursive: true })
   const state = { child: null, pause_ms: FIRST_PAUSE_MS, isWanted: true, timer: null }
 
@@ -34,7 +35,7 @@ export function keepRunning({ name, command, log, say, onEnd = () => {} }) {
       if (Date.now() - startedAt > STEADY_MS) state.pause_ms = FIRST_PAUSE_MS
       say(`The ${name} ended (${code ?? signal}); it starts again in ${state.pause_ms / 1000} s. Its log: ${log}`)
       state.timer = setTimeout(start, state.pause_ms)
-      state.pause_ms = Math.min(2 * state.pause_ms, LONGEST_PAUSE_MS)
+      state.pause_ms = Math.min(2 * state.pause_ms, longestPause_ms)
     })
   }
 

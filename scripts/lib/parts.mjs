@@ -48,12 +48,13 @@ export function builtParts({ output }) {
 /**
  * Keeps web and worker running and waits until the web process answers.
  * @param run.args web and worker: what node is to run for each
+ * @param run.longestPause_ms longest wait before one that ended starts again
  * @returns both as kept processes, and the address
  */
-export async function keepParts({ settings, env, say, args, onStop }) {
-  const worker = keepRunning({ name: 'worker', command: () => ({ args: args.worker, env }), log: logIn(settings, 'worker'), say })
+export async function keepParts({ settings, env, say, args, onStop, longestPause_ms }) {
+  const worker = keepRunning({ name: 'worker', command: () => ({ args: args.worker, env }), log: logIn(settings, 'worker'), say, longestPause_ms })
   onStop(worker.stop)
-  const web = keepRunning({ name: 'web server', command: () => ({ args: args.web, env }), log: logIn(settings, 'web'), say })
+  const web = keepRunning({ name: 'web server', command: () => ({ args: args.web, env }), log: logIn(settings, 'web'), say, longestPause_ms })
   onStop(web.stop)
   const address = addressOf(settings)
   await untilAnswering(address, web, logIn(settings, 'web'))

@@ -28,9 +28,9 @@ export class ApiClient {
   async send(path: string, { method = 'GET', body, headers = {}, withoutToken = false }: Sent = {}): Promise<ApiAnswer> {
     const stop = new AbortController()
     const response = await fetch(`${this.origin}${path}`, {
-      method, redirect: 'manual', signal: stop.signal, ...(body === undefined ? {} : { body: JSON.stringify(body) }),
+      method, redirect: 'manual', signal: stop.signal, ...(body === undefined ? {} : { body: body instanceof FormData ? body : JSON.stringify(body) }),
       headers: {
-        ...(body === undefined ? {} : { 'content-type': 'application/json' }), ...(this.cookies.size > 0 ? { cookie: [...this.cookies].map(([name, value]) => `${name}=${value}`).join('; ') } : {}),
+        ...(body === undefined || body instanceof FormData ? {} : { 'content-type': 'application/json' }), ...(this.cookies.size > 0 ? { cookie: [...this.cookies].map(([name, value]) => `${name}=${value}`).join('; ') } : {}),
         ...(withoutToken ? {} : { 'csrf-token': this.token }), ...headers,
       },
     })

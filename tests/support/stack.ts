@@ -27,14 +27,22 @@ export interface Stack {
   stop: () => Promise<void>
 }
 
+interface StackOptions {
+  withDemo: boolean
+  /** A MariaDB of its own; else the one that tests share. */
+  server?: Awaited<ReturnType<typeof testServer>>
+  /** Longest wait before a killed process comes back; else as npm start does it. */
+  longestPause_ms?: number
+}
+
 /** Starts the built product for tests. LANTHORN_OUTPUT_DIR names a build to take as it is; otherwise one is made when sources changed. */
-export async function startStack({ withDemo }: { withDemo: boolean }): Promise<Stack> {
+export async function startStack(options: StackOptions): Promise<Stack> {
   const undo: Array<() => unknown> = []
   const stop = async () => {
     for (const step of undo.splice(0).reverse()) await step()
   }
   try {
-    return { ...await start(withDemo, step => undo.push(step)), stop }
+    return { ...await start(options, step => undo.push(step)), stop }
   }
   catch (error) {
     await stop()
@@ -42,17 +50,17 @@ export async function startStack({ withDemo }: { withDemo: boolean }): Promise<S
   }
 }
 
-async function start(withDemo: boolean, onStop: (step: () => unknown) => void): Promise<Omit<Stack, 'stop'>> {
+async function start({ withDemo, server, longestPause_ms }: StackOptions, onStop: (step: () => unknown) => void): Promise<Omit<Stack, 'stop'>> {
   const settings = await makeSettings()
   onStop(() => rmSync(settings.data, { recursive: true, force: true }))
   const say = (line: string) => process.stderr.write(`${line}\n`)
   if (process.env.LANTHORN_OUTPUT_DIR === undefined) await ensureBuild(settings, say)
-  const schema = await makeTestSchema(await testServer())
+  const schema = await makeTestSchema(server ?? await testServer())
   onStop(schema.drop)
   const smtpUrl = await openMail({ settings, say, onStop })
   const env = partEnvironment({ settings, secrets: ensureSecrets(settings.data), databaseUrl: schema.databaseUrl, smtpUrl })
   if (withDemo) await ensureFirstPeople({ settings, env, migrationUrl: schema.databaseMigrationUrl, say })
-  const { web, worker, address } = await keepParts({ settings, env, say, onStop, args: builtParts(settings) })
+  const { web, worker, address } = await keepParts({ settings, env, say, onStop, args: builtParts(settings), longestPause_ms })
   const kill = (part: Part) => {
     const { pid } = { web, worker }[part]
     if (pid !== null) process.kill(pid, 'SIGKILL')
