@@ -71,6 +71,8 @@ export default defineNuxtConfig({
       contentSecurityPolicy: {
         'upgrade-insecure-requests': false,
         'default-src': ["'self'"],
+        // Without the module's fallbacks for browsers that know no nonces: those let any script in.
+        'script-src': ["'self'", "'nonce-{{nonce}}'", "'strict-dynamic'"],
         'connect-src': isDevelopment ? ["'self'", 'ws:'] : ["'self'"],
         'img-src': ["'self'", 'data:', 'blob:'],
         'font-src': ["'self'"],
