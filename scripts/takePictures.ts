@@ -1,0 +1,85 @@
+import { spawnSync } from 'node:child_process'
+import { mkdir, readFile } from 'node:fs/promises'
+import { fileURLToPath } from 'node:url'
+import type { Browser, Page } from 'playwright-core'
+import { DEMO_PASSWORD } from '../shared/demo'
+import { openBrowser } from '../tests/support/browser'
+import { startStack } from '../tests/support/stack'
+import { findProgram } from './lib/packages.mjs'
+
+// Takes the pictures of the README from the running product with the demonstration loaded, into docs/pictures.
+const WINDOW = { width: 1440, height: 900 }
+const at = (path: string): string => fileURLToPath(new URL(`../${path}`, import.meta.url))
+
+interface Picture { name: string, by: string, path: string, then?: (page: Page) => Promise<void> }
+
+const PICTURES: readonly Picture[] = [
+  { name: 'upload', by: 'chemist', path: '/skerry/series/new', then: dropFile },
+  { name: 'series', by: 'chemist', path: '/skerry/series?agent=SK-09', then: openFirstSeries },
+  { name: 'checks', by: 'physicist', path: '/skerry/checks', then: openWaitingFit },
+  { name: 'stability', by: 'chemist', path: '/skerry/stability' },
+  { name: 'map', by: 'lead', path: '/skerry/map?agent=SK-07' },
+]
+
+async function dropFile(page: Page): Promise<void> {
+  const name = 'try-me_SK-08_A1.csv'
+  await page.locator('input[type=file]').setInputFiles({ name, mimeType: 'text/csv', buffer: await readFile(at(`fixtures/demo/${name}`)) })
+  await page.getByRole('button', { name: 'Store and fit' }).waitFor()
+}
+
+async function openFirstSeries(page: Page): Promise<void> {
+  await page.getByRole('link', { name: 'SK-09', exact: true }).first().click()
+  await page.getByText('Versions', { exact: true }).waitFor()
+}
+
+async function openWaitingFit(page: Page): Promise<void> {
+  await page.getByRole('link', { name: /SK-12/ }).first().click()
+  await page.getByText('Slope', { exact: true }).waitFor()
+}
+
+async function signIn(page: Page, who: string): Promise<void> {
+  await page.goto('/sign-in')
+  await alive(page)
+  await page.getByLabel('E-mail').fill(`${who}@skerry.example`)
+  await page.getByLabel('Password', { exact: true }).fill(DEMO_PASSWORD)
+  await page.getByRole('button', { name: 'Sign in', exact: true }).click()
+  await page.waitForURL(url => url.pathname !== '/sign-in')
+}
+
+async function alive(page: Page): Promise<void> {
+  await page.waitForFunction(() => (window as unknown as { useNuxtApp?: () => { isHydrating: boolean } }).useNuxtApp?.().isHydrating === false)
+}
+
+async function take(browser: Browser, baseURL: string, { name, by, path, then }: Picture): Promise<void> {
+  const context = await browser.newContext({ baseURL, viewport: WINDOW, colorScheme: 'light', reducedMotion: 'reduce' })
+  const page = await context.newPage()
+  await signIn(page, by)
+  await page.goto(path)
+  await alive(page)
+  await then?.(page)
+  await page.evaluate(() => document.fonts.ready.then(() => undefined))
+  await page.waitForTimeout(1_500)
+  const file = at(`docs/pictures/${name}.png`)
+  await page.screenshot({ path: file })
+  await context.close()
+  makeSmall(file)
+}
+
+/** Fewer colours make a third of the bytes; without ImageMagick the picture stays as it was taken. */
+function makeSmall(file: string): void {
+  const program = findProgram('magick') ?? findProgram('convert')
+  if (program === null) return
+  const { status, stderr } = spawnSync(program, [file, '-colors', '96', `png8:${file}`], { encoding: 'utf8' })
+  if (status !== 0) throw new Error(`${program} could not reduce ${file}: ${stderr}`)
+}
+
+await mkdir(at('docs/pictures'), { recursive: true })
+const stack = await startStack({ withDemo: true })
+const browser = await openBrowser()
+try {
+  for (const picture of PICTURES) await take(browser, stack.baseURL, picture)
+}
+finally {
+  await browser.close()
+  await stack.stop()
+}
