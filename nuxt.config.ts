@@ -34,6 +34,7 @@ export default defineNuxtConfig({
     '@fontsource/fira-mono/latin-500.css',
     '~/assets/css/tokens.css',
     '~/assets/css/parts.css',
+    '~/assets/css/map.css',
   ],
   // Utilities load last, so that a class on an element may adjust a part of parts.css.
   tailwindcss: { cssPath: ['~/assets/css/tailwind.css', { injectPosition: 'last' }], config: tailwind, viewer: false },
