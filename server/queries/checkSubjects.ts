@@ -18,6 +18,8 @@ export interface CheckSubject {
   conditions: string
   /** Everyone who uploaded it, entered its concentrations or conditions, or typed any version of it. */
   enteredBy: { personId: string, name: string }[]
+  /** Who asked for this version of a fit; null for what is typed, which its authors made. */
+  madeBy: string | null
   /** Why nothing more can happen to it; null = it stands. */
   barred: 'refused' | 'withdrawn' | 'replaced' | null
 }
@@ -27,19 +29,19 @@ export async function findCheckSubject(db: Knex, programmeId: string, kind: Chec
   return found
 }
 
-interface FitRaw { id: Buffer, series_id: Buffer, version_no: number, outcome: 'ok' | 'refused', kind: string, title: string, conditions: string, complex_id: Buffer, code: string, newest: number, withdrawn: number, replaced: number }
+interface FitRaw { id: Buffer, requested_by: Buffer, series_id: Buffer, version_no: number, outcome: 'ok' | 'refused', kind: string, title: string, conditions: string, complex_id: Buffer, code: string, newest: number, withdrawn: number, replaced: number }
 
 async function fitSubject(db: Knex, programmeId: string, id: string): Promise<CheckSubject | null> {
   const row = await db('fit as f').join('series as s', 's.id', 'f.series_id').join('complex as c', 'c.id', 's.complex_id')
     .where('f.programme_id', toBinary(programmeId)).where('f.id', toBinary(id))
-    .first('f.id', 'f.series_id', 'f.version_no', 'f.outcome', 's.kind', 's.title', 's.conditions', 's.complex_id', 'c.code',
+    .first('f.id', 'f.series_id', 'f.version_no', 'f.outcome', 'f.requested_by', 's.kind', 's.title', 's.conditions', 's.complex_id', 'c.code',
       db.raw('(SELECT MAX(n.version_no) FROM fit n WHERE n.series_id = f.series_id) AS newest'),
       db.raw('EXISTS(SELECT 1 FROM series_event w WHERE w.series_id = f.series_id AND w.event = \'withdrawn\') AS withdrawn'),
       db.raw('EXISTS(SELECT 1 FROM series n WHERE n.replaces = f.series_id) AS replaced')) as FitRaw | undefined
   if (!row) return null
   return {
     kind: 'fit', id, chainId: fromBinary(row.series_id), versionNo: row.version_no, newestVersionNo: Number(row.newest), complexId: fromBinary(row.complex_id), agentCode: row.code,
-    what: row.kind, title: row.title, conditions: row.conditions, enteredBy: await seriesAuthors(db, row.series_id),
+    what: row.kind, title: row.title, conditions: row.conditions, enteredBy: await seriesAuthors(db, row.series_id), madeBy: fromBinary(row.requested_by),
     barred: row.outcome === 'refused' ? 'refused' : row.withdrawn ? 'withdrawn' : row.replaced ? 'replaced' : null,
   }
 }
@@ -64,7 +66,7 @@ async function recordSubject(db: Knex, programmeId: string, id: string): Promise
   if (!row) return null
   return {
     kind: 'record', id, chainId: fromBinary(row.root_id), versionNo: row.version_no, newestVersionNo: Number(row.newest), complexId: fromBinaryOrNull(row.complex_id),
-    agentCode: row.code ?? row.ligand_code, what: row.kind, title: row.kind, conditions: row.conditions, enteredBy: await authors(db, 'record', 'root_id', row.root_id), barred: null,
+    agentCode: row.code ?? row.ligand_code, what: row.kind, title: row.kind, conditions: row.conditions, enteredBy: await authors(db, 'record', 'root_id', row.root_id), madeBy: null, barred: null,
   }
 }
 
@@ -77,7 +79,7 @@ async function batchSubject(db: Knex, programmeId: string, id: string): Promise<
   if (!row) return null
   return {
     kind: 'batchVersion', id, chainId: fromBinary(row.batch_id), versionNo: row.version_no, newestVersionNo: Number(row.newest), complexId: fromBinary(row.complex_id), agentCode: row.code,
-    what: 'batch', title: `Batch ${row.lot}`, conditions: '{}', enteredBy: await authors(db, 'batch_version', 'batch_id', row.batch_id), barred: null,
+    what: 'batch', title: `Batch ${row.lot}`, conditions: '{}', enteredBy: await authors(db, 'batch_version', 'batch_id', row.batch_id), madeBy: null, barred: null,
   }
 }
 

@@ -39,12 +39,18 @@ export async function currentChecks(db: Knex, programmeId: string, states: reado
   return rows.map(row => ({ subjectId: fromBinary(row.subject_id), kind: row.subject_kind, state: row.state, seq: row.seq, personId: fromBinary(row.person_id), since: row.since }))
 }
 
-/** Versions of one chain that wait for a check, other than the one given. */
-export async function waitingSiblings(trx: Knex, programmeId: string, kind: CheckSubjectKind, chainId: string, exceptId: string): Promise<{ subjectId: string, seq: number }[]> {
+export interface ChainPlace { programmeId: string, kind: CheckSubjectKind, chainId: string, exceptId: string }
+export interface WaitingSibling { subjectId: string, seq: number, versionNo: number }
+
+/** Versions of one chain that wait for a check, other than the one given, oldest first. `lock` holds them until the transaction ends. */
+export async function waitingSiblings(db: Knex, { programmeId, kind, chainId, exceptId }: ChainPlace, { lock = false } = {}): Promise<WaitingSibling[]> {
   const { table, chain } = CHAINS[kind]
-  const rows = await trx('check_current as c').join(`${table} as t`, 't.id', 'c.subject_id').where('c.programme_id', toBinary(programmeId)).where(`t.${chain}`, toBinary(chainId))
-    .whereNot('c.subject_id', toBinary(exceptId)).whereIn('c.state', ['waiting', 'firstSigned']).select('c.subject_id', 'c.seq') as { subject_id: Buffer, seq: number }[]
-  return rows.map(row => ({ subjectId: fromBinary(row.subject_id), seq: row.seq }))
+  // Two steps: the application may not lock rows of the append-only tables that a join would bring in.
+  const versions = await db(table).where({ programme_id: toBinary(programmeId), [chain]: toBinary(chainId) }).whereNot('id', toBinary(exceptId)).select('id', 'version_no') as { id: Buffer, version_no: number }[]
+  const query = db('check_current').where({ programme_id: toBinary(programmeId) }).whereIn('subject_id', versions.map(one => one.id)).whereIn('state', ['waiting', 'firstSigned'])
+  const rows = await (lock ? query.forUpdate() : query).select('subject_id', 'seq') as { subject_id: Buffer, seq: number }[]
+  const numberOf = (id: Buffer): number => versions.find(one => one.id.equals(id))!.version_no
+  return rows.map(row => ({ subjectId: fromBinary(row.subject_id), seq: row.seq, versionNo: numberOf(row.subject_id) })).sort((one, other) => one.versionNo - other.versionNo)
 }
 
 /** Where each kind of subject is stored and which column names its chain of versions. */

@@ -35,17 +35,20 @@ interface Raw {
 }
 
 /**
- * Evidence of a programme in the order it came, with the state of its check. Fits of withdrawn series are left out; a 'signed' scope sees signed only.
+ * Evidence of a programme in the order it came, with the state of its check. Fits of withdrawn and corrected series are left out unless
+ * `withGone` asks for them, for numbers that a decision froze; a 'signed' scope sees signed only.
  * Which version of a chain counts is for currentEvidence() to say.
  */
-export async function readEvidence(db: Knex, programmeId: string, scope: Scope, filter: { complexId?: string, ids?: readonly string[] } = {}): Promise<EvidenceItemDto[]> {
+export async function readEvidence(db: Knex, programmeId: string, scope: Scope, filter: { complexId?: string, ids?: readonly string[], withGone?: boolean } = {}): Promise<EvidenceItemDto[]> {
   const rows = await db('evidence as e')
     .leftJoin('check_current as c', 'c.subject_id', 'e.origin_id')
     .leftJoin('fit as f', 'f.id', 'e.fit_id').leftJoin('record as r', 'r.id', 'e.record_id').leftJoin('batch_version as b', 'b.id', 'e.batch_version_id')
     .where('e.programme_id', toBinary(programmeId))
-    .whereNotExists(db('series_event as w').whereRaw('w.series_id = f.series_id').where('w.event', 'withdrawn').select(db.raw('1')))
-    .whereNotExists(db('series as s').whereRaw('s.replaces = f.series_id').select(db.raw('1')))
     .modify((query) => {
+      if (!filter.withGone) {
+        void query.whereNotExists(db('series_event as w').whereRaw('w.series_id = f.series_id').where('w.event', 'withdrawn').select(db.raw('1')))
+          .whereNotExists(db('series as s').whereRaw('s.replaces = f.series_id').select(db.raw('1')))
+      }
       if (scope === 'signed') void query.where('c.state', 'signed')
       if (filter.complexId) void query.where('e.complex_id', toBinary(filter.complexId))
       if (filter.ids) void query.whereIn('e.id', filter.ids.map(toBinary))

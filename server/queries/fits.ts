@@ -1,4 +1,5 @@
 import type { Knex } from 'knex'
+import type { CheckState } from '../../shared/checks/transitions'
 import type { Exclusion } from '../../shared/measurements/types'
 import { fromBinary, fromBinaryOrNull, toBinary, toBinaryOrNull } from '../platform/ids'
 
@@ -64,7 +65,7 @@ export async function fitOfJob(db: Knex, jobId: string): Promise<string | null> 
   return row ? fromBinary(row.id) : null
 }
 
-export type CheckWord = 'draft' | 'waiting' | 'signed' | 'returned' | 'recalled' | 'withdrawn'
+export type CheckWord = CheckState
 
 export interface FitVersionRow {
   id: string

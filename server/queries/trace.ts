@@ -2,6 +2,7 @@ import type { Knex } from 'knex'
 import type { Conditions } from '../../shared/measurements/types'
 import { hex } from '../platform/hashes'
 import { fromBinary, toBinary } from '../platform/ids'
+import { WITHDRAWN } from './series'
 
 export interface FitTrace {
   fitId: string
@@ -21,6 +22,8 @@ export interface FitTrace {
   conditions: Conditions
   recordedBy: string
   recordedAt: Date
+  /** Why its numbers count no longer; null = they do. */
+  gone: 'withdrawn' | 'replaced' | null
   tubes: number
   points: number
   uploadId: string
@@ -33,7 +36,7 @@ export interface FitTrace {
 
 interface FitRaw {
   fit_id: Buffer, version_no: number, model_id: string, model_version: number, engine: string, seed: string, result_hash: Buffer, input_hash: Buffer, fitted_at: Date, fitted_by: string, exclusions: number
-  series_id: Buffer, title: string, kind: string, conditions: string, recorded_by: string, recorded_at: Date, tubes: number, points: number
+  series_id: Buffer, title: string, kind: string, conditions: string, recorded_by: string, recorded_at: Date, withdrawn: number, replaced: number, tubes: number, points: number
   upload_id: Buffer, file_name: string, bytes: number, sha256: Buffer, uploaded_by: string, uploaded_at: Date
 }
 
@@ -45,6 +48,7 @@ export async function traceFit(db: Knex, programmeId: string, fitId: string): Pr
     .first('f.id as fit_id', 'f.version_no', 'f.model_id', 'f.model_version', 'f.engine', 'f.seed', 'f.result_hash', 'f.input_hash', 'f.created_at as fitted_at', 'fp.name as fitted_by',
       db.raw('(SELECT COUNT(*) FROM exclusion x WHERE x.fit_id = f.id) AS exclusions'),
       's.id as series_id', 's.title', 's.kind', 's.conditions', 'sp.name as recorded_by', 's.created_at as recorded_at',
+      db.raw(`EXISTS (${WITHDRAWN}) AS withdrawn`), db.raw('EXISTS (SELECT 1 FROM series n WHERE n.replaces = s.id) AS replaced'),
       db.raw('(SELECT COUNT(*) FROM tube t WHERE t.series_id = s.id) AS tubes'), db.raw('(SELECT SUM(t.n_points) FROM tube t WHERE t.series_id = s.id) AS points'),
       'u.id as upload_id', 'u.file_name', 'u.bytes', 'u.sha256', 'up.name as uploaded_by', 'u.uploaded_at') as FitRaw | undefined
   if (!row) return null
@@ -52,6 +56,7 @@ export async function traceFit(db: Knex, programmeId: string, fitId: string): Pr
     fitId: fromBinary(row.fit_id), versionNo: row.version_no, modelId: row.model_id, modelVersion: row.model_version, engine: JSON.parse(row.engine) as FitTrace['engine'], seed: row.seed,
     resultHash: hex(row.result_hash), inputHash: hex(row.input_hash), fittedAt: row.fitted_at, fittedBy: row.fitted_by, exclusions: Number(row.exclusions),
     seriesId: fromBinary(row.series_id), seriesTitle: row.title, kind: row.kind, conditions: JSON.parse(row.conditions) as Conditions, recordedBy: row.recorded_by, recordedAt: row.recorded_at,
+    gone: row.withdrawn ? 'withdrawn' : row.replaced ? 'replaced' : null,
     tubes: Number(row.tubes), points: Number(row.points ?? 0), uploadId: fromBinary(row.upload_id), fileName: row.file_name, fileBytes: row.bytes, fileSha256: hex(row.sha256),
     uploadedBy: row.uploaded_by, uploadedAt: row.uploaded_at,
   }

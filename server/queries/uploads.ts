@@ -53,6 +53,13 @@ export async function settleStaged(trx: Knex, id: string, state: Exclude<StagedS
   return await trx('upload_staged').where({ id: toBinary(id), state: 'staged' }).update({ state }) === 1
 }
 
+/** A person's staged uploads that are neither stored nor given up, newest first. */
+export async function openStaged(db: Knex, { programmeId, personId, now }: { programmeId: string, personId: string, now: Date }): Promise<StagedRow[]> {
+  const rows = await db('upload_staged').where({ programme_id: toBinary(programmeId), person_id: toBinary(personId), state: 'staged' }).where('expires_at', '>', now)
+    .orderBy('created_at', 'desc').orderBy('id', 'desc').limit(50) as RawStaged[]
+  return rows.map(toStaged)
+}
+
 /** Staged uploads whose time is over, oldest first. */
 export async function overdueStaged(db: Knex, now: Date, limit: number): Promise<StagedRow[]> {
   const rows = await db('upload_staged').where('state', 'staged').where('expires_at', '<=', now).orderBy('expires_at').limit(limit) as RawStaged[]

@@ -7,6 +7,7 @@ import { appendCheckEvent, checkEvents, findCheckState } from '../queries/checks
 import { type CheckSubject, findCheckSubject } from '../queries/checkSubjects'
 import { readSignatureGround } from '../queries/signatureGround'
 import type { Knex } from 'knex'
+import { carryOver } from './carryOver'
 import { unitOfWork, type Work } from './unitOfWork'
 
 export interface StepInput {
@@ -31,11 +32,16 @@ export interface StepPlan {
   name: string
   /** The event to append; asked inside the transaction, where it may depend on what happened before. */
   event: (trx: Knex.Transaction, subject: CheckSubject) => Promise<CheckEvent>
+  /** Whether a version made while checking may take the place of the one that waits. */
+  carries?: boolean
   /** Refusals beyond the order of states. */
   check?: (subject: CheckSubject, input: StepInput) => void
   /** What else belongs to this step: mail, jobs, steps of other versions. */
   also: (step: Step) => Promise<void>
 }
+
+/** The step answers an older state. Who took the newer step is read afterwards: inside the transaction its snapshot may be older than that step. */
+class StaleStep extends Error {}
 
 const NOT_FOUND = 'There is no such fit or record in this programme.'
 
@@ -50,18 +56,19 @@ export async function takeStep(deps: Deps, input: StepInput, plan: StepPlan): Pr
       const subject = await findCheckSubject(work.trx, programmeId, kind, id)
       if (!subject) throw new AppError('notFound', NOT_FOUND)
       const current = await findCheckState(work.trx, programmeId, id, { lock: true })
-      if (current.seq !== input.expectedSeq) throw await conflict(work.trx, input)
+      if (current.seq !== input.expectedSeq) throw new StaleStep()
       plan.check?.(subject, input)
+      const standing = plan.carries ? await carryOver(work, input, subject, current) : current
       const event = await plan.event(work.trx, subject)
-      refuseUnless(current.state, event, input.comment)
-      const seq = current.seq + 1
+      refuseUnless(standing.state, event, input.comment)
+      const seq = standing.seq + 1
       await appendCheckEvent(work.trx, { id: work.id(), programmeId, kind, subjectId: id, seq, event, comment: input.comment.trim(), personId: actor.personId, at: work.now })
       await plan.also({ work, input, subject, seq, event })
       return { result: { state: event, seq }, subject: `${kind} ${id}`, payload: { agent: subject.agentCode, title: subject.title, versionNo: subject.versionNo, event, comment: input.comment.trim() } }
     })
   }
   catch (error) {
-    if (isDuplicate(error, 'step')) throw await conflict(deps.db, input)
+    if (error instanceof StaleStep || isDuplicate(error, 'step')) throw await conflict(deps.db, input)
     throw error
   }
 }

@@ -6,6 +6,7 @@ import { type StepInput, takeStep } from './checkSteps'
 export function returnEvidence(deps: Deps, input: StepInput) {
   return takeStep(deps, input, {
     name: 'returnEvidence',
+    carries: true,
     event: async () => 'returned',
     also: step => tellAuthors(deps, step, {
       template: 'check.returned', subject: `Returned: ${nameOf(step.subject)}`,

@@ -10,7 +10,8 @@ import { type CheckSubject, findCheckSubject } from '../queries/checkSubjects'
 import { countFlags } from '../queries/signatureGround'
 import { secondSignature, signingBar } from './checkSteps'
 import { describeSubject } from './describeSubject'
-import { submitBar } from './submitForCheck'
+import { placeInQueue, submitBar } from './carryOver'
+import { otherSlopes } from './otherSlopes'
 
 interface ShowInput { actor: Actor, programmeId: string, kind: CheckSubjectKind, id: string }
 
@@ -22,15 +23,18 @@ export async function showCheck(deps: Deps, { actor, programmeId, kind, id }: Sh
   const last = events.at(-1)
   const already = last?.event === 'firstSigned' && last.personId === actor.personId ? 'You gave the first signature; the second one is somebody else\'s.' : null
   return {
-    ...await toSubjectDto(deps, programmeId, subject, current),
+    ...await subjectDto(deps, programmeId, subject, current),
     events: events.map(event => ({ ...event, at: event.at.toISOString() })),
     signingBarred: signingBar(subject, actor.personId) ?? already,
     secondSignature: await secondSignature(deps.db, subject, programmeId),
     submitBarred: submitBar(subject),
+    takesPlaceOf: (await placeInQueue(deps.db, programmeId, subject, current.state))?.versionNo ?? null,
+    others: await otherSlopes(deps, programmeId, subject),
   }
 }
 
-async function toSubjectDto(deps: Deps, programmeId: string, subject: CheckSubject, current: { state: CheckSubjectDto['state'], seq: number, since: Date | null }): Promise<CheckSubjectDto> {
+/** A subject with its agent's mark and where its check stands. */
+export async function subjectDto(deps: Deps, programmeId: string, subject: CheckSubject, current: { state: CheckSubjectDto['state'], seq: number, since: Date | null }): Promise<CheckSubjectDto> {
   const mark = subject.complexId ? await agentMark(deps.db, programmeId, subject.complexId) : null
   const { title, description } = describeSubject(deps, subject)
   return {
@@ -51,5 +55,5 @@ export async function listQueue(deps: Deps, { actor, programmeId }: { actor: Act
 async function toQueueItem(deps: Deps, { actor, programmeId, one }: { actor: Actor, programmeId: string, one: CheckCurrent }) {
   const subject = await findCheckSubject(deps.db, programmeId, one.kind, one.subjectId)
   if (!subject || subject.barred) return null
-  return { one, dto: { ...await toSubjectDto(deps, programmeId, subject, one), mine: signingBar(subject, actor.personId) !== null } }
+  return { one, dto: { ...await subjectDto(deps, programmeId, subject, one), mine: signingBar(subject, actor.personId) !== null } }
 }

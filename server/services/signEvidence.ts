@@ -1,7 +1,7 @@
 import { AppError } from '../../shared/errors'
 import type { Deps } from '../platform/deps'
 import { checkEvents } from '../queries/checks'
-import { nameOf, tellAuthors } from './checkMail'
+import { leftOutBy, nameOf, tellAuthors } from './checkMail'
 import { secondSignature, signingBar, type StepInput, takeStep } from './checkSteps'
 
 /**
@@ -11,6 +11,7 @@ import { secondSignature, signingBar, type StepInput, takeStep } from './checkSt
 export function signEvidence(deps: Deps, input: StepInput) {
   return takeStep(deps, input, {
     name: 'signEvidence',
+    carries: true,
     check(subject) {
       const bar = signingBar(subject, input.actor.personId)
       if (bar) throw new AppError('notAllowed', bar)
@@ -28,7 +29,7 @@ export function signEvidence(deps: Deps, input: StepInput) {
       await tellAuthors(deps, step, {
         template: first ? 'check.firstSigned' : 'check.signed',
         subject: `${first ? 'Signed once' : 'Signed'}: ${nameOf(subject)}`,
-        lines: [`${input.actor.name} ${first ? 'gave the first of two signatures to' : 'signed'} ${nameOf(subject)}.`, ...(input.comment.trim() ? ['', input.comment.trim()] : [])],
+        lines: [`${input.actor.name} ${first ? 'gave the first of two signatures to' : 'signed'} ${nameOf(subject)}.`, ...(input.comment.trim() ? ['', input.comment.trim()] : []), ...await leftOutBy(step)],
       })
       if (!first) await work.enqueue({ kind: 'ground.notice', dedupeKey: `ground:${input.id}:${seq}`, payload: { programmeId: input.programmeId, complexId: subject.complexId, cause: `signed:${input.id}:${seq}` }, maxAttempts: 5 })
     },

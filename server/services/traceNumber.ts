@@ -7,7 +7,7 @@ import { agentMark } from '../queries/agentMarks'
 import { findProgramme } from '../queries/programmes'
 import { checkEvents } from '../queries/checks'
 import { readEvidence } from '../queries/evidence'
-import { type FitTrace, traceBatch, traceFit, traceRecord } from '../queries/trace'
+import { type FitTrace, type RecordTrace, traceBatch, traceFit, traceRecord } from '../queries/trace'
 import { RECORD_KINDS } from '../../shared/evidence/records/index'
 
 interface TraceInput { programmeId: string, scope: Scope, evidenceId: string }
@@ -17,16 +17,17 @@ interface TraceInput { programmeId: string, scope: Scope, evidenceId: string }
  * A partner sees the chain of signed numbers, without file names unless the programme opened them.
  */
 export async function traceNumber(deps: Deps, { programmeId, scope, evidenceId }: TraceInput): Promise<TraceDto> {
-  const [item] = await readEvidence(deps.db, programmeId, scope, { ids: [evidenceId] })
+  const [item] = await readEvidence(deps.db, programmeId, scope, { ids: [evidenceId], withGone: scope === 'programme' })
   if (!item) throw new AppError('notFound', 'There is no such number, or it is not open to you.')
   const programme = await findProgramme(deps.db, programmeId)
   if (!programme) throw new Error(`There is no programme ${programmeId}.`)
   const mark = await agentMark(deps.db, programmeId, item.complexId)
   const view: View = { code: programme.code, showFile: scope !== 'signed' || programme.partnerSeesRawFiles, staff: scope !== 'signed' }
-  const origin = await originSteps(deps, programmeId, item, view)
+  const { steps: origin, repeat } = await originSteps(deps, programmeId, item, { ...view, agentCode: mark?.code ?? '' })
   return {
     evidenceId, quantity: item.quantity, agentCode: mark?.code ?? '', value: item.value,
     steps: [...origin.slice(0, 1), ...await checkSteps(deps, programmeId, item, view), ...origin.slice(1)],
+    repeat: view.staff ? repeat : null,
   }
 }
 
@@ -39,18 +40,26 @@ async function checkSteps(deps: Deps, programmeId: string, item: EvidenceItemDto
   return [step('check', 'Signed', signatures.map(one => `${one.personName}, ${moment(one.at)}`), { lit: true, href: view.staff ? `/${view.code}/checks/${item.origin.kind}/${item.origin.id}` : null })]
 }
 
-async function originSteps(deps: Deps, programmeId: string, item: EvidenceItemDto, view: View): Promise<TraceStep[]> {
-  if (item.origin.kind === 'fit') return fitSteps(mustExist(await traceFit(deps.db, programmeId, item.origin.id)), item, view)
-  if (item.origin.kind === 'record') {
-    const record = mustExist(await traceRecord(deps.db, programmeId, item.origin.id))
-    return [
-      step('record', `${RECORD_KINDS[record.kind]?.title ?? record.kind}, version ${record.versionNo}`, [`entered by ${record.enteredBy}, ${moment(record.enteredAt)}`], { href: `/${view.code}/records/${record.recordId}`, sha256: record.payloadHash, lit: item.signed }),
-      step('source', 'Source', [record.citation, ...(record.doi ? [`doi ${record.doi}`] : []), ...(record.origin === 'memory' ? ['from memory, not looked up'] : [])]),
-    ]
+async function originSteps(deps: Deps, programmeId: string, item: EvidenceItemDto, view: View & { agentCode: string }): Promise<{ steps: TraceStep[], repeat: TraceDto['repeat'] }> {
+  if (item.origin.kind === 'fit') {
+    const fit = mustExist(await traceFit(deps.db, programmeId, item.origin.id))
+    return { steps: fitSteps(fit, item, view), repeat: { seriesId: fit.seriesId, versionNo: fit.versionNo } }
   }
+  if (item.origin.kind === 'record') return { steps: recordSteps(mustExist(await traceRecord(deps.db, programmeId, item.origin.id)), item, view), repeat: null }
   const batch = mustExist(await traceBatch(deps.db, programmeId, item.origin.id))
-  return [step('batch', `Batch ${batch.lot}, version ${batch.versionNo}`, [`entered by ${batch.enteredBy}, ${moment(batch.enteredAt)}`], { sha256: batch.payloadHash, lit: item.signed })]
+  const lines = [`entered by ${batch.enteredBy}, ${moment(batch.enteredAt)}`]
+  return { steps: [step('batch', `Batch ${batch.lot}, version ${batch.versionNo}`, lines, { sha256: batch.payloadHash, lit: item.signed, href: `/${view.code}/agents/${encodeURIComponent(view.agentCode)}` })], repeat: null }
 }
+
+function recordSteps(record: RecordTrace, item: EvidenceItemDto, view: View): TraceStep[] {
+  const title = `${RECORD_KINDS[record.kind]?.title ?? record.kind}, version ${record.versionNo}`
+  return [
+    step('record', title, [`entered by ${record.enteredBy}, ${moment(record.enteredAt)}`], { href: `/${view.code}/records/${record.recordId}`, sha256: record.payloadHash, lit: item.signed }),
+    step('source', 'Source', [record.citation, ...(record.doi ? [`doi ${record.doi}`] : []), ...(record.origin === 'memory' ? ['from memory, not looked up'] : [])]),
+  ]
+}
+
+const GONE = { withdrawn: 'withdrawn since: its numbers count no longer', replaced: 'its conditions were corrected since: its numbers count no longer' } as const
 
 function fitSteps(fit: FitTrace, item: EvidenceItemDto, view: View): TraceStep[] {
   const file = view.showFile
@@ -58,8 +67,8 @@ function fitSteps(fit: FitTrace, item: EvidenceItemDto, view: View): TraceStep[]
     : step('file', 'Raw file', [`uploaded ${moment(fit.uploadedAt)}`], { sha256: fit.fileSha256 })
   return [
     step('fit', `Fit, version ${fit.versionNo}`, [`model ${fit.modelId}, version ${fit.modelVersion}`, `${fit.fittedBy}, ${moment(fit.fittedAt)}`, ...(fit.exclusions > 0 ? [`${fit.exclusions} left out, with reasons`] : [])],
-      { href: `/${view.code}/series/${fit.seriesId}?version=${fit.versionNo}`, sha256: fit.resultHash, lit: item.signed }),
-    step('series', fit.seriesTitle, [`recorded by ${fit.recordedBy}, ${moment(fit.recordedAt)}`], { href: `/${view.code}/series/${fit.seriesId}`, sha256: fit.inputHash }),
+      { href: `/${view.code}/series/${fit.seriesId}?v=${fit.versionNo}`, sha256: fit.resultHash, lit: item.signed }),
+    step('series', fit.seriesTitle, [`recorded by ${fit.recordedBy}, ${moment(fit.recordedAt)}`, ...(fit.gone === null ? [] : [GONE[fit.gone]])], { href: `/${view.code}/series/${fit.seriesId}`, sha256: fit.inputHash }),
     step('tubes', `${fit.tubes} tubes, ${fit.points} points`, [], { href: `/${view.code}/series/${fit.seriesId}` }),
     file,
     step('engine', `Engine ${fit.engine.lanthorn}`, [`Node ${fit.engine.node}, V8 ${fit.engine.v8}`, `seed ${fit.seed}`]),

@@ -20,5 +20,7 @@ export const TraceDto = z.object({
   agentCode: z.string(),
   value: Quantity,
   steps: z.array(TraceStep),
+  /** The fit that can be computed again to prove the number; null where there is none, or it is not open to the person who asks. */
+  repeat: z.object({ seriesId: z.string(), versionNo: z.number() }).nullable(),
 })
 export type TraceDto = z.output<typeof TraceDto>
