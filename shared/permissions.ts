@@ -38,7 +38,6 @@ export const PERMISSIONS = {
   'series.correct': { ...none, chemist: 'programme' },
   'fit.request': { ...none, chemist: 'programme', physicist: 'programme' },
   'fit.repeat': { ...none, chemist: 'programme', physicist: 'programme' },
-  'fit.exclude': { ...none, chemist: 'programme', physicist: 'programme' },
   'check.queue': { ...none, physicist: 'programme' },
   'check.see': staff,
   'check.submit': { ...none, chemist: 'programme' },
