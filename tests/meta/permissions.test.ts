@@ -12,7 +12,7 @@ describe('the permission table', () => {
     const never: Record<ProgrammeRole, Permission[]> = {
       chemist: ['check.sign', 'check.return', 'check.withdraw', 'decision.record', 'profile.save', 'people.invite', 'people.setRoles'],
       physicist: ['decision.record', 'profile.save', 'upload.confirm', 'series.correct', 'people.invite', 'people.setRoles'],
-      lead: ['upload.confirm', 'fit.request', 'fit.exclude', 'series.correct', 'record.enter', 'check.sign'],
+      lead: ['upload.confirm', 'fit.request', 'series.correct', 'record.enter', 'check.sign'],
       // what a partner may fetch of raw files is the programme's to say
       partner: PERMISSION_NAMES.filter(name => !/\.(see|trace|bytes)$/.test(name) && name !== 'account.use'),
     }
