@@ -12,3 +12,9 @@ export async function databaseState(db: Knex): Promise<{ version: string, bytes:
     (SELECT COUNT(*) FROM schema_migration) AS migrations`) as [[{ version: string, bytes: number | string, migrations: number }]]
   return { version: row.version, bytes: Number(row.bytes), migrations: Number(row.migrations) }
 }
+
+/** Jobs that wait for a worker now; others are ready but meant for later. */
+export async function countDueJobs(db: Knex): Promise<number> {
+  const row = await db('job').where({ state: 'ready' }).where('run_after', '<=', db.raw('NOW(6)')).count({ n: '*' }).first() as { n: number }
+  return Number(row.n)
+}

@@ -5,7 +5,7 @@ import type { Deps } from '../platform/deps'
 import { countJobs, parkedJobs, resumeJob } from '../queries/jobs'
 import { newestMail } from '../queries/mail'
 import { listProcesses } from '../queries/processes'
-import { databaseState, uploadSize } from '../queries/system'
+import { countDueJobs, databaseState, uploadSize } from '../queries/system'
 import { unitOfWork } from './unitOfWork'
 
 /** What an administrator looks at first when something seems stuck. */
@@ -14,7 +14,7 @@ export async function systemState({ db }: Pick<Deps, 'db'>): Promise<SystemState
   const parked = await parkedJobs(db)
   const processes = await listProcesses(db)
   return {
-    jobs: await countJobs(db),
+    jobs: { ...await countJobs(db), due: await countDueJobs(db) },
     parked: parked.map(job => ({ id: job.id, kind: job.kind, attempts: job.attempts, error: job.error, createdAt: job.createdAt.toISOString() })),
     processes: processes.map(one => ({ name: one.name, role: one.role, startedAt: one.startedAt.toISOString(), silent_s: one.silent_s, engine: one.engine })),
     files: await uploadSize(db),

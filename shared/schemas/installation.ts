@@ -23,7 +23,8 @@ export type InstallationProgramme = z.output<typeof InstallationProgramme>
 export const InstallationProgrammes = z.object({ programmes: z.array(InstallationProgramme) })
 
 export const SystemState = z.object({
-  jobs: z.object({ ready: z.number().int(), running: z.number().int(), done: z.number().int(), parked: z.number().int(), cancelled: z.number().int() }),
+  /** due: of the ready ones, those whose time has come. */
+  jobs: z.object({ due: z.number().int(), ready: z.number().int(), running: z.number().int(), done: z.number().int(), parked: z.number().int(), cancelled: z.number().int() }),
   parked: z.array(z.object({ id: z.uuid(), kind: z.string(), attempts: z.number().int(), error: z.string().nullable(), createdAt: z.iso.datetime() })),
   processes: z.array(z.object({ name: z.string(), role: z.enum(['web', 'worker']), startedAt: z.iso.datetime(), silent_s: z.number(), engine: z.record(z.string(), z.string()) })),
   files: z.object({ count: z.number().int(), bytes: z.number() }),

@@ -64,6 +64,7 @@ describe('the system page', () => {
     })
     const state = await systemState(shared)
     expect(state.parked.find(one => one.id === jobId)).toMatchObject({ kind: 'test.parked', error: 'It broke.', attempts: 3 })
+    expect(state.jobs.ready).toBeGreaterThanOrEqual(state.jobs.due)
     expect(state.database.version).toMatch(/MariaDB/)
     expect(state.database.migrations).toBeGreaterThan(0)
     await resumeParkedJob(shared, { actor, jobId })
