@@ -65,7 +65,7 @@ describe.runIf(process.env.LANTHORN_TEST === 'full')('the product under kill -9 
       let killing: Promise<void> = Promise.resolve()
       const round = await oneRound(run, i, (now) => {
         if (now !== phase) return
-        const after_ms = random.next() * quiet.took_ms[phase]
+        const after_ms = random.uniform() * quiet.took_ms[phase]
         killing = delay(after_ms).then(() => kill(part))
       })
       await killing
