@@ -46,10 +46,8 @@ export async function administer(server, sql) {
 
 async function startLocked({ folder, port, bufferPool, isDurable = true, isPortFixed = false, say }) {
   const running = runningMariadb(folder)
-  if (running !== null) {
-    await untilAnswering(running)
-    return running
-  }
+  // One that is just dying may still look alive; then it is started again like any that was killed.
+  if (running !== null && await untilAnswering(running) === 'ready') return running
   const killed = recordedPid(folder)
   if (killed !== null) await untilLetGo(killed)
   const program = await requireProgram({ names: ['mariadbd', 'mysqld'], packageName: 'mariadb-server', say })
