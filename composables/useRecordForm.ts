@@ -21,7 +21,7 @@ export function useRecordForm(kind: RecordKind, initial: RecordEntry = {}) {
 }
 
 function startOf(field: RecordField, given: RecordValue | undefined): FieldState {
-  const empty: FieldState = { value: null, se: null, bound: '=', unit: 'units' in field ? field.units[0] ?? '' : '', steps: [], choice: '', text: '' }
+  const empty: FieldState = { value: null, se: null, bound: '=', unit: 'units' in field ? field.units[0] ?? '' : '', steps: [], choice: field.type === 'choice' ? field.preset ?? '' : '', text: '' }
   if (!given) return empty
   if (given.type === 'quantity') return { ...empty, value: given.value, se: given.se, bound: given.kind, unit: given.unit }
   if (given.type === 'number') return { ...empty, value: given.value, unit: given.unit }

@@ -1,4 +1,5 @@
 import type { Knex } from 'knex'
+import type { CheckState } from '../../shared/checks/transitions'
 import { fromBinary, toBinary } from '../platform/ids'
 
 export interface ComplexRow { id: string, code: string, ligandId: string, ligandCode: string, personName: string, at: Date }
@@ -25,22 +26,23 @@ export async function listComplexRows(db: Knex, programmeId: string): Promise<Co
   return rows.map(toComplex)
 }
 
-export interface AgentSeriesRow { id: string, title: string, kind: string, lot: string, at: Date, personName: string, newestVersionNo: number | null, newestOutcome: 'ok' | 'refused' | null, newestFitId: string | null, isSigned: boolean }
-interface SeriesRaw { id: Buffer, title: string, kind: string, lot: string, created_at: Date, name: string, version_no: number | null, outcome: 'ok' | 'refused' | null, fit_id: Buffer | null, signed: number }
+export interface AgentSeriesRow { id: string, title: string, kind: string, lot: string, at: Date, personName: string, newestVersionNo: number | null, newestOutcome: 'ok' | 'refused' | null, newestFitId: string | null, checkState: CheckState, isSigned: boolean }
+interface SeriesRaw { id: Buffer, title: string, kind: string, lot: string, created_at: Date, name: string, version_no: number | null, outcome: 'ok' | 'refused' | null, fit_id: Buffer | null, state: CheckState | null, signed: number }
 
 /** Series of one agent that stand (neither withdrawn nor replaced), newest first, each with its newest fit and whether any of its fits is signed. */
 export async function agentSeries(db: Knex, programmeId: string, complexId: string, { signedOnly = false } = {}): Promise<AgentSeriesRow[]> {
   const rows = await db('series as s').join('batch as b', 'b.id', 's.batch_id').join('person as p', 'p.id', 's.created_by')
     .leftJoin('fit as f', join => join.on('f.series_id', 's.id').andOn('f.version_no', db.raw('(SELECT MAX(n.version_no) FROM fit n WHERE n.series_id = s.id)')))
+    .leftJoin('check_current as k', 'k.subject_id', 'f.id')
     .where('s.programme_id', toBinary(programmeId)).where('s.complex_id', toBinary(complexId))
     .whereNotExists(db('series_event as w').whereRaw('w.series_id = s.id').where('w.event', 'withdrawn').select(db.raw('1')))
     .whereNotExists(db('series as r').whereRaw('r.replaces = s.id').select(db.raw('1')))
     .orderBy('s.created_at', 'desc').orderBy('s.id', 'desc')
-    .select('s.id', 's.title', 's.kind', 'b.lot', 's.created_at', 'p.name', 'f.version_no', 'f.outcome', 'f.id as fit_id',
+    .select('s.id', 's.title', 's.kind', 'b.lot', 's.created_at', 'p.name', 'f.version_no', 'f.outcome', 'f.id as fit_id', 'k.state',
       db.raw('EXISTS(SELECT 1 FROM fit sf JOIN check_current c ON c.subject_id = sf.id WHERE sf.series_id = s.id AND c.state = \'signed\') AS `signed`')) as SeriesRaw[]
   const all = rows.map(row => ({
     id: fromBinary(row.id), title: row.title, kind: row.kind, lot: row.lot, at: row.created_at, personName: row.name, newestVersionNo: row.version_no, newestOutcome: row.outcome,
-    newestFitId: row.fit_id ? fromBinary(row.fit_id) : null, isSigned: Boolean(row.signed),
+    newestFitId: row.fit_id ? fromBinary(row.fit_id) : null, checkState: row.state ?? 'draft', isSigned: Boolean(row.signed),
   }))
   return signedOnly ? all.filter(one => one.isSigned) : all
 }

@@ -48,7 +48,7 @@ export async function showAgent(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId,
     ...drawn(ligand.smiles), batches, evidence, records: records.map(toRecordRow),
     series: series.map(one => ({
       id: one.id, title: one.title, kind: one.kind, kindTitle: deps.kinds[one.kind]?.title ?? one.kind, lot: one.lot, at: one.at.toISOString(), by: one.personName,
-      versionNo: one.newestVersionNo, outcome: one.newestOutcome, signed: one.isSigned,
+      versionNo: one.newestVersionNo, outcome: one.newestOutcome, checkState: one.checkState,
     })),
     decisions: decisions.map(one => ({ id: one.id, outcome: one.outcome, reasons: one.reasons, by: one.personName, at: one.at.toISOString() })),
     gaps: isPartner ? null : gapsOf(placement.missing),

@@ -31,7 +31,7 @@ export function conditionalFigure({ evidence, payload, row }: AgentView): Figure
   return {
     id: 'conditional', title: 'Conditional constant against pH', x: { label: 'pH', unit: null, scale: 'linear', domain: [2, 12] }, y: { label: 'log K_{cond}', unit: null, scale: 'linear' }, layers,
     text: `Conditional constants of ${row.code} between pH 2 and 12. At pH ${BLOOD_PH}: ${curves.map(one => `${one.metal} ${one.atBlood.toFixed(2)}`).join(', ')}.`,
-    caption: 'Side reactions with protons only; pH taken as −log [H^+]. Dashed: a bound, or a competing metal beyond the second.',
+    caption: 'Side reactions with protons only; pH taken as −log [H^{+}]. Dashed: a bound, or a competing metal beyond the second.',
     table: {
       columns: [{ key: 'pH', label: 'pH', unit: null, numeric: true }, ...curves.map(one => ({ key: one.metal, label: `log K_{cond} ${one.metal}L`, unit: null, numeric: true }))],
       rows: PH_GRID.filter((_, k) => k % 5 === 0).map(x => ({ pH: x, ...Object.fromEntries(curves.map(one => [one.metal, Math.round(one.points[PH_GRID.indexOf(x)]!.y * 100) / 100])) })),

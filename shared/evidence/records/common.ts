@@ -32,8 +32,7 @@ export const noteField: TextField = { type: 'text', key: 'note', label: 'Note', 
 
 /** Short form of an electrolyte, notation. */
 export function mediumWords(medium: string): string {
-  const found = MEDIA.find(([value]) => value === medium)
-  return found && found[0] !== 'other' && found[0] !== 'water' && found[1].length < 8 ? found[1] : found?.[0] === 'water' ? 'water' : medium
+  return MEDIA.some(([value]) => value === medium) ? medium.replace(/\d+/g, '_$&') : medium
 }
 
 /** Temperature, ionic strength and electrolyte as the trade writes them: "25 °C, 0.1 M KCl". */

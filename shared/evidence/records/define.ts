@@ -38,7 +38,12 @@ export interface QuantityField extends NumberBase { readonly type: 'quantity', r
 export interface NumberField extends NumberBase { readonly type: 'number' }
 /** A list of log constants with their errors, such as protonation steps. */
 export interface StepsField extends FieldBase { readonly type: 'steps', readonly most: number, readonly min: number, readonly max: number }
-export interface ChoiceField extends FieldBase { readonly type: 'choice', readonly options: readonly { readonly value: string, readonly label: string }[] }
+export interface ChoiceField extends FieldBase {
+  readonly type: 'choice'
+  readonly options: readonly { readonly value: string, readonly label: string }[]
+  /** Chosen at the start; only where no wrong choice can go unseen. */
+  readonly preset?: string
+}
 export interface TextField extends FieldBase { readonly type: 'text', readonly most: number }
 export type RecordField = QuantityField | NumberField | StepsField | ChoiceField | TextField
 

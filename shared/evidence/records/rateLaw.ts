@@ -92,7 +92,7 @@ export const rateLaw = defineRecord({
   purpose: 'How fast the complex lets go: the constants of its rate law, each exact or a bound.',
   fields: [
     {
-      type: 'choice', key: 'form', label: 'Form', required: true, group: 'Form',
+      type: 'choice', key: 'form', label: 'Form', required: true, group: 'Form', preset: 'sum',
       options: [{ value: 'sum', label: 'k_0 + k_1[H] + k_2[H]² + k_M[M] + k_{MH}[M][H]' }, { value: 'saturation', label: '(k_0 + k_1K_H[H] + k_3K_M[M]) / (1 + K_H[H] + K_M[M])' }],
     },
     ...sumFields, ...saturationFields,
