@@ -98,11 +98,11 @@ describe('the whole way, as each role in turn [issue: from an uploaded phantom f
   it('lets the lead decide with reasons, and tells the whole programme by mail', async () => {
     await as('lead', async ({ page, open }) => {
       await open(`/skerry/map?agent=${AGENT}`)
-      await page.getByRole('button', { name: 'Onto the shortlist' }).click()
-      await page.getByRole('button', { name: /^Decide on/ }).click()
+      await page.getByRole('region', { name: `Agent ${AGENT}` }).getByRole('button', { name: /^Onto the shortlist/ }).click()
+      await page.getByRole('button', { name: `Decide on ${AGENT}…` }).click()
       const dialog = page.getByRole('dialog')
       await dialog.getByText('advance', { exact: true }).click()
-      await dialog.getByLabel(/Reasons/).fill('Holds its metal a hundred times longer than the chain, at a working concentration that can be given.')
+      await dialog.getByLabel(`Reasons for ${AGENT}`).fill('Holds its metal a hundred times longer than the chain, at a working concentration that can be given.')
       await dialog.getByRole('button', { name: /^Record/ }).click()
       await dialog.waitFor({ state: 'hidden' })
       await open('/skerry/decisions')

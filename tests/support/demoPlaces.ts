@@ -3,10 +3,11 @@ import { DEMO_PASSWORD } from '../../shared/demo'
 import type { QueueItemDto } from '../../shared/schemas/check'
 import type { DecisionListDto } from '../../shared/schemas/decision'
 import type { RecordListDto } from '../../shared/schemas/record'
-import type { SeriesListDto } from '../../shared/schemas/series'
-import type { StagedUploadDto } from '../../shared/schemas/upload'
+import type { SeriesDto, SeriesListDto } from '../../shared/schemas/series'
+import type { ConfirmedDto, StagedUploadDto } from '../../shared/schemas/upload'
 import type { AgentDto } from '../../shared/schemas/agent'
 import { ApiClient } from './apiClient'
+import { readPatiently, sendPatiently } from './patientClient'
 
 /** Ids of things of the demonstration that pages are about. */
 export interface DemoPlaces { series: string, record: string, waitingFit: string, waitingRecord: string, batchVersion: string, decision: string, staged: string }
@@ -43,11 +44,31 @@ async function read<T>(client: ApiClient, path: string): Promise<T> {
 }
 
 async function stage(client: ApiClient): Promise<string> {
-  const form = new FormData()
-  form.append('file', new Blob([await readFile(new URL('../../fixtures/demo/try-me_SK-08_A1.csv', import.meta.url), 'utf8')]), 'try-me_SK-08_A1.csv')
-  const answer = await client.send(`${BASE}/uploads`, { method: 'POST', body: form })
-  if (answer.status !== 200) throw new Error(`The file was not staged: ${answer.text}`)
-  return (answer.body as StagedUploadDto).id
+  const file = await readFile(new URL('../../fixtures/demo/try-me_SK-08_A1.csv', import.meta.url), 'utf8')
+  const { value } = await sendPatiently<StagedUploadDto>(client, `${BASE}/uploads`, () => {
+    const form = new FormData()
+    form.append('file', new Blob([file]), 'try-me_SK-08_A1.csv')
+    return form
+  })
+  return value.id
+}
+
+/** Uploads the file of the README's tour and sends its fit for checking, as the chemist. @returns the fit, which waits */
+export async function sendTourFile(): Promise<string> {
+  const chemist = await signedIn('chemist')
+  const { value } = await sendPatiently<ConfirmedDto>(chemist, `${BASE}/uploads/${await stage(chemist)}/confirm`, () => ({ draft: { kind: 'relax.t1.ir' } }))
+  const fit = await firstFit(chemist, found(value.series[0], 'a series of SK-08').id)
+  await sendPatiently(chemist, `${BASE}/checks/fit/${fit}/submit`, () => ({ expectedSeq: 0, comment: '' }))
+  return fit
+}
+
+async function firstFit(client: ApiClient, seriesId: string): Promise<string> {
+  for (let tries = 0; tries < 600; tries++) {
+    const { versions } = await readPatiently<SeriesDto>(client, `${BASE}/series/${seriesId}`)
+    if (versions[0]) return versions[0].id
+    await new Promise(resolve => setTimeout(resolve, 100))
+  }
+  throw new Error('No fit was stored in a minute.')
 }
 
 function found<T>(one: T | null | undefined, what: string): T {
