@@ -36,7 +36,8 @@ const server = new SMTPServer({
 })
 server.on('error', (error) => {
   console.error(error.message)
-  process.exit(1)
+  // A sender that hangs up in the middle is no reason to end; a port that cannot be had is.
+  if (!server.server.listening) process.exit(1)
 })
 server.listen(Number(port), '127.0.0.1')
 for (const signal of ['SIGTERM', 'SIGINT']) process.once(signal, () => server.close(() => process.exit(0)))

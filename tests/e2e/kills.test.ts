@@ -19,7 +19,7 @@ import { type Stack, startStack } from '../support/stack'
 const SEED = 20_261_201
 const PARTS = ['web', 'worker', 'database'] as const
 const PHASES: readonly Phase[] = ['upload', 'fit', 'sign']
-const TIMES = process.env.LANTHORN_KILLS ? Number(process.env.LANTHORN_KILLS) : 30
+const TIMES = 30
 
 describe.runIf(process.env.LANTHORN_TEST === 'full')('the product under kill -9 [architecture: one transaction per command, leases and fences]', () => {
   const folder = makeRunFolder()
