@@ -50,3 +50,4 @@ export const LigandDto = z.object({ id: z.string(), code: z.string(), payload: L
 export type LigandDto = z.output<typeof LigandDto>
 
 export const LigandListDto = z.object({ ligands: z.array(z.object({ code: z.string(), name: z.string(), topology: z.enum(TOPOLOGIES), charge: z.number(), denticity: z.number(), smiles: z.string() })) })
+export type LigandListDto = z.output<typeof LigandListDto>

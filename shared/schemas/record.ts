@@ -31,6 +31,7 @@ export const RecordRowDto = z.object({
 })
 export type RecordRowDto = z.output<typeof RecordRowDto>
 export const RecordListDto = z.object({ records: z.array(RecordRowDto) })
+export type RecordListDto = z.output<typeof RecordListDto>
 
 export const RecordDto = RecordRowDto.extend({
   entry: RecordEntry,

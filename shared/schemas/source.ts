@@ -15,3 +15,4 @@ export type SourceInput = z.output<typeof SourceInput>
 export const SourceDto = z.object({ id: z.string(), citation: z.string(), doi: z.string().nullable(), origin: z.enum(SOURCE_ORIGINS), note: z.string().nullable() })
 export type SourceDto = z.output<typeof SourceDto>
 export const SourceListDto = z.object({ sources: z.array(SourceDto) })
+export type SourceListDto = z.output<typeof SourceListDto>
