@@ -4,6 +4,8 @@ import type { AgentChances } from '../science/placement/draws'
 import type { Placement } from '../science/placement/types'
 import type { ScreeningProfile } from '../science/placement/profile'
 import { codeOf, oneOf } from './accepted'
+import { MECHANISMS } from './agent'
+import { TOPOLOGIES } from './ligand'
 
 export const OUTCOMES = ['advance', 'hold', 'stop'] as const
 export const MIN_REASONS_LENGTH = 20
@@ -46,7 +48,7 @@ export const NoticeDto = z.object({
 export type NoticeDto = z.output<typeof NoticeDto>
 
 export const DecisionRowDto = z.object({
-  id: z.string(), agent: z.string(), mechanism: z.string(), topology: z.string(), outcome: z.enum(OUTCOMES), reasons: z.string(), by: z.string(), at: z.string(),
+  id: z.string(), agent: z.string(), mechanism: z.enum(MECHANISMS), topology: z.enum(TOPOLOGIES), outcome: z.enum(OUTCOMES), reasons: z.string(), by: z.string(), at: z.string(),
   profile: z.string(), supersedes: z.string().nullable(), supersededBy: z.string().nullable(),
   /** Notices that nobody has acknowledged; always 0 for those who see signed values only. */
   groundMoved: z.number().int(),
