@@ -5,7 +5,7 @@ import type { Browser } from 'playwright-core'
 import { afterAll, beforeAll, describe, expect, inject, it } from 'vitest'
 import { openBrowser } from '../support/browser'
 import { checkAndSign, leaveTubeOut } from '../support/checking'
-import { AGENT, FILE_NAME, fileText, registerAgent, typeRateLaw } from '../support/journey'
+import { AGENT, chooseOnMap, FILE_NAME, fileText, registerAgent, typeRateLaw } from '../support/journey'
 import { settled, signInAs, watchedPage, type WatchedPage } from '../support/watchedPage'
 
 interface CaughtMail { to: string[], subject: string, text: string }
@@ -80,9 +80,8 @@ describe('the whole way, as each role in turn [issue: from an uploaded phantom f
     const sha256 = createHash('sha256').update(fileText()).digest('hex')
     await as('lead', async ({ page, open }) => {
       await open('/skerry/map')
-      await page.getByRole('button', { name: new RegExp(`^${AGENT}\\b`) }).first().click()
-      const pane = page.getByRole('region', { name: `Agent ${AGENT}` })
-      await pane.getByText(/Rests on/).click()
+      const pane = await chooseOnMap(page, AGENT)
+      await pane.getByText(/Rests on \d/).click()
       await pane.locator('dl.pairs').last().getByRole('button').first().click()
       const chain = page.getByRole('dialog', { name: 'Where from?' })
       await chain.getByText(FILE_NAME).waitFor()
@@ -97,8 +96,8 @@ describe('the whole way, as each role in turn [issue: from an uploaded phantom f
 
   it('lets the lead decide with reasons, and tells the whole programme by mail', async () => {
     await as('lead', async ({ page, open }) => {
-      await open(`/skerry/map?agent=${AGENT}`)
-      await page.getByRole('region', { name: `Agent ${AGENT}` }).getByRole('button', { name: /^Onto the shortlist/ }).click()
+      await open('/skerry/map')
+      await (await chooseOnMap(page, AGENT)).getByRole('button', { name: /^Onto the shortlist/ }).click()
       await page.getByRole('button', { name: `Decide on ${AGENT}…` }).click()
       const dialog = page.getByRole('dialog')
       await dialog.getByText('advance', { exact: true }).click()

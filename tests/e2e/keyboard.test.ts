@@ -37,11 +37,14 @@ describe('checking with the keyboard alone [look: keys of the checks page; WCAG 
     const { page } = watched
     await signInAs(watched, 'physicist@skerry.example')
     await watched.open('/skerry/checks')
-    for (let i = 0; i < 40 && !page.url().includes(fit); i++) {
-      const before = page.url()
+    const chosen = page.locator('a[aria-current="true"]')
+    const waiting = await page.getByRole('region', { name: 'To check' }).getByRole('listitem').count()
+    for (let i = 0; i < waiting && !page.url().includes(fit); i++) {
       await page.keyboard.press('j')
-      await page.waitForURL(url => url.href !== before)
+      // The queue marks what is looked at once its check has come; J goes on from there.
+      await expect.poll(() => page.getByRole('region', { name: 'To check' }).getByRole('link').evaluateAll(all => all.findIndex(one => one.getAttribute('aria-current') === 'true')), { timeout: 30_000 }).toBe(i)
     }
+    expect(await chosen.getAttribute('href')).toContain(fit)
     await page.getByText('Slope', { exact: true }).waitFor()
     // The flagged tube is the one that was pipetted wrongly.
     await page.keyboard.press('n')

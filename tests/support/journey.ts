@@ -1,4 +1,4 @@
-import type { Page } from 'playwright-core'
+import type { Locator, Page } from 'playwright-core'
 import { DEMO_AGENTS } from '../../db/seeds/demo/agents'
 import { demoFileText } from '../../db/seeds/demo/forward'
 import { TRY_FILE } from '../../db/seeds/demo/series'
@@ -36,7 +36,7 @@ export async function typeRateLaw(page: Page): Promise<void> {
   await page.getByLabel('Form', { exact: true }).selectOption('sum')
   await page.getByLabel('k0, spontaneous', { exact: true }).fill('2.2e-10')
   await page.getByLabel('k1, proton-assisted', { exact: true }).fill('3,1e-6')
-  await page.getByLabel('Activation enthalpy').fill('64')
+  await page.getByLabel('Activation enthalpy', { exact: true }).fill('64')
   await page.getByLabel('Temperature', { exact: true }).fill('25')
   await page.getByLabel('Lowest pH measured').fill('0')
   await page.getByLabel('Highest pH measured').fill('1.5')
@@ -45,4 +45,12 @@ export async function typeRateLaw(page: Page): Promise<void> {
   await page.getByLabel('Values were taken').selectOption('own')
   await page.getByRole('button', { name: 'Store the record' }).click()
   await page.waitForURL('**/records/*-*')
+}
+
+/** Presses an agent's mark. @returns the pane that says everything of it */
+export async function chooseOnMap(page: Page, agent: string): Promise<Locator> {
+  await page.getByRole('button', { name: new RegExp(`^${agent}\\b`) }).first().click()
+  const pane = page.getByRole('region', { name: `Agent ${agent}` })
+  await pane.waitFor()
+  return pane
 }
