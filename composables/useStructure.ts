@@ -29,13 +29,14 @@ export function useStructure(smiles: () => string, found: (structure: StructureD
       problem.value = accepted ? `${message} Accepted: ${accepted}.` : message
     }
     finally {
-      isReading.value = false
+      if (text === smiles().trim()) isReading.value = false
     }
   }
   watch(smiles, (next) => {
     clearTimeout(timer)
     const text = next.trim()
     problem.value = null
+    isReading.value = text !== ''
     if (text === '') structure.value = null
     else timer = setTimeout(() => { void read(text) }, PAUSE_MS)
   })

@@ -1,5 +1,4 @@
 import { recordKind } from '../../shared/evidence/records/index'
-import { plainNotation } from '../../shared/notation'
 import type { Scope } from '../../shared/permissions'
 import type { RecordDto, RecordRowDto } from '../../shared/schemas/record'
 import type { Deps } from '../platform/deps'
@@ -40,7 +39,7 @@ export async function showRecord(deps: Pick<Deps, 'db'>, { programmeId, scope, i
     // a partner is not told of versions beyond those they see
     newestVersionNo: chain[0]?.versionNo ?? row.versionNo,
     entry: row.payload.entry, metal: row.payload.metal, reason: row.payload.reason, evidence,
-    versions: chain.map(one => ({ id: one.id, versionNo: one.versionNo, by: one.personName, at: one.at.toISOString(), reason: one.payload.reason, summary: plainNotation(toRecordRow(one).summary), checkState: one.checkState })),
+    versions: chain.map(one => ({ id: one.id, versionNo: one.versionNo, by: one.personName, at: one.at.toISOString(), reason: one.payload.reason, summary: toRecordRow(one).summary, checkState: one.checkState })),
     returnComment: returned ? { comment: returned.comment, by: returned.personName, at: returned.at.toISOString() } : null,
   }
 }

@@ -1,6 +1,6 @@
 import type { EvidenceItemDto } from '../../shared/evidence/item'
 import { formatCelsius, formatNumber } from '../../shared/format'
-import type { FigureLayer, FigureSpec, FigureToken } from '../../shared/schemas/figure'
+import type { FigureDash, FigureLayer, FigureSpec, FigureToken } from '../../shared/schemas/figure'
 import { conditionalConstant } from '../../shared/science/equilibria/conditional'
 import { evaluateRateLaw, type RateLaw } from '../../shared/science/kinetics/rateLaw'
 import { rateConditionsOf, rateLawOf } from '../../shared/science/placement/kinetic'
@@ -53,18 +53,23 @@ export function rateFigure({ placement, row }: AgentView, profile: ScreeningProf
   })
   const range = measuredRange(found.law)
   const inRange = (x: number): boolean => range !== null && x >= range[0] - 1e-9 && x <= range[1] + 1e-9
+  /** A bound is a line of its own: it does not go on where the values end. */
+  const curve = (name: string, dash: FigureDash, belongs: (point: (typeof points)[number]) => boolean): FigureLayer =>
+    ({ type: 'line', name, token: 'ink', dash, labelled: false, points: points.filter(belongs).map(({ x, y }) => ({ x, y })) })
   const layers: FigureLayer[] = [
     { type: 'rule', name: `pH ${formatNumber(profile.pH)}`, axis: 'x', at: profile.pH, dash: 'dotted' },
-    { type: 'line', name: 'extrapolated', token: 'ink', dash: 'dashed', labelled: false, points: points.map(({ x, y }) => ({ x, y })) },
-    { type: 'line', name: 'measured', token: 'ink', labelled: false, points: points.filter(({ x }) => inRange(x)).map(({ x, y }) => ({ x, y })) },
+    curve('extrapolated', 'dashed', ({ kind }) => kind === '='),
+    curve('measured', 'solid', ({ x, kind }) => kind === '=' && inRange(x)),
+    curve('at most', 'dotted', ({ kind }) => kind === '<'),
+    curve('at least', 'dotted', ({ kind }) => kind === '>'),
     ...(here.interval && here.interval[0] > 0 ? [{ type: 'errorBars' as const, name: '95 %', token: 'ink' as const, points: [{ x: profile.pH, y: here.value, low: here.interval[0], high: here.interval[1] }] }] : []),
     { type: 'points', name: here.kind === '=' ? 'at the profile' : here.kind === '<' ? 'at the profile, at most' : 'at the profile, at least', token: 'ink', open: here.kind !== '=', points: [{ x: profile.pH, y: here.value }] },
   ]
   const place = `${formatCelsius(profile.temperature_K, 0)}, exchangeable Zn ${formatNumber(profile.exchangeableZn_uM)} µM, Cu ${formatNumber(profile.exchangeableCu_uM)} µM`
   return {
-    id: 'rate', title: 'Rate of dissociation against pH', x: { label: 'pH', unit: null, scale: 'linear', domain: [0, 9] }, y: { label: 'k_{obs}', unit: 's^-1', scale: 'log' }, layers,
+    id: 'rate', title: 'Rate of dissociation against pH', x: { label: 'pH', unit: null, scale: 'linear', domain: [0, 9] }, y: { label: 'k_{obs}', unit: 's^-1', scale: 'log' }, layers: layers.filter(layer => layer.type !== 'line' || layer.points.length > 0),
     text: `Dissociation rate of ${row.code} between pH 0 and 9 (${place}). ${range ? `Measured from pH ${range[0]} to ${range[1]}; dashed beyond.` : 'The measured range is not stated: all of it is drawn dashed.'}`,
-    caption: `${place}. Dashed: outside the measured pH range. Bar: 95 %. An open point is a bound.`,
+    caption: `${place}. Dashed: outside the measured pH range. Dotted, and an open point: a bound. Bar: 95 %.`,
     table: {
       columns: [{ key: 'pH', label: 'pH', unit: null, numeric: true }, { key: 'k', label: 'k_{obs}', unit: 's^-1', numeric: true }, { key: 'how', label: 'How', unit: null, numeric: false }],
       rows: points.filter((_, k) => k % 5 === 0).map(({ x, y, kind }) => ({ pH: x, k: Number(y.toPrecision(3)), how: `${inRange(x) ? 'measured range' : 'extrapolated'}${kind === '=' ? '' : kind === '<' ? ', at most' : ', at least'}` })),

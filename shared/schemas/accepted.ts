@@ -37,9 +37,19 @@ export function codeOf(what: string, most = 60) {
     .regex(/^[\p{L}\p{N}][\p{L}\p{N}._+-]*( [\p{L}\p{N}._+-]+)*$/u, { error: `${what} holds a character that cannot be used. ${accepted}` })
 }
 
-/** One of a list, with the list in the refusal. */
-export function oneOf<const T extends readonly [string, ...string[]]>(what: string, options: T) {
-  return z.enum(options, { error: `${what} is not one of the choices. Accepted: ${options.join(', ')}.` })
+/** One of a list, with the list in the refusal; `words`: how screens call the choices. */
+export function oneOf<const T extends readonly [string, ...string[]]>(what: string, options: T, words: readonly string[] = options) {
+  const accepted = `Accepted: ${words.join(', ')}.`
+  return z.enum(options, { error: ({ input }) => input === '' || input === null || input === undefined ? `${what} is not chosen. ${accepted}` : `${what} is not one of the choices. ${accepted}` })
+}
+
+/** A fraction of 1 whose refusals speak per cent, as forms do. */
+export function fractionOf(what: string) {
+  const accepted = 'Accepted: 0 to 100 %.'
+  const shown = (input: unknown): string => String(Number((Number(input) * 100).toPrecision(6)))
+  return z.number({ error: ({ input }) => input === undefined || input === null ? `${what} is missing. ${accepted}` : `${what} is not a number. ${accepted}` })
+    .min(0, { error: ({ input }) => `${what} is ${shown(input)} %, which is too small. ${accepted}` })
+    .max(1, { error: ({ input }) => `${what} is ${shown(input)} %, which is too large. ${accepted}` })
 }
 
 /** A day as YYYY-MM-DD. */

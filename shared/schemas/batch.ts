@@ -1,23 +1,22 @@
 import { z } from 'zod'
 import { CHECK_STATES } from '../checks/transitions'
 import { Quantity } from '../evidence/quantity'
-import { codeOf, dayOf, lineOf, lineOrNull, numberWithin, oneOf } from './accepted'
+import { codeOf, dayOf, fractionOf, lineOf, lineOrNull, numberWithin, oneOf } from './accepted'
 import { VersionMark } from './ligand'
 
 export const CONCENTRATION_BASES = ['weighed', 'icp', 'susceptibility'] as const
 export const BASIS_WORDS: Readonly<Record<(typeof CONCENTRATION_BASES)[number], string>> = {
   weighed: 'weighed', icp: 'total metal by ICP', susceptibility: 'susceptibility shift',
 }
-const fraction = (what: string) => numberWithin(what, 0, 1, '(1 = 100 %)')
 
 /**
  * Metal of a batch that the ligand does not hold, as a fraction of its total metal. '<': nothing was found, and the value is the detection limit.
  */
 export const FreeMetal = z.strictObject({
   kind: oneOf('Free metal', ['=', '<']),
-  value_frac: fraction('Free metal'),
-  se_frac: fraction('The standard error of free metal').nullable().default(null),
-  detectionLimit_frac: fraction('The detection limit of free metal'),
+  value_frac: fractionOf('Free metal'),
+  se_frac: fractionOf('The standard error of free metal').nullable().default(null),
+  detectionLimit_frac: fractionOf('The detection limit of free metal'),
   method: lineOf('The method for free metal', 200),
 }).refine(one => one.kind === '<' || one.value_frac >= one.detectionLimit_frac, {
   path: ['value_frac'], error: 'The free metal found is below its own detection limit. Accepted: "less than" the detection limit, or a value above it.',
@@ -32,13 +31,13 @@ export const TotalMetal = z.strictObject({
 
 export const BatchPayload = z.strictObject({
   date: dayOf('The date the batch was made'),
-  purity_frac: fraction('The purity').nullable().default(null),
-  water_frac: fraction('The water content').nullable().default(null),
+  purity_frac: fractionOf('The purity').nullable().default(null),
+  water_frac: fractionOf('The water content').nullable().default(null),
   counterIon: lineOrNull('The counter-ion', 60),
-  excessLigand_frac: fraction('The excess of free ligand').nullable().default(null),
+  excessLigand_frac: fractionOf('The excess of free ligand').nullable().default(null),
   isomerRatio: lineOrNull('The isomer ratio', 60),
-  hplcPurity_frac: fraction('The HPLC purity').nullable().default(null),
-  concentrationBasis: oneOf('The concentration basis', CONCENTRATION_BASES),
+  hplcPurity_frac: fractionOf('The HPLC purity').nullable().default(null),
+  concentrationBasis: oneOf('The concentration basis', CONCENTRATION_BASES, Object.values(BASIS_WORDS)),
   totalMetal: TotalMetal.nullable().default(null),
   freeMetal: FreeMetal.nullable().default(null),
   note: lineOrNull('The note', 1000),

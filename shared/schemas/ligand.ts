@@ -33,7 +33,7 @@ export const LigandPayload = z.strictObject({
   smiles: lineOf('The structure (SMILES)', 1000),
   donors: z.array(Donor).max(12, { error: 'Too many donor groups. Accepted: at most 12.' }),
   denticity: wholeWithin('The denticity', 1, 16),
-  topology: oneOf('The topology', TOPOLOGIES),
+  topology: oneOf('Ring or open chain', TOPOLOGIES, Object.values(TOPOLOGY_WORDS)),
   /** Net charge with every acid proton gone. */
   charge: wholeWithin('The net charge', -12, 6),
   protonation: Protonation.nullable().default(null),

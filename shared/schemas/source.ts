@@ -7,7 +7,7 @@ export const ORIGIN_WORDS: Readonly<Record<(typeof SOURCE_ORIGINS)[number], stri
 export const SourceInput = z.strictObject({
   citation: lineOf('The source', 500),
   doi: lineOrNull('The DOI', 200).refine(text => text === null || /^10\.\d{4,9}\/\S+$/.test(text), { error: 'The DOI cannot be read. Accepted: a text such as 10.1000/182, or nothing.' }),
-  origin: oneOf('Where the values were taken from', SOURCE_ORIGINS),
+  origin: oneOf('Where the values were taken from', SOURCE_ORIGINS, Object.values(ORIGIN_WORDS)),
   note: lineOrNull('The note on the source', 1000),
 })
 export type SourceInput = z.output<typeof SourceInput>

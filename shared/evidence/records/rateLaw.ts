@@ -93,11 +93,11 @@ export const rateLaw = defineRecord({
   fields: [
     {
       type: 'choice', key: 'form', label: 'Form', required: true, group: 'Form', preset: 'sum',
-      options: [{ value: 'sum', label: 'k_0 + k_1[H] + k_2[H]² + k_M[M] + k_{MH}[M][H]' }, { value: 'saturation', label: '(k_0 + k_1K_H[H] + k_3K_M[M]) / (1 + K_H[H] + K_M[M])' }],
+      options: [{ value: 'sum', label: 'k_0 + k_1[H] + k_2[H]² + k_{M}[M] + k_{MH}[M][H]' }, { value: 'saturation', label: '(k_0 + k_1K_{H}[H] + k_3K_{M}[M]) / (1 + K_{H}[H] + K_{M}[M])' }],
     },
     ...sumFields, ...saturationFields,
     {
-      type: 'choice', key: 'metalOfLaw', label: 'Metal of k_3 and K_M', required: false, group: 'Constants', onlyWhen: { key: 'form', isOneOf: ['saturation'] },
+      type: 'choice', key: 'metalOfLaw', label: 'Metal of k_3 and K_{M}', required: false, group: 'Constants', onlyWhen: { key: 'form', isOneOf: ['saturation'] },
       options: [{ value: 'Zn', label: 'zinc' }, { value: 'Cu', label: 'copper' }, { value: 'Ca', label: 'calcium' }],
     },
     correlationField,
