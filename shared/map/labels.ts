@@ -36,9 +36,9 @@ export function placeLabels(wishes: readonly LabelWish[], obstacles: readonly Bo
 
 /** Places along a line, each as near to where it belongs as a least gap allows; closer where there is no room for all. */
 export function spread(wanted: readonly number[], gap: number, [low, high]: readonly [number, number]): number[] {
-  const order = wanted.map((value, at) => ({ value: Math.min(high, Math.max(low, value)), at })).sort((a, b) => a.value - b.value || a.at - b.at)
+  const order = wanted.map((value, at) => ({ value, at })).sort((a, b) => a.value - b.value || a.at - b.at)
   const step = order.length > 1 ? Math.min(gap, (high - low) / (order.length - 1)) : 0
-  const places = order.map(one => one.value)
+  const places = order.map(one => Math.min(high, Math.max(low, one.value)))
   for (let i = 1; i < places.length; i++) places[i] = Math.max(places[i]!, places[i - 1]! + step)
   if (places.length > 0) places[places.length - 1] = Math.min(places.at(-1)!, high)
   for (let i = places.length - 2; i >= 0; i--) places[i] = Math.min(places[i]!, places[i + 1]! - step)

@@ -42,7 +42,7 @@ function lossLine({ x, y }: Plane, limit: number): LimitLine | null {
   const at = pixelOf(x, power)
   return {
     key: 'loss', from: [at, y.from_px], to: [at, y.to_px], hatch: path([[at, y.from_px], [at, y.to_px], [at + HATCH_px, y.to_px], [at + HATCH_px, y.from_px]], true),
-    words: `limit: loss ${formatNumber(limit)}, upper 95 %`, short: `limit ${formatNumber(limit)}`, labelAt: [at - 6, y.to_px + 118], turn: -90, anchor: 'middle',
+    words: `limit: loss ${formatNumber(limit)}, upper 95 %`, short: `limit ${formatNumber(limit)}`, labelAt: [at - 6, y.from_px - 0.22 * (y.from_px - y.to_px)], turn: -90, anchor: 'middle',
   }
 }
 

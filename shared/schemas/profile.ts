@@ -1,21 +1,18 @@
 import { z } from 'zod'
-import { PROFILE_FIELDS } from '../science/placement/profileFields'
+import { PROFILE_FIELDS, profileProblems } from '../science/placement/profileFields'
 import type { ScreeningProfile } from '../science/placement/profile'
 import { lineOf, numberWithin, oneOf } from './accepted'
 
-/** A screening profile as it is saved: every number within the ends that its form states. */
+/** A screening profile as it is saved: every number within the ends that its form states, ranges that hold their value. The rules are those the form shows. */
 export const ProfilePayload = z.strictObject({
   name: lineOf('The name of the profile', 120),
   mechanism: oneOf('The mechanism', ['T1', 'T2', 'CEST']),
   medium: oneOf('The medium', ['plasma', 'blood', 'aqueous']),
   eliminationSpecies: oneOf('The species of the elimination half-life', ['human', 'mouse', 'other']),
   ...Object.fromEntries(PROFILE_FIELDS.map(field => [field.key, numberWithin(field.label, field.min, field.max, field.unit)])),
-}).refine(isOrdered('slowShareLow_frac', 'slowShare_frac', 'slowShareHigh_frac'), { path: ['slowShare_frac'], error: 'The slow share lies outside its own range. Accepted: low end, value, high end in rising order.' })
-  .refine(isOrdered('slowHalfLifeLow_s', 'slowHalfLife_s', 'slowHalfLifeHigh_s'), { path: ['slowHalfLife_s'], error: 'The slow half-life lies outside its own range. Accepted: low end, value, high end in rising order.' }) as unknown as z.ZodType<ScreeningProfile>
-
-function isOrdered(...keys: string[]) {
-  return (one: Record<string, unknown>): boolean => keys.every((key, i) => i === 0 || Number(one[keys[i - 1]!]) <= Number(one[key]))
-}
+}).superRefine((profile, context) => {
+  for (const { key, message, accepted } of profileProblems(profile as unknown as ScreeningProfile)) context.addIssue({ code: 'custom', path: [key], message: `${message}. Accepted: ${accepted}.` })
+}) as unknown as z.ZodType<ScreeningProfile>
 
 /** basedOn: the version that the person looked at; null = none was saved under this name yet. */
 export const SaveProfileInput = z.strictObject({

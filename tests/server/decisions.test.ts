@@ -122,7 +122,12 @@ describe('a screening profile', () => {
   it('says which number is outside its ends and what is accepted', () => {
     const refused = SaveProfileInput.safeParse({ payload: { ...DEFAULT_PROFILE, pH: 19 }, basedOn: null })
     expect(refused.error?.issues[0]).toMatchObject({ path: ['payload', 'pH'], message: expect.stringContaining('Accepted: 3 to 10') })
-    expect(SaveProfileInput.safeParse({ payload: { ...DEFAULT_PROFILE, slowShareLow_frac: 0.4 }, basedOn: null }).error?.issues[0]?.path).toContain('slowShare_frac')
+    expect(SaveProfileInput.safeParse({ payload: { ...DEFAULT_PROFILE, slowShareLow_frac: 0.4 }, basedOn: null }).error?.issues[0]?.path).toContain('slowShareLow_frac')
+    expect(SaveProfileInput.safeParse({ payload: { ...DEFAULT_PROFILE, warnFreeMetal_frac: 0.01 }, basedOn: null }).error?.issues[0]?.path).toContain('warnFreeMetal_frac')
+  })
+
+  it('may switch the slow part off with a share of nought, whatever its range', () => {
+    expect(SaveProfileInput.safeParse({ payload: { ...DEFAULT_PROFILE, slowShare_frac: 0 }, basedOn: null }).success).toBe(true)
   })
 })
 
