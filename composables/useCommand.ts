@@ -18,8 +18,8 @@ export interface CommandOptions { method?: 'POST' | 'PUT' | 'PATCH' | 'DELETE', 
 interface ErrorAnswer { message?: string, data?: { code?: CommandFailure['code'], field?: string, accepted?: string } & Record<string, unknown> }
 
 /**
- * Sends a command with the CSRF token and an Idempotency-Key of its own. The key stays the same while no answer came, so that pressing again after a
- * lost connection cannot do it twice. A refusal is a value: `failure` holds the last one, for the form to show. When the session has ended meanwhile,
+ * Sends a command with the CSRF token and an Idempotency-Key of its own. The key stays the same while it is not known whether the command was done (no
+ * answer, or a fault on the server's side, which can fall into the moment of storing), so that pressing again cannot do it twice. A refusal is a value: `failure` holds the last one, for the form to show. When the session has ended meanwhile,
  * the sign-in page follows.
  */
 export function useCommand() {
@@ -44,7 +44,7 @@ export function useCommand() {
     catch (error) {
       if (!(error instanceof FetchError)) throw error
       failure.value = readFailure(error)
-      if (failure.value.code !== 'unreachable') unanswered = null
+      if (!MAY_HAVE_BEEN_DONE.includes(failure.value.code)) unanswered = null
       if (failure.value.code === 'notSignedIn') await leave()
       return { ok: false, failure: failure.value }
     }
@@ -65,6 +65,8 @@ export function useCommand() {
 
   return { send, isPending, failure, errorFor, errorBeside, clear: () => { failure.value = null } }
 }
+
+const MAY_HAVE_BEEN_DONE: readonly CommandFailure['code'][] = ['unreachable', 'internal']
 
 const inWords = ({ message, accepted }: CommandFailure): string => accepted ? `${message} Accepted: ${accepted}.` : message
 
