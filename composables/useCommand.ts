@@ -77,6 +77,7 @@ export function readFailure(error: FetchError): CommandFailure {
   }
   const answer = (error.data ?? {}) as ErrorAnswer
   const { code, field, accepted, ...data } = answer.data ?? {}
+  if (code === 'internal') return { code, message: `${answer.message ?? 'Something went wrong on our side.'} Try again: it will not be done twice.`, field: null, accepted: null, data }
   return { code: code ?? codeOf(error.statusCode), message: answer.message ?? `The server refused this (${error.statusCode}).`, field: field ?? null, accepted: accepted ?? null, data }
 }
 

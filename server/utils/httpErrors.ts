@@ -21,7 +21,7 @@ export function toHttpError(error: unknown, requestId: string): H3Error {
   }
   if (error instanceof H3Error && error.statusCode < 500) return error
   console.error(JSON.stringify({ at: new Date().toISOString(), requestId, error: error instanceof Error ? error.stack ?? error.message : String(error) }))
-  return httpError(500, `Something went wrong on our side; try again, it will not be done twice. Reference ${requestId}.`, { code: 'internal', requestId })
+  return httpError(500, `Something went wrong on our side. It is in the log under the reference ${requestId}.`, { code: 'internal', requestId })
 }
 
 function httpError(statusCode: number, message: string, data: ErrorBody): H3Error {
