@@ -16,6 +16,6 @@ export function submitForCheck(deps: Deps, input: StepInput) {
   })
 }
 
-function recallSiblings({ work, input, subject }: Step): Promise<void> {
-  return recallWaiting(work, { input, subject, comment: `Version ${subject.versionNo} was sent instead.` })
+async function recallSiblings({ work, input, subject }: Step): Promise<void> {
+  await recallWaiting(work, { input, subject, comment: `Version ${subject.versionNo} was sent instead.` })
 }

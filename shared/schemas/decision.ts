@@ -55,6 +55,7 @@ export const DecisionRowDto = z.object({
 })
 export type DecisionRowDto = z.output<typeof DecisionRowDto>
 export const DecisionListDto = z.object({ decisions: z.array(DecisionRowDto) })
+export type DecisionListDto = z.output<typeof DecisionListDto>
 
 export const DecisionDto = DecisionRowDto.extend({
   snapshot: z.custom<DecisionSnapshot>(), snapshotHash: z.string(), notices: z.array(NoticeDto),
