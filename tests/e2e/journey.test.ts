@@ -82,7 +82,7 @@ describe('the whole way, as each role in turn [issue: from an uploaded phantom f
       await open('/skerry/map')
       const pane = await chooseOnMap(page, AGENT)
       await pane.getByText(/Rests on \d/).click()
-      await pane.locator('dl.pairs').last().getByRole('button').first().click()
+      await pane.locator('dt', { hasText: 'Relaxivity' }).locator('xpath=following-sibling::dd[1]').getByRole('button').click()
       const chain = page.getByRole('dialog', { name: 'Where from?' })
       await chain.getByText(FILE_NAME).waitFor()
       expect(await chain.innerText()).toContain(sha256.slice(0, 8))

@@ -44,12 +44,13 @@ export async function typeRateLaw(page: Page): Promise<void> {
   await page.getByLabel('Citation, or notebook page').fill('Notebook 17, page 4; invented for this test')
   await page.getByLabel('Values were taken').selectOption('own')
   await page.getByRole('button', { name: 'Store the record' }).click()
-  await page.waitForURL('**/records/*-*')
+  await page.waitForURL(/\/records\/[\da-f-]{36}$/)
 }
 
 /** Presses an agent's mark. @returns the pane that says everything of it */
 export async function chooseOnMap(page: Page, agent: string): Promise<Locator> {
-  await page.getByRole('button', { name: new RegExp(`^${agent}\\b`) }).first().click()
+  // The mark's own disc: its stem and arrows reach far to the side.
+  await page.getByRole('button', { name: new RegExp(`^${agent}\\b`) }).first().locator('.map-target').click()
   const pane = page.getByRole('region', { name: `Agent ${agent}` })
   await pane.waitFor()
   return pane
