@@ -1,11 +1,9 @@
-import { spawnSync } from 'node:child_process'
 import { mkdir, readFile } from 'node:fs/promises'
 import { fileURLToPath } from 'node:url'
 import type { Browser, Page } from 'playwright-core'
 import { DEMO_PASSWORD } from '../shared/demo'
 import { openBrowser } from '../tests/support/browser'
 import { startStack } from '../tests/support/stack'
-import { findProgram } from './lib/packages.mjs'
 
 // Takes the pictures of the README from the running product with the demonstration loaded, into docs/pictures.
 const WINDOW = { width: 1440, height: 900 }
@@ -59,18 +57,8 @@ async function take(browser: Browser, baseURL: string, { name, by, path, then }:
   await then?.(page)
   await page.evaluate(() => document.fonts.ready.then(() => undefined))
   await page.waitForTimeout(1_500)
-  const file = at(`docs/pictures/${name}.png`)
-  await page.screenshot({ path: file })
+  await page.screenshot({ path: at(`docs/pictures/${name}.png`) })
   await context.close()
-  makeSmall(file)
-}
-
-/** Fewer colours make a third of the bytes; without ImageMagick the picture stays as it was taken. */
-function makeSmall(file: string): void {
-  const program = findProgram('magick') ?? findProgram('convert')
-  if (program === null) return
-  const { status, stderr } = spawnSync(program, [file, '-colors', '96', `png8:${file}`], { encoding: 'utf8' })
-  if (status !== 0) throw new Error(`${program} could not reduce ${file}: ${stderr}`)
 }
 
 await mkdir(at('docs/pictures'), { recursive: true })
