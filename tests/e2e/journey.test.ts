@@ -88,7 +88,10 @@ describe('the whole way, as each role in turn [issue: from an uploaded phantom f
       expect(await chain.innerText()).toContain(sha256.slice(0, 8))
       expect(await chain.locator(`[title="${sha256}"]`).count()).toBe(1)
       // The chain is walked: from the number to the series that it comes from, whose page names the same bytes.
-      await chain.getByRole('link', { name: /series|SK-17/i }).first().click()
+      const downloading = page.waitForEvent('download')
+      await chain.getByRole('link', { name: FILE_NAME }).click()
+      expect(await readFile(await (await downloading).path(), 'utf8')).toBe(fileText())
+      await chain.getByRole('listitem').filter({ hasText: /^series/ }).getByRole('link').click()
       await page.waitForURL(/\/series\/[\w-]{36}/)
       await page.locator(`[title="${sha256}"]`).first().waitFor()
     })
