@@ -12,7 +12,7 @@ import { defineMeasurement, type AnalysisInput, type TubeResult } from './types'
 
 const WORDS: FigureWords = {
   token: 't1', tube: { x: { label: 'TI', unit: 's' }, y: { label: 'Signal', unit: 'au' } }, rate: { label: 'R_1', unit: 's^-1' },
-  caption: 'Signs of magnitude data are restored.',
+  caption: 'Where the signals are magnitudes, their signs are restored.',
 }
 
 /** T1 by inversion recovery: a phantom of tubes, inversion times, signed or magnitude signals. */

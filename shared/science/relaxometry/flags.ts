@@ -20,8 +20,8 @@ export interface TubeContext {
   readonly isBlank: boolean
 }
 
-/** What a test found: null = it does not apply here. */
-export type FlagFinding = { readonly isRaised: boolean, readonly detail: string } | null
+/** What a test found: null = it does not apply here. tube: the one it is about, counted from 1 along the line; absent where it is about the whole. */
+export type FlagFinding = { readonly isRaised: boolean, readonly detail: string, readonly tube?: number } | null
 
 export interface Flag<C> {
   readonly id: string
@@ -38,13 +38,14 @@ export interface FlagReport {
   readonly state: 'raised' | 'passed' | 'notApplicable'
   readonly detail: string | null
   readonly advice: string
+  readonly tube: number | null
 }
 
 /** Tests every flag of a list. */
 export function reportFlags<C>(flags: readonly Flag<C>[], context: C): FlagReport[] {
   return flags.map(({ id, title, test, advice }) => {
     const finding = test(context)
-    return { id, title, advice, state: finding === null ? 'notApplicable' : finding.isRaised ? 'raised' : 'passed', detail: finding && finding.detail }
+    return { id, title, advice, state: finding === null ? 'notApplicable' : finding.isRaised ? 'raised' : 'passed', detail: finding && finding.detail, tube: finding?.tube ?? null }
   })
 }
 
