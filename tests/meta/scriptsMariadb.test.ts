@@ -9,7 +9,7 @@ import { administer, runningMariadb, startMariadb, stopMariadb } from '../../scr
 import { ensureSchema } from '../../scripts/lib/mariadbAccounts.mjs'
 import { anyFreePort } from '../../scripts/lib/ports.mjs'
 import { clearAbandonedRuns } from '../../scripts/lib/runFolders.mjs'
-import { isAlive } from '../../scripts/lib/processes.mjs'
+import { commandOf } from '../../scripts/lib/processes.mjs'
 import { socketFor } from '../../scripts/lib/socketPath.mjs'
 
 let folder: string
@@ -98,7 +98,7 @@ describe('the private database server', { timeout: 60_000 }, () => {
     for (const run of [mine, abandoned]) mkdirSync(run, { recursive: true })
     const server = await startMariadb({ folder: join(abandoned, 'mariadb'), port: await anyFreePort(), bufferPool: '32M', isDurable: false, say: () => undefined })
     await clearAbandonedRuns(parent)
-    expect(isAlive(server.pid)).toBe(false)
+    expect(commandOf(server.pid)).toBeNull()
     expect(readdirSync(parent)).toEqual([`${process.pid}-a`])
   })
 

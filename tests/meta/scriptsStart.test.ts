@@ -9,7 +9,7 @@ import { runningMariadb, startMariadb, stopMariadb } from '../../scripts/lib/mar
 import { connectionUrl, ensureSchema } from '../../scripts/lib/mariadbAccounts.mjs'
 import { root } from '../../scripts/lib/paths.mjs'
 import { anyFreePort, isPortFree } from '../../scripts/lib/ports.mjs'
-import { isAlive } from '../../scripts/lib/processes.mjs'
+import { commandOf } from '../../scripts/lib/processes.mjs'
 import { makeRunFolder } from '../../scripts/lib/runFolders.mjs'
 
 interface Started { child: ChildProcess, text: () => string, ended: Promise<number | null> }
@@ -40,6 +40,8 @@ async function untilReady({ text, child }: Started): Promise<void> {
   }
 }
 
+/** One that has ended and only waits to be collected does not count. */
+const isRunning = (pid: number) => commandOf(pid) !== null
 const health = async () => (await fetch(`http://127.0.0.1:${port}/api/health`)).status
 const databasePid = () => runningMariadb(join(data, 'mariadb'))?.pid ?? null
 
@@ -89,7 +91,7 @@ describe.runIf(process.env.LANTHORN_OUTPUT_DIR !== undefined)('npm start', { tim
     expect(pids.length).toBeGreaterThanOrEqual(4)
     first.child.kill('SIGINT')
     expect(await first.ended).toBe(0)
-    expect(pids.filter(isAlive)).toEqual([])
+    expect(pids.filter(isRunning)).toEqual([])
   })
 
   it('starts a second time within seconds, and a second one beside it says who runs [issue A.1]', async () => {
@@ -109,7 +111,7 @@ describe.runIf(process.env.LANTHORN_OUTPUT_DIR !== undefined)('npm start', { tim
     const parts = partPids(first.child).filter(pid => pid !== databasePid())
     first.child.kill('SIGKILL')
     await first.ended
-    while (parts.some(isAlive)) await delay(50)
+    while (parts.some(isRunning)) await delay(50)
     const second = start()
     await untilReady(second)
     expect(await health()).toBe(200)
@@ -136,7 +138,7 @@ describe.runIf(process.env.LANTHORN_OUTPUT_DIR !== undefined)('npm start', { tim
     await untilReady(first)
     for (const pid of allPids(first.child)) {
       process.kill(pid, 'SIGKILL')
-      while (isAlive(pid)) await delay(20)
+      while (isRunning(pid)) await delay(20)
       await untilHealthy()
     }
     expect(first.text()).toContain('The worker ended (SIGKILL); it starts again')
