@@ -23,7 +23,8 @@ const isFull = process.env.LANTHORN_TEST === 'full'
 /** Colours do not change with the width: a phone is looked at in the dark as well only in the long run. */
 const WIDTHS: readonly { width: number, height: number, themes: readonly ('light' | 'dark')[] }[] = [{ width: 1440, height: 900, themes: ['light', 'dark'] }, { width: 390, height: 844, themes: isFull ? ['light', 'dark'] : ['dark'] }]
 
-describe('every page, in both themes and both widths [WCAG 2.2 AA; look: 390 px without pushing sideways]', () => {
+// Up to sixteen pages are walked in one test, each looked at in both themes.
+describe('every page, in both themes and both widths [WCAG 2.2 AA; look: 390 px without pushing sideways]', { timeout: 480_000 }, () => {
   let browser: Browser
   let places: DemoPlaces
   beforeAll(async () => {
