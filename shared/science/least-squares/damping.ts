@@ -8,7 +8,7 @@ const SMALLEST = 2.2250738585072014e-308
  * shorter; leaves the step in `newton`.
  * @param previous λ of the step before, the starting value
  * @returns λ
- * @source Moré, Lecture Notes in Mathematics 630, 105 (1978), section 5
+ * @source Moré, Lect. Notes Math. 630, 105 (1978), section 5
  */
 export function findDamping(ws: Workspace, delta: number, previous: number): number {
   const { freeCount } = ws

@@ -15,7 +15,7 @@ const STATIONARY = 1e-4
  * QR at the end until they no longer get shorter, which brings the parameters to the last digits the data hold.
  * @param start brought inside the bounds first
  * @returns where it ended and why; `converged` only at a point that is stationary on the free parameters
- * @source Moré, Lecture Notes in Mathematics 630, 105 (1978)
+ * @source Moré, Lect. Notes Math. 630, 105 (1978)
  */
 export function solve(problem: LeastSquaresProblem, start: ArrayLike<number>, options: SolveOptions = {}): Solution {
   const search = openSearch(problem, start, options)
