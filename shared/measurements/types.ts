@@ -10,7 +10,8 @@ export interface ColumnSpec {
   field: string
   label: string
   dimension: Dimension | 'text'
-  role: 'tube' | 'agent' | 'batch' | 'conc' | 'concError' | 'x' | 'y' | 'sigma'
+  /** aux: a number that goes with each point (SD of the region, its pixels, B1 scale), kept in the points under `field`; an attribute row gives it once for a tube. */
+  role: 'tube' | 'agent' | 'batch' | 'conc' | 'concError' | 'x' | 'y' | 'sigma' | 'aux'
   /** Header words, lower case, as people write them; units in brackets are split off before matching. */
   synonyms: readonly string[]
   required: boolean
@@ -79,6 +80,29 @@ export interface Exclusion {
   reason: string
 }
 
+/** A choice of how to fit that is not a model: offered beside the model, checked by the service, stored with the fit and named in its method. */
+export interface FitOptionSpec {
+  key: string
+  label: string
+  type: 'choice' | 'integer' | 'number'
+  choices?: readonly { value: string, label: string }[]
+  min?: number
+  max?: number
+  unit?: string
+  /** What counts when the option is not given. */
+  standard: string | number
+  help: string
+  /** Models for which it is offered; left out: all. */
+  models?: readonly string[]
+}
+
+/** Correlations of fitted parameters: rows and columns in the order of `names`. */
+export interface CorrelationTable {
+  names: string[]
+  labels: string[]
+  matrix: number[][]
+}
+
 /** Everything an analysis may read: nothing else enters a fit, so that the same input gives the same bits. */
 export interface AnalysisInput {
   kind: string
@@ -145,6 +169,10 @@ export interface TubeResult {
   passed: string[]
   statistics: FitStatistics | null
   secondOpinion: SecondOpinionResult | null
+  /** Absent in fits of engine 1; null where there is no covariance. */
+  correlation?: CorrelationTable | null
+  /** How the intervals were found, in words ('Student t, 9 degrees of freedom'). Absent in fits of engine 1. */
+  intervalMethod?: string
 }
 
 export interface SeriesResult {
@@ -154,6 +182,8 @@ export interface SeriesResult {
   line: { x: number, y: number }[]
   band: { x: number, low: number, high: number }[]
   statistics: { label: string, value: number | null, text: string }[]
+  /** Absent in fits of engine 1. */
+  correlation?: CorrelationTable | null
 }
 
 export type AnalysisOutcome =
@@ -190,6 +220,8 @@ export interface MeasurementKind {
   /** within: ids of models that contain this one as a special case; an F-test may compare it with those. */
   models: readonly { id: string, version: number, title: string, within?: readonly string[] }[]
   defaultModel: (conditions: Conditions) => string
+  /** Choices beside the model; left out: none. */
+  options?: readonly FitOptionSpec[]
   /** Problems of complete tubes with their conditions, beyond single cells. */
   checkTubes: (tubes: readonly SeriesTube[], conditions: Conditions) => UploadProblem[]
   /** Fits tubes and series. Pure, deterministic, worker-safe: JSON in, JSON out. */
