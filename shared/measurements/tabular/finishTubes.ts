@@ -107,13 +107,14 @@ function sampleName(raw: RawTube): { agent: string | null, batch: string | null 
 
 function readPoints(raw: RawTube, input: FinishInput): { table: PointTable, places: UnderstoodTube['pointPlaces'] } {
   const hasSigma = raw.points.some(point => point.sigma !== null && point.sigma.text !== '')
-  const fields = pointFields(raw.points[0], input.kind, hasSigma)
+  const aux = specsOf(input.kind, 'aux').filter(spec => raw.points.some(point => point.aux.some(cell => cell.spec.stem === spec.stem && cell.text !== '')))
+  const fields = [...pointFields(raw.points[0], input.kind, hasSigma), ...aux.map(spec => spec.field)]
   const rows: (number | null)[][] = []
   const places: UnderstoodTube['pointPlaces'] = []
   for (const point of raw.points) {
     const row = readPoint(point, hasSigma, input)
     if (row === null) continue
-    rows.push(row)
+    rows.push([...row, ...aux.map(spec => readAux(point, spec, input))])
     places.push({ row: point.y.row, column: point.y.column })
   }
   return { table: { columns: fields, rows }, places }
@@ -146,6 +147,11 @@ function readPoint(point: RawPoint, hasSigma: boolean, { kind, decimal, problems
   const sigma = hasSigma ? read(point.sigma) : null
   if (y === null || (point.x !== null && x === null)) return null
   return [...(point.x === null ? [] : [x]), y, ...(hasSigma ? [sigma] : [])]
+}
+
+function readAux(point: RawPoint, spec: ColumnSpec, { decimal, problems }: FinishInput): number | null {
+  const cell = point.aux.find(candidate => candidate.spec.stem === spec.stem)
+  return cell === undefined || cell.text === '' ? null : readCell(cell, decimal, problems)
 }
 
 function tubeProblems(tube: UnderstoodTube, raw: RawTube): UploadProblem[] {

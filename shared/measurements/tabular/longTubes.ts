@@ -19,7 +19,8 @@ export function longTubes(body: readonly TableRecord[], columns: readonly ReadCo
   const lines = body.map(record => ({
     record, tube: text(record, 'tube'), agent: text(record, 'agent'), batch: text(record, 'batch'), conc: text(record, 'conc'),
   }))
-  return [...groupLines(lines, splitAlways)].map(([key, group]) => makeTube(key, group, at))
+  const aux = columns.filter(column => column.spec?.role === 'aux')
+  return [...groupLines(lines, splitAlways)].map(([key, group]) => makeTube(key, group, at, aux))
 }
 
 function groupLines(lines: readonly Line[], splitAlways: boolean): Map<string, Line[]> {
@@ -54,11 +55,11 @@ function groupBy<T>(items: readonly T[], keyOf: (item: T) => string): Map<string
   return groups
 }
 
-function makeTube(key: string, lines: readonly Line[], at: (role: Role) => ReadColumn | null): RawTube {
-  const valueCell = (record: TableRecord, role: Role): ValueCell | null => {
-    const column = at(role)
-    return column?.spec ? { text: record.cells[column.index] ?? '', row: record.row, column: column.index + 1, spec: column.spec, unit: column.unit } : null
-  }
+function makeTube(key: string, lines: readonly Line[], at: (role: Role) => ReadColumn | null, aux: readonly ReadColumn[]): RawTube {
+  const cellOf = (record: TableRecord, column: ReadColumn | null): ValueCell | null =>
+    column?.spec ? { text: record.cells[column.index] ?? '', row: record.row, column: column.index + 1, spec: column.spec, unit: column.unit } : null
+  const valueCell = (record: TableRecord, role: Role): ValueCell | null => cellOf(record, at(role))
+  const auxCells = (record: TableRecord): ValueCell[] => aux.flatMap(column => cellOf(record, column) ?? [])
   const firstNamed = (role: Role): NamedCell | null => {
     const column = at(role)
     const line = column === null ? undefined : lines.find(candidate => (candidate.record.cells[column.index] ?? '') !== '')
@@ -70,7 +71,7 @@ function makeTube(key: string, lines: readonly Line[], at: (role: Role) => ReadC
   }
   const points = lines.flatMap(({ record }) => {
     const y = valueCell(record, 'y')
-    return y === null ? [] : [{ x: valueCell(record, 'x'), y, sigma: valueCell(record, 'sigma') }]
+    return y === null ? [] : [{ x: valueCell(record, 'x'), y, sigma: valueCell(record, 'sigma'), aux: auxCells(record) }]
   })
   const conc = firstValue('conc')
   const concs = lines.flatMap(line => valueCell(line.record, 'conc') ?? [])

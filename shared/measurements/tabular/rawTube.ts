@@ -8,6 +8,8 @@ export interface RawPoint {
   x: ValueCell | null
   y: ValueCell
   sigma: ValueCell | null
+  /** Other numbers of this point (SD over the region, pixels, B1 scale): each cell names its column by its spec. */
+  aux: readonly ValueCell[]
 }
 
 /** A tube as the table holds it, before any number is read. Every layout comes down to these. */

@@ -87,7 +87,7 @@ interface Parting { above: readonly TableRecord[], header: TableRecord | null, b
 
 /** Takes the rows that describe tubes from above and below the head of a table with a column per tube. */
 function partAttributes({ above, header, below, isTransposed }: Parting, { kind, draft }: StructureInput): { attributes: AttributeRow[], body: TableRecord[], around: TableRecord[] } {
-  const roles = ['tube', 'agent', 'batch', 'conc', 'concError', ...(isTransposed ? ['y', 'sigma'] : [])]
+  const roles = ['tube', 'agent', 'batch', 'conc', 'concError', 'aux', ...(isTransposed ? ['y', 'sigma'] : [])]
   const present = below.flatMap(record => matchHeader(record.cells[0] ?? '', kind.columns)?.spec.stem ?? [])
   const width = filledCells(header ?? below[0] ?? { row: 0, cells: [], raw: '' })
   const read = (record: TableRecord): AttributeRow | null => {

@@ -51,9 +51,10 @@ function columnTube({ column, error, xColumn, header, attributes, body }: OneCol
   })
   const valueOf = (role: ColumnSpec['role']) => attributes.filter(candidate => candidate.spec.role === role).map(value).find(cell => cell.text !== '') ?? null
   const ySpec = column.spec
+  const aux = attributes.filter(candidate => candidate.spec.role === 'aux').map(value)
   const points = xColumn === null || ySpec === null
     ? resultPoints(attributes, value)
-    : body.flatMap(record => bodyPoint(record, { column, error, xColumn, ySpec }))
+    : body.flatMap(record => bodyPoint(record, { column, error, xColumn, ySpec })).map(point => ({ ...point, aux }))
   return {
     key: `column ${column.index}`, label: named('tube')?.text ?? column.header, agent: named('agent'), batch: named('batch'), conc: valueOf('conc'), concSe: valueOf('concError'),
     points, conflicts: [], place: `column ${columnLetter(column.index)}, ${rowsText(points.map(point => point.y.row))}`, row: header?.row ?? body[0]?.row ?? 1, column: column.index + 1,
@@ -66,13 +67,13 @@ function bodyPoint(record: TableRecord, { column, error, xColumn, ySpec }: { col
   const cell = (at: ReadColumn, spec: ColumnSpec | null): ValueCell | null =>
     spec === null ? null : { text: record.cells[at.index] ?? '', row: record.row, column: at.index + 1, spec, unit: at.unit }
   const y = cell(column, ySpec)
-  return y === null ? [] : [{ x: cell(xColumn, xColumn.spec), y, sigma: error === null ? null : cell(error, { ...ySpec, label: `${ySpec.label}, error`, above: 0 }) }]
+  return y === null ? [] : [{ x: cell(xColumn, xColumn.spec), y, sigma: error === null ? null : cell(error, { ...ySpec, label: `${ySpec.label}, error`, above: 0 }), aux: [] }]
 }
 
 function resultPoints(attributes: readonly AttributeRow[], value: (attribute: AttributeRow) => ValueCell): RawPoint[] {
   const sigma = attributes.find(candidate => candidate.spec.role === 'sigma')
   return attributes.filter(candidate => candidate.spec.role === 'y' && value(candidate).text !== '')
-    .map(attribute => ({ x: null, y: value(attribute), sigma: sigma === undefined ? null : value(sigma) }))
+    .map(attribute => ({ x: null, y: value(attribute), sigma: sigma === undefined ? null : value(sigma), aux: [] }))
 }
 
 interface RowInput {
@@ -103,6 +104,7 @@ export function rowTubes(input: RowInput): RawTube[] {
   if (xSpec === undefined || ySpec === undefined) return []
   const times = timeColumns(input)
   const at = (role: ColumnSpec['role']) => input.columns.find(column => column.spec?.role === role) ?? null
+  const aux = input.columns.filter(column => column.spec?.role === 'aux')
   const corner = input.columns.find(column => column.index === 0 && column.spec === null && !times.some(time => time.column === column)) ?? null
   return input.body.map((record) => {
     const named = (column: ReadColumn | null): NamedCell | null => {
@@ -116,7 +118,7 @@ export function rowTubes(input: RowInput): RawTube[] {
     const points = times.flatMap(({ column, text, unit }) => {
       const cell = { text: record.cells[column.index] ?? '', row: record.row, column: column.index + 1, spec: ySpec, unit: column.unit ?? unitlessUnit(ySpec) }
       const x = { text, row: input.header?.row ?? 1, column: column.index + 1, spec: xSpec, unit: unit ?? input.xUnit }
-      return cell.text === '' ? [] : [{ x, y: cell, sigma: null }]
+      return cell.text === '' ? [] : [{ x, y: cell, sigma: null, aux: aux.flatMap(each => value(each) ?? []) }]
     })
     return {
       key: `row ${record.row}`, label: named(at('tube') ?? corner)?.text ?? '', agent: named(at('agent')), batch: named(at('batch')), conc: value(at('conc')), concSe: value(at('concError')),

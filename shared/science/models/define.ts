@@ -45,6 +45,17 @@ export interface Separable<P extends string> {
   isUpright: (linear: ArrayLike<number>) => boolean
 }
 
+/** A quantity computed from the fitted parameters, with its gradient so that its error follows from their covariance. */
+export interface DerivedQuantity {
+  readonly name: string
+  readonly label: string
+  readonly unit: string
+  /** NaN where these parameters give none. */
+  readonly value: (p: ArrayLike<number>) => number
+  /** ∂value/∂pⱼ in the order of `params`. */
+  readonly gradient: (p: ArrayLike<number>) => readonly number[]
+}
+
 export interface ModelExample<P extends string> {
   readonly x: readonly number[]
   readonly settings: Settings
@@ -73,6 +84,8 @@ export interface ModelSpec<P extends string> {
   /** A reason why these points cannot be described by the model, whatever its parameters; null when there is none. */
   refuse: (x: readonly number[], settings: Settings) => FitRefused | null
   readonly separable: Separable<P> | null
+  /** What follows from the parameters. Left out: nothing. */
+  readonly derived?: readonly DerivedQuantity[]
   readonly example: ModelExample<P>
 }
 

@@ -2,9 +2,17 @@ import type { Model } from './define'
 import { inversionRecovery3 } from './inversionRecovery3'
 import { inversionRecoveryDelay } from './inversionRecoveryDelay'
 import { inversionRecoveryTiRepeat } from './inversionRecoveryTiRepeat'
+import { lookLocker } from './lookLocker'
+import { multiEcho, multiEchoOffset } from './multiEcho'
+import { multiEchoMeanSquares, multiEchoNoiseFloor } from './multiEchoNoise'
+import { saturationRecovery, saturationRecoveryOffset } from './saturationRecovery'
+import { variableFlipAngle } from './variableFlipAngle'
 
 /** Every model the product can fit, by id. */
-export const MODELS = { inversionRecovery3, inversionRecoveryTiRepeat, inversionRecoveryDelay } as const
+export const MODELS = {
+  inversionRecovery3, inversionRecoveryTiRepeat, inversionRecoveryDelay, saturationRecovery, saturationRecoveryOffset, lookLocker, variableFlipAngle,
+  multiEcho, multiEchoOffset, multiEchoNoiseFloor, multiEchoMeanSquares,
+} as const
 
 export type ModelId = keyof typeof MODELS
 

@@ -1,15 +1,17 @@
 import type { FitRefused } from '../least-squares/outcome'
 import type { ModelAxis, ModelParameter, ModelSetting } from './define'
 
-/** Declarations and start values shared by the inversion-recovery models. */
+/** Declarations and start values shared by the recovery models. */
 export const TI_AXIS: ModelAxis = { name: 'ti_s', label: 'TI', unit: 's', dimension: 'time' }
 export const SIGNAL_AXIS: ModelAxis = { name: 'signal_au', label: 'Signal', unit: 'au', dimension: 'signal' }
 
-const LARGEST_SIGNAL = 1e12
+/** Signals have no natural scale: the bound only keeps their squares finite. */
+export const LARGEST_SIGNAL = 1e100
 
 export const PARAMETERS = {
   a: { label: 'a', unit: 'au', min: -LARGEST_SIGNAL, max: LARGEST_SIGNAL },
   b: { label: 'b', unit: 'au', min: -LARGEST_SIGNAL, max: LARGEST_SIGNAL },
+  c: { label: 'c', unit: 'au', min: -LARGEST_SIGNAL, max: LARGEST_SIGNAL },
   m0: { label: 'M0', unit: 'au', min: 0, max: LARGEST_SIGNAL },
   t1: { label: 'T1', unit: 's', min: 1e-4, max: 100 },
 } as const satisfies Record<string, ModelParameter>
@@ -44,5 +46,5 @@ export function recoveryRange(ti_s: ArrayLike<number>): readonly [number, number
 export function refuseNegativeTimes(ti_s: readonly number[]): FitRefused | null {
   const at = ti_s.findIndex(ti => ti < 0)
   if (at < 0) return null
-  return { ok: false, reason: 'outOfDomain', message: `Point ${at + 1}: the inversion time ${ti_s[at]} s is negative.`, accepted: 'Inversion times of 0 s or more.' }
+  return { ok: false, reason: 'outOfDomain', message: `Point ${at + 1}: the time ${ti_s[at]} s is negative.`, accepted: 'Times of 0 s or more.' }
 }
