@@ -19,6 +19,8 @@ export interface ColumnSpec {
   /** Smallest number allowed, in the stored unit; with `above`, the number itself is not. */
   min?: number
   above?: number
+  /** Largest number allowed, in the stored unit. */
+  max?: number
   /** Stem of the column whose error this one holds: it settles headers such as 'SD', and gives the unit where the header has none. */
   follows?: string
   /** A header word that settles a condition: 'T2 (ms)' says that T2 was measured. */

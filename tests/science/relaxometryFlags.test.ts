@@ -5,7 +5,8 @@ import type { Model } from '../../shared/science/models/define'
 import { MODELS } from '../../shared/science/models/index'
 import { createRandom } from '../../shared/science/random'
 import { BLANK_RANGES, findBlankRanges } from '../../shared/science/relaxometry/blankRanges'
-import { TUBE_FLAGS, reportFlags, type TubeContext } from '../../shared/science/relaxometry/flags'
+import { reportFlags, type TubeContext } from '../../shared/science/relaxometry/flags'
+import { INVERSION_FLAGS } from '../../shared/science/relaxometry/tubeFlags'
 import { fitRecovery } from '../../shared/science/relaxometry/polarity'
 import { runsP } from '../../shared/science/relaxometry/runsTest'
 
@@ -19,14 +20,15 @@ function contextOf({ ti_s = TI_S, t1_s = 0.9, sd = 5, change = y => y, exclude =
   const signal_au = change(ti_s.map(ti => recovery.evaluate(ti, { a_au: 1000, b_au: -1940, t1_s }) + sd * random.normal()))
   const fit = fitModel(recovery, { x: ti_s, y: signal_au, exclude }, { secondOpinion: true })
   if (!fit.ok) throw new Error(fit.message)
-  return { fit, ti_s, signal_au, polarity: null, alternative: null, noise: { sigma_au: fit.sigma ?? sd, source: 'scatter about the curve' }, blankRanges: [], isBlank: false, ...more }
+  const t1 = fit.parameters.find(one => one.name === 't1_s') ?? null
+  return { fit, x: ti_s, signal_au, headline: t1, curveTime_s: t1?.value ?? null, polarity: null, alternative: null, withOffset: null, noise: { sigma_au: fit.sigma ?? sd, source: 'scatter about the curve' }, blankRanges: [], isBlank: false, ...more }
 }
-const raised = (context: TubeContext) => reportFlags(TUBE_FLAGS, context).filter(flag => flag.state === 'raised').map(flag => flag.id)
+const raised = (context: TubeContext) => reportFlags(INVERSION_FLAGS, context).filter(flag => flag.state === 'raised').map(flag => flag.id)
 
 describe('flags of a tube', () => {
   it('passes every flag that applies to a good tube, and reports them all with what was found', () => {
-    const reports = reportFlags(TUBE_FLAGS, contextOf())
-    expect(reports.map(r => r.id)).toEqual(TUBE_FLAGS.map(flag => flag.id))
+    const reports = reportFlags(INVERSION_FLAGS, contextOf())
+    expect(reports.map(r => r.id)).toEqual(INVERSION_FLAGS.map(flag => flag.id))
     expect(reports.filter(r => r.state === 'raised')).toEqual([])
     expect(reports.filter(r => r.state === 'notApplicable').map(r => r.id)).toEqual(['blankOutside', 'polarity'])
     for (const { detail, state, advice } of reports) {
@@ -44,11 +46,11 @@ describe('flags of a tube', () => {
   it('names an error above 5 % and a signal under 5 σ', () => {
     expect(raised(contextOf({ sd: 150 }))).toContain('largeError')
     expect(raised(contextOf({}, { noise: { sigma_au: 300, source: 'background' } }))).toContain('weakSignal')
-    const report = reportFlags(TUBE_FLAGS, contextOf({}, { noise: { sigma_au: 300, source: 'background' } })).find(r => r.id === 'weakSignal')!
+    const report = reportFlags(INVERSION_FLAGS, contextOf({}, { noise: { sigma_au: 300, source: 'background' } })).find(r => r.id === 'weakSignal')!
     expect(report.detail).toContain('background')
   })
   it('names the outlying point and not its neighbours [Bonferroni t]', () => {
-    const reports = reportFlags(TUBE_FLAGS, contextOf({ change: y => y.with(6, y[6]! + 80) }))
+    const reports = reportFlags(INVERSION_FLAGS, contextOf({ change: y => y.with(6, y[6]! + 80) }))
     expect(reports.find(r => r.id === 'outlier')).toMatchObject({ state: 'raised', detail: expect.stringContaining('Point 7') })
   })
   it('names residuals in runs where the wrong model is fitted', () => {
@@ -76,8 +78,8 @@ describe('flags of a tube', () => {
     const random = createRandom(5)
     const y = ti_s.map(ti => Math.abs(recovery.evaluate(ti, { a_au: 1000, b_au: -1940, t1_s: 0.9 }) + 40 * random.normal())).with(2, 35)
     const { fit, polarity, alternative } = fitRecovery(recovery, { x: ti_s, y }, 'magnitude')
-    const context = { ...contextOf(), fit: fit as FitDone, ti_s, signal_au: polarity!.signal, polarity, alternative: alternative as FitDone }
-    const report = reportFlags(TUBE_FLAGS, context).find(r => r.id === 'polarity')!
+    const context = { ...contextOf(), fit: fit as FitDone, headline: (fit as FitDone).parameters[2]!, x: ti_s, signal_au: polarity!.signal, polarity, alternative: alternative as FitDone }
+    const report = reportFlags(INVERSION_FLAGS, context).find(r => r.id === 'polarity')!
     expect(report.state).toBe('raised')
     expect(report.detail).toMatch(/T1 is [\d.]+ s, with the next best signs [\d.]+ s/)
   })

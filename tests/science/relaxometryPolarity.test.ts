@@ -1,7 +1,7 @@
 import fc from 'fast-check'
 import { describe, expect, it } from 'vitest'
 import type { Model } from '../../shared/science/models/define'
-import { MODELS, MODEL_IDS } from '../../shared/science/models/index'
+import { MODELS } from '../../shared/science/models/index'
 import { createRandom } from '../../shared/science/random'
 import { fitRecovery, restorePolarity } from '../../shared/science/relaxometry/polarity'
 import { fitTubes, poolNoise } from '../../shared/science/relaxometry/tubes'
@@ -37,13 +37,13 @@ describe('polarity of magnitude data', () => {
     expect(lost.fit).toEqual(fitRecovery(recovery, { x: TI_S, y: signed }, 'signed').fit)
     expect(lost.alternative).toBeNull()
   })
-  it.each(MODEL_IDS)('works with %s', (id) => {
+  it.each(['inversionRecovery3', 'inversionRecoveryTiRepeat', 'inversionRecoveryDelay', 'lookLocker'] as const)('works with %s', (id) => {
     const model = MODELS[id] as Model
     const { x, settings, truth } = model.example
     const signed = x.map(ti => model.evaluate(ti, truth, settings))
     const { fit, polarity } = fitRecovery(model, { x, y: signed.map(Math.abs) }, 'magnitude', { settings })
     expect(polarity!.signal).toEqual(signed)
-    expect(fit.ok && fit.parameters.at(-1)!.value).toBeCloseTo(truth.t1_s!, 9)
+    expect(fit.ok && fit.parameters.at(-1)!.value).toBeCloseTo(Object.values(truth).at(-1)!, 9)
   })
   it('is ambiguous where one noisy point sits on the null, and both T1 are given', () => {
     const ti_s = [0.05, 0.3, 0.62, 1.5, 4]

@@ -61,7 +61,7 @@ export const SAMPLE_CONDITIONS: readonly ConditionSpec[] = [
 
 /** What evidence of this measurement carries: the conditions that comparisons read, in stored units; what was not given is absent. */
 export function evidenceConditions(conditions: Conditions): Conditions {
-  const keys = ['b0_T', 'temperature_K', 'temperatureSd_K', 'pH', 'pHScale', 'medium', 'mediumDetail', 'buffer', 'aeration', 'concBasis']
+  const keys = ['b0_T', 'temperature_K', 'temperatureSd_K', 'pH', 'pHScale', 'medium', 'mediumDetail', 'buffer', 'aeration', 'concBasis', 'echoSpacing_s']
   const kept = keys.flatMap((key) => { const value = conditions[key] ?? null; return value === null ? [] : [[key, value] as const] })
   return { ...Object.fromEntries(kept), mediumClass: MEDIUM_CLASSES[String(conditions.medium ?? '')] ?? 'other' }
 }

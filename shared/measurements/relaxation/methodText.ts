@@ -30,6 +30,25 @@ export function conditionsText(conditions: Conditions): string {
   return `${parts.length > 0 ? ` at ${parts.join(', ')}` : ''}${medium === null ? '' : ` in ${medium}`}`
 }
 
+/** '10 inversion times from 0.05 to 8 s'. */
+export function samplingText(used: readonly TubeResult[], { plural, unit, per }: { plural: string, unit: string, per: number }): string {
+  const times = used.flatMap(tube => tube.points.map(point => point.x))
+  const [low, high] = times.reduce(([a, b], time) => [Math.min(a, time), Math.max(b, time)], [Infinity, -Infinity])
+  return `${new Set(times).size} ${plural} from ${plain(low * per)} to ${plain(high * per)} ${unit}`
+}
+
+/** What the errors of the times rest on: the source of σ, where it is one for all tubes. */
+export function noiseText(used: readonly TubeResult[]): string {
+  const sources = [...new Set(used.map(tube => tube.statistics?.sigma.replace(/^[^,]* au, /, '').replace(/, \d+ degrees of freedom$/, '')).filter(source => source !== undefined))]
+  return sources.length === 0 ? '' : `Standard errors rest on noise ${sources.join(' or ')}. `
+}
+
+/** How the intervals of the times were found. */
+export function intervalText(used: readonly TubeResult[]): string {
+  const words = [...new Set(used.map(tube => tube.intervalMethod?.replace(/, .*$/, '')).filter(one => one !== undefined && one !== 'none'))]
+  return words.length === 0 ? '' : `Intervals are 95 % (${words.join(' or ')}). `
+}
+
 /** How the slope was found, with the errors that went into it. */
 export function slopeText(digit: '1' | '2', used: readonly TubeResult[], { conditions, tubes }: AnalysisInput): string {
   const hasErrors = used.every(tube => tube.parameters.some(parameter => parameter.name === `rate${digit}_per_s` && parameter.se !== null))

@@ -8,7 +8,7 @@ export function namedParameter({ name, label, unit, value, se, interval, atBound
 }
 
 /** 'T1' as 'T_1', so that screens lower the digit. */
-const inNotation = (label: string): string => label.replace(/^([A-Z])(\d)$/, '$1_$2')
+export const inNotation = (label: string): string => label.replace(/^([A-Z])(\d)(\*?)$/, '$1_$2$3')
 
 /** 1/T with its error, from T with its error: se/T². The interval is that of T turned over, and so not symmetric. */
 export function rateOf({ value, se, interval }: NamedQuantity, name: string, label: string): NamedQuantity {
@@ -52,7 +52,7 @@ export const passedText = (title: string, detail: string | null): string => `${t
 
 const CURVE_POINTS = 97
 
-/** Model values over the range of the points, denser where the recovery bends: spaced by the square of their index. */
+/** Model values from 0 to the last point, denser where a recovery bends: spaced by the square of their index. */
 export function curveOver(x: readonly number[], evaluate: (x: number) => number): { x: number, y: number }[] {
   const end = Math.max(...x)
   if (!(end > 0)) return []

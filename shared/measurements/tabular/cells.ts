@@ -51,5 +51,6 @@ function domainProblem({ spec, text, row, column }: ValueCell, value: number): U
   if (spec.min !== undefined && value < spec.min) {
     return blocks('outOfDomain', `${name} is ${spec.min === 0 ? 'negative' : `below ${spec.min}`}.`, `a number of ${spec.min} or more`, { row, column })
   }
+  if (spec.max !== undefined && value > spec.max) return blocks('outOfDomain', `${name} is above ${spec.max}.`, `a number of at most ${spec.max}`, { row, column })
   return null
 }

@@ -83,9 +83,9 @@ function followedUnit(spec: ColumnSpec, columns: readonly ReadColumn[]): Unit | 
   return followed?.unit && followed.unit.dimension === spec.dimension ? followed.unit : null
 }
 
-/** Signals and pure numbers need no unit; times and concentrations do. */
+/** Signals, fractions and pure numbers need no unit; times and concentrations do. */
 export function unitlessUnit(spec: ColumnSpec): Unit | null {
-  return spec.dimension === 'signal' || spec.dimension === 'none' ? storedUnit(spec.dimension) : null
+  return spec.dimension === 'signal' || spec.dimension === 'none' || spec.dimension === 'fraction' ? storedUnit(spec.dimension) : null
 }
 
 /** Two columns for one thing, one for a tube twice, a required one missing, a unit missing. */

@@ -1,6 +1,7 @@
 import { parseUnit } from '../../science/units'
 import type { UploadDraft } from '../draft'
 import type { MeasurementKind, UploadProblem } from '../types'
+import { unitlessUnit } from './columns'
 import { findUnit, matchHeader } from './headerText'
 import { findHeader, guessLayout, matchHeaders, specsOf, type Layout } from './layout'
 import { parseNumberCell, type DecimalMark } from './numberCell'
@@ -96,7 +97,7 @@ function partAttributes({ above, header, below, isTransposed }: Parting, { kind,
     const isResult = match.spec.role === 'y' || match.spec.role === 'sigma'
     if (filledCells(record) < 3 && width > 2 && !isResult) return null
     const chosen = draft.units?.[match.spec.stem]
-    const unit = chosen && match.spec.dimension !== 'text' ? findUnit(chosen, match.spec.dimension) : match.unit
+    const unit = chosen && match.spec.dimension !== 'text' ? findUnit(chosen, match.spec.dimension) : match.unit ?? (match.unknownUnit === null && match.spec.role === 'aux' ? unitlessUnit(match.spec) : null)
     return { record, spec: match.spec, unit }
   }
   const before = above.map(read)

@@ -6,7 +6,7 @@ import type { LeastSquaresProblem, SolveOptions } from './problem'
 import { reportFit } from './reportFit'
 import { findSecondOpinion } from './secondOpinion'
 import { solve } from './trustRegion'
-import { prepareSeparable, type SeparableSearch } from './varpro'
+import { createSearches, type Searches, type SeparableSearch } from './varpro'
 
 export type { FitData } from './fitData'
 
@@ -30,10 +30,14 @@ export interface FitOptions {
   /** Coverage of the interval. Default 0.95. */
   readonly level?: number
   readonly pooledSigma?: PooledSigma
+  /** The standard deviations given stand for their ratios only; their common size is estimated from the scatter. Default false. */
+  readonly relativeSigma?: boolean
   /** Ask an independent program whether a lower minimum exists (about a millisecond). Default false. */
   readonly secondOpinion?: boolean
   /** A search prepared for exactly these times and weights: spares its grid. */
   readonly search?: SeparableSearch
+  /** Searches shared by fits of one series: one grid for each set of times and weights. */
+  readonly searches?: Searches
   readonly solve?: SolveOptions
 }
 
@@ -87,7 +91,7 @@ function findStart(model: Model, data: PreparedData, options: FitOptions): Float
 function project(model: Model, { x, y, sigma, settings }: PreparedData, options: FitOptions): Readonly<Record<string, number>> | null {
   const { separable } = model
   if (!separable || Object.keys(options.fixed ?? {}).length > 0) return null
-  const search = options.search ?? prepareSeparable(model, x, sigma && sigma.map(s => 1 / s), settings)
+  const search = options.search ?? (options.searches ?? createSearches()).find(model, { x, sigma, settings })
   if (!search) return null
   const { tau, linear } = search.search(y, START_TOLERANCE)
   return Object.fromEntries([[separable.nonlinear, tau], ...separable.linear.map((name, c) => [name, linear[c]!] as const)])

@@ -28,7 +28,7 @@ interface Parts {
 export function reportFit(parts: Parts): FitDone {
   const { model, data, prepared, options, free, solution, information } = parts
   const dof = prepared.x.length - free.length
-  const sigmaUsed: SigmaUsed = prepared.sigma ? 'known' : options.pooledSigma ? 'pooled' : 'estimated'
+  const sigmaUsed: SigmaUsed = prepared.sigma && !options.relativeSigma ? 'known' : options.pooledSigma ? 'pooled' : 'estimated'
   const level = options.level ?? 0.95
   const variance = varianceFactor(parts, dof)
   const noInterval = findNoInterval(parts, dof)
@@ -45,8 +45,8 @@ export function reportFit(parts: Parts): FitDone {
     parameters: free.map((j, c) => parameterOf(parts, j, c, covariance, half)),
     fixed: options.fixed ?? {}, covariance, correlation: covariance && correlationOf(covariance), rss,
     reducedChi2: sigmaUsed === 'estimated' || dof === 0 ? null : solution.sumOfSquares / dof / (sigmaUsed === 'pooled' ? options.pooledSigma!.sigma ** 2 : 1),
-    sigma: sigmaUsed === 'known' ? commonValue(prepared.sigma!) : variance === null ? null : Math.sqrt(variance),
-    sigmaUsed, dof, intervalDof, level, aicc: aiccOf(prepared, free.length, solution.sumOfSquares), r2: r2Of(prepared, solution.sumOfSquares),
+    sigma: sigmaUsed === 'known' ? commonValue(prepared.sigma!) : variance === null || prepared.sigma ? null : Math.sqrt(variance),
+    sigmaUsed, dof, intervalDof, level, aicc: aiccOf(prepared, free.length, solution.sumOfSquares, sigmaUsed === 'known'), r2: r2Of(prepared, solution.sumOfSquares),
     condition: information.condition, evaluations: solution.evaluations, stop: solution.stop, converged: solution.converged, noInterval, fitted,
     residuals: spreadOver(data.x.length, prepared.used, misfit),
     studentised: spreadOver(data.x.length, prepared.used, studentisedOf(parts, dof)),
@@ -56,7 +56,7 @@ export function reportFit(parts: Parts): FitDone {
 
 /** What (JᵀWJ)⁻¹ is multiplied by; null where no variance can be had. */
 function varianceFactor({ prepared, options, solution }: Parts, dof: number): number | null {
-  if (prepared.sigma) return dof > 0 ? Math.max(1, solution.sumOfSquares / dof) : 1
+  if (prepared.sigma && !options.relativeSigma) return dof > 0 ? Math.max(1, solution.sumOfSquares / dof) : 1
   if (options.pooledSigma) return options.pooledSigma.sigma ** 2
   return dof > 0 ? solution.sumOfSquares / dof : null
 }
@@ -114,11 +114,11 @@ function spreadOver(length: number, used: readonly number[], values: readonly (n
 }
 
 /** Burnham & Anderson's small-sample criterion; an estimated σ² is one more parameter. */
-function aiccOf({ x, sigma }: PreparedData, m: number, sum: number): number | null {
+function aiccOf({ x }: PreparedData, m: number, sum: number, isKnown: boolean): number | null {
   const n = x.length
-  const k = sigma ? m : m + 1
-  if (n - k - 1 <= 0 || (!sigma && !(sum > 0))) return null
-  return (sigma ? sum : n * Math.log(sum / n)) + 2 * k + (2 * k * (k + 1)) / (n - k - 1)
+  const k = isKnown ? m : m + 1
+  if (n - k - 1 <= 0 || (!isKnown && !(sum > 0))) return null
+  return (isKnown ? sum : n * Math.log(sum / n)) + 2 * k + (2 * k * (k + 1)) / (n - k - 1)
 }
 
 function r2Of({ y, sigma }: PreparedData, sum: number): number {

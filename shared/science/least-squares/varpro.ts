@@ -70,6 +70,25 @@ export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: Ar
   return { search, projectAt }
 }
 
+/** Searches of one series by model, times, weights and settings: tubes measured alike share one grid. */
+export interface Searches {
+  find: (model: Model, acquisition: { readonly x: readonly number[], readonly sigma: readonly number[] | null, readonly settings: Settings }) => SeparableSearch | null
+}
+
+export function createSearches(): Searches {
+  const known = new Map<string, SeparableSearch | null>()
+  return {
+    find(model, { x, sigma, settings }) {
+      const key = `${model.id}|${x.join()}|${sigma ? sigma.join() : ''}|${Object.values(settings).join()}`
+      const found = known.get(key)
+      if (found !== undefined) return found
+      const search = prepareSeparable(model, x, sigma && sigma.map(s => 1 / s), settings)
+      known.set(key, search)
+      return search
+    },
+  }
+}
+
 function logarithmicGrid([low, high]: readonly [number, number], { min, max }: ModelParameter): number[] {
   const from = Math.max(low, min)
   const ratio = Math.min(high, max) / from

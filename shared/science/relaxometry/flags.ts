@@ -1,18 +1,25 @@
-import type { FitDone } from '../least-squares/outcome'
-import { tQuantile } from '../statistics'
+import type { FitDone, FittedParameter } from '../least-squares/outcome'
+import { tQuantile, tTwoSidedP } from '../statistics'
 import type { BlankRange } from './blankRanges'
 import type { Polarity } from './polarity'
 import { runsP } from './runsTest'
 
-/** What the flags of one recovery tube look at. */
+/** What the flags of one tube look at. */
 export interface TubeContext {
   readonly fit: FitDone
-  readonly ti_s: readonly number[]
+  /** Times (or angles) of all points given, left-out ones included. */
+  readonly x: readonly number[]
   /** Signal as fitted, polarity restored. */
   readonly signal_au: readonly number[]
+  /** Relaxation time that is reported; null where the fit gives none. */
+  readonly headline: Pick<FittedParameter, 'value' | 'se' | 'label'> | null
+  /** Time constant of the curve itself: T1* where T1 follows from it, otherwise the headline. */
+  readonly curveTime_s: number | null
   readonly polarity: Polarity | null
   /** Fit with the runner-up's polarity. */
   readonly alternative: FitDone | null
+  /** The same decay with an offset, where one was tried. */
+  readonly withOffset: FitDone | null
   /** Noise of one point and where it comes from; null when unknown. */
   readonly noise: { readonly sigma_au: number, readonly source: string } | null
   /** Expected ranges for a blank; empty for other tubes and for conditions without a record. */
@@ -49,16 +56,10 @@ export function reportFlags<C>(flags: readonly Flag<C>[], context: C): FlagRepor
   })
 }
 
-const t1Of = (fit: FitDone) => fit.parameters.find(p => p.name === 't1_s')
-const usedOf = ({ fit, ti_s }: TubeContext) => ti_s.flatMap((_, i) => fit.residuals[i] === null ? [] : [i])
-const digits = (value: number) => Number(value.toPrecision(3)).toString()
-const percent = (fraction: number) => `${digits(100 * fraction)} %`
-
-/** Compares T1 with a time of the acquisition; not applicable where T1 was held. */
-function compareWithT1(context: TubeContext, pick: (times: number[]) => number, judge: (time_s: number, t1_s: number) => FlagFinding): FlagFinding {
-  const t1 = t1Of(context.fit)
-  return t1 ? judge(pick(usedOf(context).map(i => context.ti_s[i]!)), t1.value) : null
-}
+export const usedOf = ({ fit, x }: Pick<TubeContext, 'fit' | 'x'>): number[] => x.flatMap((_, i) => fit.residuals[i] === null ? [] : [i])
+export const inOrder = (context: TubeContext): number[] => usedOf(context).sort((i, j) => context.x[i]! - context.x[j]!)
+export const digits = (value: number): string => Number(value.toPrecision(3)).toString()
+export const percent = (fraction: number): string => `${digits(100 * fraction)} %`
 
 function findOutliers({ fit }: TubeContext): FlagFinding {
   const judged = fit.studentised.flatMap((t, i) => t === null ? [] : [{ point: i + 1, size: Math.abs(t) }])
@@ -69,77 +70,91 @@ function findOutliers({ fit }: TubeContext): FlagFinding {
 }
 
 function testRuns(context: TubeContext): FlagFinding {
-  const order = usedOf(context).sort((i, j) => context.ti_s[i]! - context.ti_s[j]!)
-  const p = runsP(order.map(i => context.fit.residuals[i]!))
+  const p = runsP(inOrder(context).map(i => context.fit.residuals[i]!))
   return p === null ? null : { isRaised: p < 0.05, detail: `Probability of so few changes of sign: ${digits(p)}.` }
 }
 
-function testSignal(context: TubeContext): FlagFinding {
-  if (!context.noise) return null
-  const { sigma_au, source } = context.noise
-  const ratio = Math.max(...usedOf(context).map(i => Math.abs(context.signal_au[i]!))) / sigma_au
-  return { isRaised: ratio < 5, detail: `The largest signal is ${digits(ratio)} times the noise (σ = ${digits(sigma_au)}, ${source}).` }
-}
-
-function testBlank({ isBlank, fit, blankRanges }: TubeContext): FlagFinding {
-  const t1 = t1Of(fit)
-  if (!isBlank || !t1 || blankRanges.length === 0) return null
-  const isInside = blankRanges.some(range => t1.value >= range.low_s && t1.value <= range.high_s)
+function testBlank({ isBlank, headline, blankRanges }: TubeContext): FlagFinding {
+  if (!isBlank || !headline || blankRanges.length === 0) return null
+  const isInside = blankRanges.some(range => headline.value >= range.low_s && headline.value <= range.high_s)
   const expected = blankRanges.map(range => `${range.low_s} to ${range.high_s} s${range.aeration ? ` (${range.aeration === 'degassed' ? 'degassed' : 'air-saturated'})` : ''}`).join(' or ')
-  return { isRaised: !isInside, detail: `T1 is ${digits(t1.value)} s; expected ${expected}.` }
+  return { isRaised: !isInside, detail: `${headline.label} is ${digits(headline.value)} s; expected ${expected}.` }
 }
 
-/** Flags of one inversion-recovery tube. */
-export const TUBE_FLAGS: readonly Flag<TubeContext>[] = [
-  {
-    id: 'shortSampling', title: 'Longest TI under 3·T1', advice: 'Measure longer inversion times, or take the plateau from a separate measurement.',
-    test: context => compareWithT1(context, times => Math.max(...times), (ti, t1) => ({ isRaised: ti < 3 * t1, detail: `The longest TI is ${digits(ti / t1)} times T1.` })),
-  },
-  {
-    id: 'lateStart', title: 'Shortest TI above T1', advice: 'Measure shorter inversion times.',
-    test: context => compareWithT1(context, times => Math.min(...times), (ti, t1) => ({ isRaised: ti > t1, detail: `The shortest TI is ${digits(ti / t1)} times T1.` })),
-  },
-  {
-    id: 'fewPoints', title: 'Fewer than five points', advice: 'Measure more inversion times.',
-    test: context => ({ isRaised: usedOf(context).length < 5, detail: `${usedOf(context).length} points are used.` }),
-  },
-  {
-    id: 'largeError', title: 'Standard error above 5 % of T1', advice: 'Look for outliers, or measure again with more signal.',
-    test: ({ fit }) => {
-      const t1 = t1Of(fit)
-      if (!t1 || t1.se === null) return null
-      return { isRaised: t1.se > 0.05 * t1.value, detail: `The standard error is ${percent(t1.se / t1.value)} of T1.` }
+/** Three or more of the largest signals exactly equal: a receiver or a number format at its end. */
+function testClipping(context: TubeContext): FlagFinding {
+  const sizes = usedOf(context).map(i => Math.abs(context.signal_au[i]!))
+  const largest = Math.max(...sizes)
+  const equal = sizes.filter(size => size === largest).length
+  return { isRaised: equal >= 3 && equal < sizes.length, detail: equal === 1 ? 'The largest signal stands alone.' : `${equal} points share the largest signal, ${digits(largest)}.` }
+}
+
+/** Mean of the last third of the points against that of the first, in units of the scatter. */
+function testDirection(expected: 'rises' | 'falls'): (context: TubeContext) => FlagFinding {
+  return (context) => {
+    const order = inOrder(context)
+    const third = Math.floor(order.length / 3)
+    if (third < 1) return null
+    const mean = (points: number[]) => points.reduce((sum, i) => sum + context.signal_au[i]!, 0) / points.length
+    const change = mean(order.slice(-third)) - mean(order.slice(0, third))
+    const isWrong = expected === 'rises' ? change < 0 : change > 0
+    const noise = context.noise?.sigma_au ?? 0
+    return { isRaised: isWrong && Math.abs(change) > 3 * noise / Math.sqrt(third), detail: `The signal ${change > 0 ? 'rises' : 'falls'} by ${digits(Math.abs(change))} from its first third to its last.` }
+  }
+}
+
+/** Alternating residuals of a train: the echoes of odd number read too low where refocusing is imperfect. */
+export function testEvenOdd(context: TubeContext): FlagFinding {
+  const order = inOrder(context)
+  if (order.length < 6 || context.fit.dof < 3) return null
+  const residuals = order.map(i => context.fit.residuals[i]!)
+  const contrast = residuals.reduce((sum, e, k) => sum + (k % 2 === 0 ? -e : e), 0)
+  const size = Math.sqrt(residuals.reduce((sum, e) => sum + e * e, 0) / context.fit.dof * residuals.length)
+  if (!(size > 0)) return null
+  const p = tTwoSidedP(contrast / size, context.fit.dof)
+  return { isRaised: p < 0.01, detail: `Even against odd echoes: t = ${digits(contrast / size)}, p ${p < 0.001 ? 'below 0.001' : `= ${digits(p)}`}.` }
+}
+
+/** Tests that hold for every tube, whatever was measured. `more` says what to measure where there are too few points. */
+export function commonFlags({ more, expected }: { more: string, expected: 'rises' | 'falls' | null }): Flag<TubeContext>[] {
+  const flags: Flag<TubeContext>[] = [
+    {
+      id: 'fewPoints', title: 'Fewer than five points', advice: `Measure more ${more}.`,
+      test: context => ({ isRaised: usedOf(context).length < 5, detail: `${usedOf(context).length} points are used.` }),
     },
-  },
-  {
-    id: 'noInterval', title: 'No interval can be stated', advice: 'Leave the tube out, or measure it again: its T1 carries no error.',
-    test: ({ fit }) => ({ isRaised: fit.noInterval !== null, detail: fit.noInterval?.message ?? 'The fit converged inside its bounds.' }),
-  },
-  {
-    id: 'onBound', title: 'A parameter on a bound', advice: 'Check timing and model: a bound reached means the points do not fit them.',
-    test: ({ fit }) => {
-      const held = fit.parameters.filter(p => p.atBound)
-      return { isRaised: held.length > 0, detail: held.length > 0 ? `${held.map(p => p.label).join(', ')} on a bound.` : 'All parameters lie inside their bounds.' }
+    {
+      id: 'largeError', title: 'Standard error above 5 %', advice: 'Look for outliers, or measure again with more signal.',
+      test: ({ headline }) => {
+        if (!headline || headline.se === null) return null
+        return { isRaised: headline.se > 0.05 * headline.value, detail: `The standard error is ${percent(headline.se / headline.value)} of ${headline.label}.` }
+      },
     },
-  },
-  { id: 'outlier', title: 'Outlier', advice: 'Look at the point in the raw data; leave it out with a reason if it is faulty.', test: findOutliers },
-  { id: 'runs', title: 'Residuals in runs', advice: 'The curve does not follow the points: check the timing model and, for magnitudes, the polarity.', test: testRuns },
-  { id: 'weakSignal', title: 'Largest signal under 5 σ', advice: 'Measure again with more signal.', test: testSignal },
-  { id: 'blankOutside', title: 'Blank outside the expected range', advice: 'Check temperature, aeration and contamination of the blank.', test: testBlank },
-  {
-    id: 'polarity', title: 'Polarity not settled', advice: 'Compare both T1; a point nearer to the null, or signed data, settles it.',
-    test: ({ polarity, fit, alternative }) => {
-      if (!polarity) return null
-      const other = alternative ? t1Of(alternative)?.value : polarity.runnerUp?.t1_s
-      const both = `T1 is ${digits(t1Of(fit)?.value ?? polarity.t1_s)} s${other === undefined ? '' : `, with the next best signs ${digits(other)} s`}`
-      const ratio = polarity.runnerUp && polarity.rss > 0 ? `; residual sums of squares ${digits(polarity.runnerUp.rss / polarity.rss)} to 1` : ''
-      return { isRaised: polarity.isAmbiguous, detail: `${both}${ratio}.` }
+    {
+      id: 'noInterval', title: 'No interval can be stated', advice: 'Leave the tube out, or measure it again: its time carries no error.',
+      test: ({ fit, headline }) => ({
+        isRaised: fit.noInterval !== null || headline === null,
+        detail: fit.noInterval?.message ?? (headline === null ? 'The parameters give no relaxation time.' : 'The fit converged inside its bounds.'),
+      }),
     },
-  },
-  {
-    id: 'secondOpinion', title: 'A lower minimum exists', advice: 'Do not sign: report the tube, and fit it again from other start values.',
-    test: ({ fit }) => fit.secondOpinion && {
-      isRaised: !fit.secondOpinion.agrees, detail: fit.secondOpinion.agrees ? 'An independent program finds no lower minimum.' : 'An independent program finds a lower sum of squares.',
+    {
+      id: 'onBound', title: 'A parameter on a bound', advice: 'Check timing and model: a bound reached means the points do not fit them.',
+      test: ({ fit }) => {
+        const held = fit.parameters.filter(p => p.atBound)
+        return { isRaised: held.length > 0, detail: held.length > 0 ? `${held.map(p => p.label).join(', ')} on a bound.` : 'All parameters lie inside their bounds.' }
+      },
     },
-  },
-]
+    { id: 'outlier', title: 'Outlier', advice: 'Look at the point in the raw data; leave it out with a reason if it is faulty.', test: findOutliers },
+    { id: 'runs', title: 'Residuals in runs', advice: 'The curve does not follow the points: check timing and model and, for magnitudes, polarity or noise floor.', test: testRuns },
+    { id: 'clipped', title: 'Signal cut off at its top', advice: 'Lower the receiver gain or the scale of the export and measure again; points at the limit read too low.', test: testClipping },
+    { id: 'blankOutside', title: 'Blank outside the expected range', advice: 'Check temperature, aeration and contamination of the blank.', test: testBlank },
+    {
+      id: 'secondOpinion', title: 'A lower minimum exists', advice: 'Do not sign: report the tube, and fit it again from other start values.',
+      test: ({ fit }) => fit.secondOpinion && {
+        isRaised: !fit.secondOpinion.agrees, detail: fit.secondOpinion.agrees ? 'An independent program finds no lower minimum.' : 'An independent program finds a lower sum of squares.',
+      },
+    },
+  ]
+  if (expected === null) return flags
+  const word = expected === 'rises' ? 'A recovery that falls' : 'A decay that grows'
+  return [...flags, { id: 'wrongWay', title: word, advice: 'Check which column is the time, its unit and the sign of the signals.', test: testDirection(expected) }]
+}

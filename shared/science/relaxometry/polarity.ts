@@ -1,7 +1,7 @@
 import { prepareData, refuse, type FitData } from '../least-squares/fitData'
 import { fitModel, type FitOptions } from '../least-squares/fitModel'
 import type { FitOutcome, FitRefused } from '../least-squares/outcome'
-import { prepareSeparable, type Projection, type SeparableSearch } from '../least-squares/varpro'
+import { createSearches, type Projection, type Searches, type SeparableSearch } from '../least-squares/varpro'
 import type { Model, Settings } from '../models/define'
 
 /** Ratio of the runner-up's residual sum of squares to the best one's up to which the polarity is not settled. */
@@ -36,7 +36,7 @@ export interface RecoveryFit {
  */
 export function fitRecovery(model: Model, data: FitData, signal: 'signed' | 'magnitude', options: FitOptions = {}): RecoveryFit {
   if (signal === 'signed') return { fit: fitModel(model, data, options), polarity: null, alternative: null }
-  const polarity = restorePolarity(model, data, options.settings)
+  const polarity = restorePolarity(model, data, options.settings, options.searches)
   if (!polarity.ok) return { fit: polarity, polarity: null, alternative: null }
   const fit = fitModel(model, { ...data, y: polarity.signal }, options)
   const isShown = polarity.isAmbiguous && polarity.runnerUp !== null
@@ -49,7 +49,7 @@ export function fitRecovery(model: Model, data: FitData, signal: 'signed' | 'mag
  * @returns a refusal for negative magnitudes and for a model without a separable part, besides what a fit refuses
  * @source Barral et al., Magn. Reson. Med. 64, 1057 (2010)
  */
-export function restorePolarity(model: Model, data: FitData, given: Settings = {}): Polarity | FitRefused {
+export function restorePolarity(model: Model, data: FitData, given: Settings = {}, searches: Searches = createSearches()): Polarity | FitRefused {
   const negative = data.y.findIndex(value => value < 0)
   if (negative >= 0) {
     return refuse('outOfDomain', `Point ${negative + 1}: the signal ${data.y[negative]} is negative, which a magnitude cannot be.`, 'Magnitudes of 0 or more, or the data declared as signed.')
@@ -57,7 +57,7 @@ export function restorePolarity(model: Model, data: FitData, given: Settings = {
   const prepared = prepareData(model, data, given, model.names.length)
   if (!prepared.ok) return prepared
   const { x, y, sigma, settings } = prepared
-  const search = prepareSeparable(model, x, sigma && sigma.map(s => 1 / s), settings)
+  const search = searches.find(model, { x, sigma, settings })
   if (!search || !model.separable) throw new Error(`Model ${model.id} has no separable part, so polarity cannot be restored with it.`)
   const candidates = signChanges(x, y).map(from => ({ from, ...project(search, x, y, from) }))
     .filter(candidate => model.separable!.isUpright(candidate.linear)).sort((a, b) => a.rss - b.rss)

@@ -1,11 +1,17 @@
 import type { FitData, FitOptions, PooledSigma } from '../least-squares/fitModel'
-import type { FitDone } from '../least-squares/outcome'
+import type { FitDone, FitOutcome } from '../least-squares/outcome'
+import { withPooledSigma } from '../least-squares/pooled'
+import { createSearches } from '../least-squares/varpro'
 import type { Model } from '../models/define'
 import { chi2UpperP } from '../statistics'
+import { fitMeanSquares, withSeenFloor } from './noiseFloor'
 import { fitRecovery, type RecoveryFit } from './polarity'
 
 /** p of equal variances below which the noise is not taken to be the same in all tubes. */
 const UNEQUAL_P = 0.001
+
+/** Form in which the signals come: with their sign, as magnitudes that lost it, or as means of squared magnitudes. */
+export type SignalForm = 'signed' | 'magnitude' | 'meanSquares'
 
 export interface PooledNoise extends PooledSigma {
   /** Bartlett's p of equal variances; null with fewer than two tubes. */
@@ -21,27 +27,38 @@ export interface TubeFits {
 /**
  * Fits every tube of a series. Tubes sampled at the same times whose scatter is alike share one σ, which steadies the weights of the line through their
  * rates; tubes with a σ of their own, with points left out or sampled otherwise stand alone.
+ * @param own options of single tubes (B1 scale, a known σ), by position
  */
-export function fitTubes(model: Model, tubes: readonly FitData[], signal: 'signed' | 'magnitude', options: FitOptions = {}): TubeFits {
-  const own = tubes.map(data => fitRecovery(model, data, signal, options))
+export function fitTubes(model: Model, tubes: readonly FitData[], signal: SignalForm, options: FitOptions = {}, own: (k: number) => FitOptions = () => ({})): TubeFits {
+  const searches = options.searches ?? createSearches()
+  const fits = tubes.map((data, k) => fitOne(model, data, signal, { ...options, searches, ...own(k) }))
   const groups = new Map<string, number[]>()
   tubes.forEach((data, k) => {
-    const { fit } = own[k]!
+    const { fit } = fits[k]!
     if (data.sigma || !fit.ok || fit.noInterval || fit.sigma === null || !(fit.sigma > 0)) return
     const key = [...data.x].sort((a, b) => a - b).join() + (data.exclude?.length ? `/${k}` : '')
     groups.set(key, [...groups.get(key) ?? [], k])
   })
   const pools = new Array<PooledNoise | null>(tubes.length).fill(null)
   for (const members of groups.values()) {
-    const pool = poolNoise(members.map(k => own[k]!.fit as FitDone))
+    const pool = poolNoise(members.map(k => fits[k]!.fit as FitDone))
     if (members.length < 2 || (pool.equalVarianceP ?? 1) < UNEQUAL_P) continue
     for (const k of members) pools[k] = pool
   }
-  const refitted = own.map((tube, k) => {
-    const pool = pools[k]
-    return pool ? fitRecovery(model, tubes[k]!, signal, { ...options, pooledSigma: { sigma: pool.sigma, dof: pool.dof } }) : tube
-  })
-  return { tubes: refitted, pools }
+  const pooled = (fit: FitOutcome, pool: PooledNoise) => fit.ok ? withPooledSigma(fit, pool) : fit
+  return {
+    pools,
+    tubes: fits.map((tube, k) => {
+      const pool = pools[k] ?? null
+      return pool === null ? tube : { ...tube, fit: pooled(tube.fit, pool), alternative: tube.alternative && pooled(tube.alternative, pool) }
+    }),
+  }
+}
+
+function fitOne(model: Model, data: FitData, signal: SignalForm, options: FitOptions): RecoveryFit {
+  if (signal === 'meanSquares') return { fit: fitMeanSquares(model, data, options), polarity: null, alternative: null }
+  const found = fitRecovery(model, data, signal, options)
+  return { ...found, fit: withSeenFloor(model, data, found.fit, options) }
 }
 
 /**
