@@ -1,3 +1,4 @@
+import { CAUTION } from '../../shared/caution'
 import type { Deps } from '../platform/deps'
 import { programmeAddressees, programmeCode } from '../queries/addresses'
 import { fitExclusions } from '../queries/fits'
@@ -11,7 +12,7 @@ export async function tellAuthors(deps: Pick<Deps, 'origin'>, { work, input, sub
   for (const one of people) {
     await work.sendMail({
       to: one.email, subject: mail.subject, template: mail.template, dedupeKey: `${mail.template}:${input.id}:${seq}:${one.personId}`,
-      body: [`${one.name},`, '', ...mail.lines, '', `${deps.origin}/${code}/checks/${input.kind}/${input.id}`, '', 'Lanthorn. Screening research only; not for diagnosis, dosing or release of a product.'].join('\n'),
+      body: [`${one.name},`, '', ...mail.lines, '', `${deps.origin}/${code}/checks/${input.kind}/${input.id}`, '', `Lanthorn. ${CAUTION}`].join('\n'),
     })
   }
 }

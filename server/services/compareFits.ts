@@ -1,5 +1,7 @@
 import { AppError } from '../../shared/errors'
 import type { AnalysisOutcome, MeasurementKind, TubeResult } from '../../shared/measurements/types'
+import { optionWords } from '../../shared/measurements/fitOptions'
+import type { FigureSpec } from '../../shared/schemas/figure'
 import type { CompareDto } from '../../shared/schemas/fit'
 import { fUpperP } from '../../shared/science/statistics'
 import type { Deps } from '../platform/deps'
@@ -24,9 +26,10 @@ export async function compareFits(deps: Pick<Deps, 'db' | 'kinds'>, { programmeI
   const samePoints = a.fit.exclusionsHash.equals(b.fit.exclusionsHash) && a.totals !== null && b.totals !== null
   const bothAicc = samePoints && a.totals?.aicc != null && b.totals?.aicc != null
   const fTest = samePoints ? nestedTest(kind, a, b) : null
+  const gap = bothAicc ? b.totals!.aicc! - a.totals!.aicc! : null
   return {
-    a: sideDto(a, all, kind), b: sideDto(b, all, kind), samePoints, aiccDifference: bothAicc ? b.totals!.aicc! - a.totals!.aicc! : null, fTest, shiftInSe: shift(a.outcome, b.outcome),
-    tubes: pairTubes(a.outcome.tubes, b.outcome.tubes), note: noteOf({ a, b, samePoints, fTest }),
+    a: { ...sideDto(a, all, kind), weight: gap === null ? null : 1 / (1 + Math.exp(-gap / 2)) }, b: { ...sideDto(b, all, kind), weight: gap === null ? null : 1 / (1 + Math.exp(gap / 2)) }, samePoints, aiccDifference: gap, fTest, shiftInSe: shift(a.outcome, b.outcome),
+    tubes: pairTubes(kind, a, b), note: noteOf({ a, b, samePoints, fTest }),
   }
 }
 
@@ -64,19 +67,41 @@ function shift(a: AnalysisOutcome, b: AnalysisOutcome): number | null {
   return (b.series.headline.value - a.series.headline.value) / a.series.headline.se
 }
 
-function sideDto({ fit, outcome, totals }: Side, all: readonly FitVersionRow[], kind: MeasurementKind): CompareDto['a'] {
+function sideDto({ fit, outcome, totals }: Side, all: readonly FitVersionRow[], kind: MeasurementKind): Omit<CompareDto['a'], 'weight'> {
   return {
     ...versionDto(fit, all, kind), headline: outcome.ok ? outcome.series.headline : null, parameters: outcome.ok ? outcome.series.parameters : [], statistics: outcome.ok ? outcome.series.statistics : [],
-    rss: totals?.rss ?? null, dof: totals?.dof ?? null, aicc: totals?.aicc ?? null,
+    options: optionWords(kind.options ?? [], JSON.parse(fit.options) as Readonly<Record<string, number | string | boolean>>), rss: totals?.rss ?? null, dof: totals?.dof ?? null, aicc: totals?.aicc ?? null,
     flags: outcome.tubes.reduce((sum, tube) => sum + tube.flags.length, outcome.ok ? outcome.flags.length : 0),
   }
 }
 
-function pairTubes(a: readonly TubeResult[], b: readonly TubeResult[]): CompareDto['tubes'] {
-  return a.map((tube) => {
-    const other = b.find(one => one.tubeNo === tube.tubeNo)
-    return { tubeNo: tube.tubeNo, label: tube.label, a: tube.headline, b: other?.headline ?? null, aOut: tube.excluded !== null, bOut: (other?.excluded ?? null) !== null }
+function pairTubes(kind: MeasurementKind, a: Side, b: Side): CompareDto['tubes'] {
+  const names = [`v${a.fit.versionNo}`, `v${b.fit.versionNo}`] as const
+  return a.outcome.tubes.map((tube) => {
+    const other = b.outcome.tubes.find(one => one.tubeNo === tube.tubeNo)
+    return {
+      tubeNo: tube.tubeNo, label: tube.label, a: tube.headline, b: other?.headline ?? null, aOut: tube.excluded !== null, bOut: (other?.excluded ?? null) !== null,
+      figure: other && (tube.curve.length > 0 || other.curve.length > 0) ? overlay(kind.tubeFigure(tube), other, names) : null,
+    }
   })
+}
+
+/** The figure of one version with the other's curve and residuals laid over it: solid and dots for the first, dashed and open for the second. */
+function overlay(figure: FigureSpec, other: TubeResult, [first, second]: readonly [string, string]): FigureSpec {
+  const residuals = other.points.flatMap(({ x, studentised }) => studentised === null ? [] : [{ x, y: studentised }])
+  return {
+    ...figure, id: `${figure.id}-compared`, text: `${figure.text} Two versions over the same points.`,
+    layers: [
+      ...figure.layers.map(layer => layer.type === 'line' ? { ...layer, name: first } : layer),
+      { type: 'line', name: second, token: 's2', dash: 'dashed', points: other.curve },
+    ],
+    ...(figure.strip ? { strip: { ...figure.strip, label: `Residual of ${first}, studentised` } } : {}),
+    ...(figure.table ? { table: withColumn(figure.table, residuals, second) } : {}),
+  }
+}
+
+function withColumn(table: NonNullable<FigureSpec['table']>, residuals: readonly { x: number, y: number }[], version: string): FigureSpec['table'] {
+  return { columns: [...table.columns, { key: 'other', label: `Residual of ${version}, studentised`, unit: null, numeric: true }], rows: table.rows.map((row, i) => ({ ...row, other: residuals[i]?.x === row.x ? residuals[i]?.y ?? null : null })) }
 }
 
 function noteOf({ a, b, samePoints, fTest }: { a: Side, b: Side, samePoints: boolean, fTest: CompareDto['fTest'] }): string {

@@ -1,3 +1,4 @@
+import { CAUTION } from '../../shared/caution'
 import { AppError } from '../../shared/errors'
 import type { Actor } from '../../shared/permissions'
 import type { RecordDecisionInput } from '../../shared/schemas/decision'
@@ -66,7 +67,7 @@ async function tellProgramme(deps: Deps, work: Work, { actor, programmeId, body,
       body: [
         `${one.name},`, '', `${actor.name} ${VERBS[body.outcome]} ${body.agent}, under the profile ${profile}.`, '', body.reasons, '',
         ...(deciderSigned ? [`${actor.name} signed part of the evidence behind this decision as well.`, ''] : []),
-        `${deps.origin}/${code}/decisions/${id}`, '', 'Lanthorn. Screening research only; not for diagnosis, dosing or release of a product.',
+        `${deps.origin}/${code}/decisions/${id}`, '', `Lanthorn. ${CAUTION}`,
       ].join('\n'),
     })
   }

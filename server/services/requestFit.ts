@@ -1,4 +1,5 @@
 import { AppError } from '../../shared/errors'
+import { findOptionProblem } from '../../shared/measurements/fitOptions'
 import type { Actor } from '../../shared/permissions'
 import type { FitRequest, FitRequested } from '../../shared/schemas/fit'
 import type { Knex } from 'knex'
@@ -26,6 +27,8 @@ export async function requestFit(deps: Deps, { actor, programmeId, seriesId, req
     if (!kind.models.some(model => model.id === modelId)) {
       throw new AppError('invalidInput', `No model is called ${modelId}.`, { field: 'modelId', accepted: kind.models.map(model => model.id).join(', ') })
     }
+    const problem = findOptionProblem(kind.options ?? [], modelId, request.options)
+    if (problem) throw new AppError('invalidInput', problem.message, { field: `options.${problem.key}`, accepted: problem.accepted })
     const inherited = parent ? await fitExclusions(work.trx, programmeId, parent.id) : []
     const tubes = await seriesTubes(work.trx, programmeId, seriesId)
     const exclusions = mergeExclusions(inherited, request, { tubes, personId: actor.personId, at: work.now })

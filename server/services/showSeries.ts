@@ -1,7 +1,7 @@
 import { AppError } from '../../shared/errors'
 import { formatFixed, NBSP } from '../../shared/format'
 import { toShown } from '../../shared/measurements/shownCondition'
-import type { ConditionSpec } from '../../shared/measurements/types'
+import type { ConditionSpec, FitOptionSpec } from '../../shared/measurements/types'
 import type { Scope } from '../../shared/permissions'
 import type { SeriesDto } from '../../shared/schemas/series'
 import type { Deps } from '../platform/deps'
@@ -28,7 +28,7 @@ export async function showSeries(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId
   ])
   return {
     id: series.id, kind: series.kind, kindTitle: kind.title, title: series.title, agentCode: series.agentCode, lot: series.lot, mechanism: mark?.mechanism ?? null, topology: mark?.topology ?? null,
-    conditions: kind.conditions.flatMap(spec => conditionDto(spec, series)), models: kind.models.map(({ id, version, title }) => ({ id, version, title })), defaultModel: kind.defaultModel(series.conditions),
+    conditions: kind.conditions.flatMap(spec => conditionDto(spec, series)), models: kind.models.map(({ id, version, title }) => ({ id, version, title })), defaultModel: kind.defaultModel(series.conditions), options: (kind.options ?? []).map(optionDto),
     tubes: tubes.map(tube => ({ tubeNo: tube.tubeNo, label: tube.label, role: tube.role, conc_mM: tube.conc_mM, concSe_mM: tube.concSe_mM, points: tube.points.rows.length, place: showsFile ? tube.place : '' })),
     inputHash: hex(series.inputHash), file: showsFile ? fileDto(series) : null, recordedBy: series.createdByName, recordedAt: series.createdAt.toISOString(),
     events: isPartner ? [] : events.map(({ event, reason, personName, at }) => ({ event, reason, personName, at: at.toISOString() })),
@@ -40,6 +40,11 @@ export async function showSeries(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId
 export async function seesFiles(deps: Pick<Deps, 'db'>, programmeId: string, scope: Scope): Promise<boolean> {
   return scope !== 'signed' || ((await findProgramme(deps.db, programmeId))?.partnerSeesRawFiles ?? false)
 }
+
+const optionDto = (spec: FitOptionSpec): SeriesDto['options'][number] => ({
+  key: spec.key, label: spec.label, type: spec.type, choices: [...spec.choices ?? []], min: spec.min ?? null, max: spec.max ?? null, unit: spec.unit ?? null, standard: spec.standard, help: spec.help,
+  models: spec.models ? [...spec.models] : null,
+})
 
 function conditionDto(spec: ConditionSpec, { conditions }: SeriesRow): SeriesDto['conditions'] {
   const value = conditions[spec.key]

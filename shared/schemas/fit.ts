@@ -36,6 +36,19 @@ export type FitRequest = z.output<typeof FitRequest>
 export const FitRequested = z.object({ jobId: z.string(), seriesId: z.string() })
 export type FitRequested = z.output<typeof FitRequested>
 
+/** A choice of how to fit beside the model, as forms need it. */
+export const FitOptionDto = z.object({
+  key: z.string(), label: z.string(), type: z.enum(['choice', 'integer', 'number']), choices: z.array(z.object({ value: z.string(), label: z.string() })), min: z.number().nullable(), max: z.number().nullable(),
+  unit: z.string().nullable(), standard: z.union([z.string(), z.number()]), help: z.string(),
+  /** Models that it belongs to; null = all. */
+  models: z.array(z.string()).nullable(),
+})
+export type FitOptionDto = z.output<typeof FitOptionDto>
+
+/** Correlations of fitted parameters, rows and columns in the order of the names. */
+export const CorrelationDto = z.object({ names: z.array(z.string()), labels: z.array(z.string()), matrix: z.array(z.array(z.number())) })
+export type CorrelationDto = z.output<typeof CorrelationDto>
+
 export const FlagDto = z.object({ id: z.string(), title: z.string(), sentence: z.string(), tubeNo: z.number().nullable() })
 export type FlagDto = z.output<typeof FlagDto>
 
@@ -58,6 +71,9 @@ export const TubeDto = z.object({
     evaluations: z.number(), stop: z.string(), sigma: z.string(),
   }).nullable(),
   secondOpinion: z.object({ rss: z.number().nullable(), relativeDifference: z.number().nullable(), lower: z.boolean(), note: z.string() }).nullable(),
+  /** Both absent in fits of engine 1. */
+  correlation: CorrelationDto.nullish(),
+  intervalMethod: z.string().optional(),
   /** Place in the file: column, rows. */
   place: z.string(),
   figure: FigureSpec,
@@ -73,6 +89,7 @@ export const SeriesResultDto = z.object({
     leaveOneOut: z.number().nullable(), excluded: z.string().nullable(),
   })),
   statistics: z.array(z.object({ label: z.string(), value: z.number().nullable(), text: z.string() })),
+  correlation: CorrelationDto.nullish(),
 })
 
 export const FitCheckDto = z.object({ state: z.enum(CHECK_STATES), seq: z.number(), personName: z.string().nullable(), since: z.string().nullable() })
@@ -140,6 +157,10 @@ export const ComparedVersion = FitVersionDto.extend({
   dof: z.number().nullable(),
   aicc: z.number().nullable(),
   flags: z.number(),
+  /** Options that are not the standard, in words. */
+  options: z.array(z.string()),
+  /** Akaike weight between the two; null where AICc cannot judge. */
+  weight: z.number().nullable(),
 })
 
 /** Two versions side by side. Where they rest on different points, AICc and F cannot judge between them, and `note` says so. */
@@ -152,7 +173,10 @@ export const CompareDto = z.object({
   fTest: z.object({ f: z.number(), df1: z.number(), df2: z.number(), p: z.number(), simpler: z.enum(['a', 'b']) }).nullable(),
   /** Difference of the headline, b minus a, in standard errors of a. */
   shiftInSe: z.number().nullable(),
-  tubes: z.array(z.object({ tubeNo: z.number(), label: z.string(), a: NamedQuantity.nullable(), b: NamedQuantity.nullable(), aOut: z.boolean(), bOut: z.boolean() })),
+  tubes: z.array(z.object({ tubeNo: z.number(), label: z.string(), a: NamedQuantity.nullable(), b: NamedQuantity.nullable(), aOut: z.boolean(), bOut: z.boolean(),
+    /** Both curves over the points, where either has one. */
+    figure: FigureSpec.nullable(),
+  })),
   note: z.string(),
 })
 export type CompareDto = z.output<typeof CompareDto>

@@ -1,6 +1,6 @@
 import { z } from 'zod'
 import { Quantity } from '../evidence/quantity'
-import { FitVersionDto, MIN_REASON_LENGTH } from './fit'
+import { FitOptionDto, FitVersionDto, MIN_REASON_LENGTH } from './fit'
 
 export const SERIES_STATES = ['fitting', 'refused', 'draft', 'waiting', 'firstSigned', 'returned', 'recalled', 'signed', 'withdrawn'] as const
 
@@ -56,6 +56,7 @@ export const SeriesDto = z.object({
   conditions: z.array(Condition),
   models: z.array(z.object({ id: z.string(), version: z.number(), title: z.string() })),
   defaultModel: z.string(),
+  options: z.array(FitOptionDto),
   tubes: z.array(z.object({ tubeNo: z.number(), label: z.string(), role: z.enum(['sample', 'blank']), conc_mM: z.number(), concSe_mM: z.number().nullable(), points: z.number(), place: z.string() })),
   inputHash: z.string(),
   /** null where the person may not see files. */

@@ -12,7 +12,8 @@ import type { AnalysisInput, Conditions, CorrelationTable, SeriesTube, TubeResul
 import { leftOutOf, type LeftOut } from './exclusions'
 import { withIntervals } from './intervals'
 import { columnOf, noiseOf, pixelSigma, pointNoise } from './noise'
-import { INTERVAL_OPTION, optionOf } from './options'
+import { optionOf } from '../fitOptions'
+import { INTERVAL_OPTION } from './options'
 import { analysedPoints, curveOver, inNotation, namedParameter, passedText, rateOf, secondOpinionOf, statisticsOf } from './tubeResult'
 
 /** What tells one kind of signal series from another when its tubes are fitted. */
