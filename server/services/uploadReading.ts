@@ -3,6 +3,7 @@ import type { UploadDraft } from '../../shared/measurements/draft'
 import { readText } from '../../shared/measurements/tabular/readText'
 import { understandTable } from '../../shared/measurements/tabular/understand'
 import type { Understood } from '../../shared/measurements/tabular/understood'
+import { workbookTable, type WorkbookTable } from '../../shared/measurements/workbook/toTable'
 import type { MeasurementKind, UploadProblem } from '../../shared/measurements/types'
 import type { Deps } from '../platform/deps'
 import { sha256 } from '../platform/hashes'
@@ -43,19 +44,27 @@ export async function stagedBytes(deps: Pick<Deps, 'storage'>, staged: StagedRow
 }
 
 const NOTHING: Understood = {
-  preview: [], rowCount: 0, columnCount: 0, metadata: [], delimiter: null, decimal: 'point', headerRow: null, layout: 'long',
+  preview: [], rowCount: 0, columnCount: 0, workbook: null, encoding: null, metadata: [], delimiter: null, decimal: 'point', headerRow: null, layout: 'long',
   how: { delimiter: 'guessed', decimal: 'guessed', headerRow: 'guessed', layout: 'guessed' }, columns: [], looseUnits: [], found: [], conditions: {}, tubes: [], series: [],
   problems: [], canStore: false,
 }
 
 /** Reads bytes under a draft and looks its agents up: the one reading that preview shows and confirm stores. */
-export function readUpload(bytes: Uint8Array, { kind, draft, targets }: { kind: MeasurementKind, draft: UploadDraft, targets: readonly UploadTarget[] }): Understood {
-  const read = readText(bytes)
+export async function readUpload(deps: Pick<Deps, 'workbooks'>, bytes: Uint8Array, { kind, draft, targets }: { kind: MeasurementKind, draft: UploadDraft, targets: readonly UploadTarget[] }): Promise<Understood> {
+  const read = isArchive(bytes) ? await readSheets(deps, bytes, draft) : readText(bytes)
   if (!read.ok) return { ...NOTHING, problems: [read.problem] }
-  const understood = understandTable({ text: read.text, kind, draft })
+  const understood = { ...understandTable({ text: read.text, kind, draft }), encoding: 'encoding' in read ? read.encoding : null }
   const unknown = understood.series.flatMap(part => targetProblem(part, targets) ?? [])
   const problems = [...understood.problems, ...unknown]
   return { ...understood, problems, canStore: understood.canStore && unknown.length === 0 }
+}
+
+/** Workbooks are archives, and archives begin with these bytes; whether it is a workbook is seen when it is unpacked. */
+const isArchive = (bytes: Uint8Array): boolean => bytes.length > 4 && bytes[0] === 0x50 && bytes[1] === 0x4B && bytes[2] === 0x03 && bytes[3] === 0x04
+
+async function readSheets({ workbooks }: Pick<Deps, 'workbooks'>, bytes: Uint8Array, draft: UploadDraft): Promise<{ ok: true, text: WorkbookTable } | { ok: false, problem: UploadProblem }> {
+  const read = await workbooks.read(bytes)
+  return read.ok ? { ok: true, text: workbookTable(read.sheets, draft.sheet) } : read
 }
 
 /** Where the programme has no such agent, or the agent no such batch. What is not named at all is a problem of the table already. */

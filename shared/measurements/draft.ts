@@ -23,6 +23,8 @@ export type TubeDraft = z.output<typeof TubeDraft>
  */
 export const UploadDraft = z.strictObject({
   kind: text(60).optional(),
+  /** Sheet of a workbook. */
+  sheet: z.string().max(120).optional(),
   delimiter: z.enum([',', ';', '\t']).optional(),
   decimal: z.enum(['point', 'comma']).optional(),
   /** Row of the file, from 1; null = the table has no header row. */

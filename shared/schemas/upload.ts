@@ -38,6 +38,8 @@ export const PreviewDto = z.object({
   rowCount: z.number(),
   columnCount: z.number(),
   metadata: z.array(z.object({ row: z.number(), key: z.string().nullable(), value: z.string(), place: z.string() })),
+  workbook: z.object({ sheet: z.string(), sheets: z.array(z.string()) }).nullable(),
+  encoding: z.string().nullable(),
   delimiter: z.string().nullable(),
   decimal: z.enum(['point', 'comma']),
   headerRow: z.number().nullable(),

@@ -4,7 +4,7 @@ import type { UploadDraft } from '../draft'
 import { splitSeries } from '../splitSeries'
 import type { ColumnSpec, MeasurementKind, UploadProblem } from '../types'
 import { acceptedUnits, columnProblems, readColumns, unitlessUnit, type How, type ReadColumn } from './columns'
-import { sniffDecimal } from './decimal'
+import { sniffDecimal, type DecimalGuess } from './decimal'
 import { sniffDelimiter } from './delimiter'
 import { describeColumns, looseUnits } from './describe'
 import { finishTubes } from './finishTubes'
@@ -13,7 +13,8 @@ import { impliedConditions } from './implied'
 import { matchHeaders, specsOf } from './layout'
 import { UPLOAD_LIMITS } from './limits'
 import { longTubes } from './longTubes'
-import { findConditions, findNamed, readMetadata } from './metadata'
+import { findConditions, findNamed, readMetadata, type MetadataLine } from './metadata'
+import type { WorkbookTable } from '../workbook/toTable'
 import type { DecimalMark } from './numberCell'
 import { asks, blocks, listProblems, quoted } from './problem'
 import type { RawTube } from './rawTube'
@@ -24,8 +25,8 @@ import type { Understood } from './understood'
 import { columnTubes, cornerUnit, rowTubes } from './wideTubes'
 
 export interface UnderstandInput {
-  /** Decoded, line ends \n: what readText gives. */
-  text: string
+  /** Decoded, line ends \n: what readText gives; or the sheet of a workbook. */
+  text: string | WorkbookTable
   kind: MeasurementKind
   draft?: UploadDraft
 }
@@ -36,18 +37,16 @@ export interface UnderstandInput {
  * Pure: the same text and draft give the same answer, so that storing reads the bytes anew and gets what the preview showed.
  */
 export function understandTable({ text, kind, draft = {} }: UnderstandInput): Understood {
-  const sniffed = draft.delimiter ?? sniffDelimiter(text)
+  const { records, problems, sniffed, guess, lines } = typeof text === 'string' ? fromText(text, draft) : fromWorkbook(text)
   const delimiter: Delimiter = sniffed ?? ','
-  const { records, problems } = splitRecords(text, delimiter)
   const tooLarge = sizeProblems(records)
-  const guess = sniffDecimal(records)
   const decimal = draft.decimal ?? guess.decimal
   if (draft.decimal === undefined && guess.example) problems.push(decimalDoubt(guess.example))
   if (sniffed === null) problems.push(noTable())
   if (tooLarge.length > 0) return emptyOutcome({ records, delimiter: sniffed, decimal, problems: [...problems, ...tooLarge] })
   const structure = findStructure({ records, kind, decimal, draft })
   const columns = readColumns({ ...structure, kind, draft })
-  const metadata = readMetadata(structure.around, delimiter)
+  const metadata = [...readMetadata(structure.around, delimiter), ...lines]
   const inLines = findConditions(metadata, kind.conditions)
   const found = [...inLines.found, ...impliedConditions(structure, columns)]
   const conditions = mergeConditions(kind, found, draft.conditions)
@@ -61,11 +60,21 @@ export function understandTable({ text, kind, draft = {} }: UnderstandInput): Un
   problems.push(...checkConditions(kind, conditions), ...seriesProblems({ kind, series, tubes, conditions, raw }))
   const listed = listProblems(problems)
   return {
-    ...frame({ records, delimiter: sniffed, decimal }), metadata, headerRow: structure.header?.row ?? null, layout: structure.layout, how: howOf(draft),
+    ...frame({ records, delimiter: sniffed, decimal }), workbook: typeof text === 'string' ? null : { sheet: text.sheet, sheets: text.sheets }, encoding: null, metadata, headerRow: structure.header?.row ?? null, layout: structure.layout, how: howOf(draft),
     columns: describeColumns({ columns, structure, kind, decimal }), looseUnits: loose, found, conditions, tubes, series,
     problems: listed, canStore: series.length > 0 && listed.every(problem => problem.severity !== 'blocks'),
   }
 }
+
+interface Parted { records: TableRecord[], problems: UploadProblem[], sniffed: Delimiter | null, guess: Pick<DecimalGuess, 'decimal' | 'example'>, lines: MetadataLine[] }
+
+function fromText(text: string, draft: UploadDraft): Parted {
+  const sniffed = draft.delimiter ?? sniffDelimiter(text)
+  const { records, problems } = splitRecords(text, sniffed ?? ',')
+  return { records, problems, sniffed, guess: sniffDecimal(records), lines: [] }
+}
+
+const fromWorkbook = ({ records, problems, decimal, lines }: WorkbookTable): Parted => ({ records, problems: [...problems], sniffed: '\t', guess: { decimal, example: null }, lines })
 
 function howOf(draft: UploadDraft): Understood['how'] {
   const how = (choice: unknown): How => choice === undefined ? 'guessed' : 'chosen'
@@ -84,7 +93,7 @@ function frame({ records, delimiter, decimal }: Frame) {
 
 function emptyOutcome({ problems, ...rest }: Frame & { problems: UploadProblem[] }): Understood {
   return {
-    ...frame(rest), metadata: [], headerRow: null, layout: 'long', how: howOf({}), columns: [], looseUnits: [], found: [], conditions: {}, tubes: [], series: [],
+    ...frame(rest), workbook: null, encoding: null, metadata: [], headerRow: null, layout: 'long', how: howOf({}), columns: [], looseUnits: [], found: [], conditions: {}, tubes: [], series: [],
     problems: listProblems(problems), canStore: false,
   }
 }

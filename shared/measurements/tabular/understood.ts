@@ -54,6 +54,10 @@ export interface Understood {
   rowCount: number
   columnCount: number
   metadata: MetadataLine[]
+  /** Sheets of a workbook and the one read; null for a text file. */
+  workbook: { sheet: string, sheets: string[] } | null
+  /** Encoding of a text file, as it was recognised. */
+  encoding: string | null
   delimiter: Delimiter | null
   decimal: DecimalMark
   /** Row of the file, from 1; null = none. */
