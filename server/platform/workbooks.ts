@@ -1,5 +1,6 @@
 import { existsSync } from 'node:fs'
 import { dirname, join } from 'node:path'
+import { pathToFileURL } from 'node:url'
 import { Worker } from 'node:worker_threads'
 import { blocks } from '../../shared/measurements/tabular/problem'
 import { WORKBOOK_LIMITS } from '../../shared/measurements/workbook/limits'
@@ -18,8 +19,7 @@ export function threadWorkbooks(): Workbooks {
 }
 
 async function runThread(bytes: Uint8Array): Promise<WorkbookRead> {
-  const { file, execArgv } = threadFile()
-  const worker = new Worker(file, { workerData: bytes, execArgv, resourceLimits: { maxOldGenerationSizeMb: MEMORY_MB } })
+  const worker = openThread(bytes)
   try {
     return await answerOf(worker)
   }
@@ -45,9 +45,11 @@ function answerOf(worker: Worker): Promise<WorkbookRead> {
 
 const tooMuch = (message: string): WorkbookRead => ({ ok: false, problem: blocks('workbook', message, 'the sheet with the measurement saved as CSV, or a workbook with that sheet alone') })
 
-/** Beside the built server; from its source where the code runs from sources, as in tests and while developing. */
-function threadFile(): { file: string, execArgv: string[] } {
+/** Beside the built server; from its source, through the compiler that runs sources, in tests and while developing. */
+function openThread(workerData: Uint8Array): Worker {
+  const resourceLimits = { maxOldGenerationSizeMb: MEMORY_MB }
   const built = join(dirname(process.argv[1] ?? ''), 'workbookThread.mjs')
-  if (existsSync(built)) return { file: built, execArgv: [] }
-  return { file: join(process.cwd(), 'server', 'worker', 'workbookThread.ts'), execArgv: ['--import', 'tsx'] }
+  if (existsSync(built)) return new Worker(built, { workerData, resourceLimits })
+  const source = pathToFileURL(join(process.cwd(), 'server', 'worker', 'workbookThread.ts')).href
+  return new Worker(`import('tsx/esm/api').then(({ register }) => { register(); return import(${JSON.stringify(source)}) })`, { eval: true, workerData, resourceLimits })
 }
