@@ -13,6 +13,8 @@ const PAGES: readonly PageRow[] = [
   { key: 'decisions', words: 'Decisions', permission: 'decision.see' },
 ]
 const KEEPING: readonly PageRow[] = [
+  { key: 'sheets', words: 'Tube sheets', permission: 'sheet.see' },
+  { key: 'instruments', words: 'Instruments', permission: 'instrument.see' },
   { key: 'people', words: 'People of the programme', permission: 'people.see' },
   { key: 'settings', words: 'Programme settings', permission: 'programme.configure' },
 ]

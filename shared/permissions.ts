@@ -33,6 +33,10 @@ export const PERMISSIONS = {
   'upload.confirm': { ...none, chemist: 'programme' },
   // Partners only where the lead opened raw files, and then files behind a signed number: the service looks.
   'upload.bytes': everyone,
+  'instrument.see': staff,
+  'instrument.reference': { ...none, chemist: 'programme', physicist: 'programme' },
+  'sheet.see': staff,
+  'sheet.make': { ...none, chemist: 'programme', physicist: 'programme' },
   'series.see': everyone,
   'series.withdraw': { ...none, chemist: 'programme' },
   'series.correct': { ...none, chemist: 'programme' },

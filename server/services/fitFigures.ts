@@ -9,7 +9,7 @@ export function smallFigure(tube: TubeResult, figure: FigureSpec): SmallFigureSp
   const dots = figure.layers.find(layer => layer.type === 'points')
   return {
     id: `tube-${tube.tubeNo}`,
-    title: tube.role === 'blank' ? 'blank' : `${Number(tube.conc_mM.toPrecision(4))}${NBSP}mM`,
+    title: tube.role === 'blank' ? 'blank' : tube.role === 'reference' ? 'reference' : `${Number(tube.conc_mM.toPrecision(4))}${NBSP}mM`,
     value: written?.value ?? null,
     plusMinus: written?.plusMinus ?? null,
     text: figure.text,

@@ -5,6 +5,7 @@ import type { Deps } from '../platform/deps'
 import { readEvidence } from '../queries/evidence'
 import { evidenceIdsOfFit, findFit, fitExclusions, fitVersions } from '../queries/fits'
 import { findSeries, tubePlaces } from '../queries/series'
+import { sessionFlags } from './controlCharts'
 import { fitDto } from './fitDto'
 import { SERIES_NOT_FOUND } from './requestFit'
 
@@ -20,10 +21,13 @@ export async function showFit(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId, s
   const fit = versions.some(version => version.versionNo === versionNo) ? await findFit(deps.db, programmeId, seriesId, versionNo) : null
   if (!fit) throw new AppError('notFound', 'There is no such version of this series, or it is not open to you.')
   const ids = await evidenceIdsOfFit(deps.db, programmeId, fit.id)
-  return fitDto({
+  const dto = fitDto({
     fit, versions, kind,
     exclusions: await fitExclusions(deps.db, programmeId, fit.id),
     evidence: ids.length === 0 ? [] : await readEvidence(deps.db, programmeId, scope, { ids: ids.map(one => one.id) }),
     places: scope === 'signed' ? new Map() : await tubePlaces(deps.db, programmeId, seriesId),
   })
+  // Flags of the session follow from other series as well: shown with the fit, no part of what is stored. Partners see what was signed, and no more.
+  const session = scope === 'signed' ? [] : await sessionFlags(deps, { programmeId, seriesId, instrument: series.conditions.instrument })
+  return { ...dto, flags: [...dto.flags, ...session] }
 }

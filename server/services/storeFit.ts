@@ -6,6 +6,7 @@ import type { Deps } from '../platform/deps'
 import { hex, sealed } from '../platform/hashes'
 import { insertEvidence } from '../queries/evidence'
 import { insertExclusion, insertFit, insertFitInput, nextVersionNo, type StoredExclusion } from '../queries/fits'
+import { insertReading } from '../queries/instruments'
 import { finishJob, type JobRow } from '../queries/jobs'
 import { engineOf } from './engine'
 import { type LoadedSeries, orderedExclusions, seedOf } from './fitInput'
@@ -61,12 +62,25 @@ async function write(deps: Deps, work: Work, { job, programmeId, payload, loaded
   })
   for (const tube of tubes) await insertFitInput(work.trx, { programmeId, fitId, tubeId: tube.id, pointsHash: tube.pointsHash })
   for (const one of payload.exclusions) await insertExclusion(work.trx, { ...one, at: new Date(one.at), id: work.id(), programmeId, fitId })
+  await writeReadings(work, { programmeId, fitId, loaded, outcome })
   if (outcome.ok) {
     for (const draft of kind.evidence(outcome, input)) {
       await insertEvidence(work.trx, { id: work.id(), programmeId, complexId: series.complexId, batchId: series.batchId, origin: { kind: 'fit', id: fitId }, draft: ofBatch(draft, series.batchId), at: work.now })
     }
   }
   return { fitId, versionNo, outcome: outcome.ok ? 'ok' : 'refused', resultHash: hex(result.hash) }
+}
+
+/** What this fit reads of the instrument's reference tube, for its control chart. A tube that was left out says nothing of the session. */
+async function writeReadings(work: Work, { programmeId, fitId, loaded: { series }, outcome }: Pick<FitToStore, 'programmeId' | 'loaded' | 'outcome'> & { fitId: string }): Promise<void> {
+  const { instrument, temperature_K, date } = series.conditions
+  for (const tube of outcome.tubes) {
+    if (tube.role !== 'reference' || tube.excluded !== null || tube.headline === null || typeof instrument !== 'string') continue
+    await insertReading(work.trx, {
+      id: work.id(), programmeId, seriesId: series.id, fitId, tubeNo: tube.tubeNo, label: tube.label, instrument, kind: series.kind, quantity: tube.headline.name, value: tube.headline.value, se: tube.headline.se,
+      temperature_K: typeof temperature_K === 'number' ? temperature_K : null, measuredOn: typeof date === 'string' && /^\d{4}-\d{2}-\d{2}$/.test(date) ? date : null, at: work.now,
+    })
+  }
 }
 
 /** A kind names a shared error by what the form says of the stock; two batches that say the same are still two stocks. */

@@ -1,6 +1,7 @@
 import { checkRecoveryTubes, RECOVERY_COLUMNS, RECOVERY_CONDITIONS } from './relaxation/recoveryForm'
 import { recoveryFlags, recoveryModelFor } from './relaxation/recoveryFlags'
 import { signalKind } from './relaxation/kinds'
+import { proposeRecovery } from './relaxation/propose'
 import { settingsFrom } from './relaxation/settings'
 import { INVERSION_FLAGS } from '../science/relaxometry/tubeFlags'
 import { RECOVERY_TEMPLATES } from './templates/recovery'
@@ -21,6 +22,7 @@ export const relaxT1Ir = defineMeasurement(signalKind({
   ],
   defaultModel: recoveryModelFor,
   checkTubes: checkRecoveryTubes,
+  propose: proposeRecovery,
   words: {
     token: 't1', tube: { x: { label: 'TI', unit: 's' }, y: { label: 'Signal', unit: 'au' } }, rate: { label: 'R_1', unit: 's^-1' },
     caption: 'Where the signals are magnitudes, their signs are restored.',

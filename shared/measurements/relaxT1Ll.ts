@@ -2,6 +2,7 @@ import { INVERSION_FLAGS } from '../science/relaxometry/tubeFlags'
 import { SAMPLE_CONDITIONS } from './relaxation/conditions'
 import { TUBE_COLUMNS } from './relaxation/columns'
 import { signalKind } from './relaxation/kinds'
+import { proposeRecovery } from './relaxation/propose'
 import { NOISE_CONDITIONS, REGION_COLUMNS, SEQUENCE, SIGNAL_COLUMN, SIGNAL_FORM, SIGNAL_SD_COLUMN } from './relaxation/signalColumns'
 import { signalProblems, timeProblems, type SignalWords } from './relaxation/signalProblems'
 import { tubeSetProblems } from './relaxation/tubeSet'
@@ -41,6 +42,7 @@ export const relaxT1Ll = defineMeasurement(signalKind({
   models: [{ id: 'lookLocker' }],
   defaultModel: () => 'lookLocker',
   checkTubes: (tubes, conditions) => [...tubeSetProblems(tubes), ...tubes.flatMap(tube => signalProblems(tube, conditions, WORDS)), ...timeProblems(tubes, WORDS)],
+  propose: proposeRecovery,
   words: {
     token: 't1', tube: { x: { label: 'Time after inversion', unit: 's' }, y: { label: 'Signal', unit: 'au' } }, rate: { label: 'R_1', unit: 's^-1' },
     caption: 'Where the signals are magnitudes, their signs are restored.',

@@ -2,6 +2,7 @@ import { SATURATION_FLAGS } from '../science/relaxometry/tubeFlags'
 import { SAMPLE_CONDITIONS } from './relaxation/conditions'
 import { TUBE_COLUMNS } from './relaxation/columns'
 import { signalKind } from './relaxation/kinds'
+import { proposeRecovery } from './relaxation/propose'
 import { NOISE_CONDITIONS, REGION_COLUMNS, SEQUENCE, SIGNAL_COLUMN, SIGNAL_FORM, SIGNAL_SD_COLUMN } from './relaxation/signalColumns'
 import { signalProblems, timeProblems, type SignalWords } from './relaxation/signalProblems'
 import { tubeSetProblems } from './relaxation/tubeSet'
@@ -44,6 +45,7 @@ export const relaxT1Sr = defineMeasurement(signalKind({
   models: [{ id: 'saturationRecovery', within: ['saturationRecoveryOffset'] }, { id: 'saturationRecoveryOffset' }],
   defaultModel: () => 'saturationRecovery',
   checkTubes: (tubes, conditions) => [...tubeSetProblems(tubes), ...tubes.flatMap(tube => signalProblems(tube, conditions, WORDS)), ...timeProblems(tubes, WORDS)],
+  propose: proposeRecovery,
   words: { token: 't1', tube: { x: { label: 'TR', unit: 's' }, y: { label: 'Signal', unit: 'au' } }, rate: { label: 'R_1', unit: 's^-1' }, caption: '' },
   signals: {
     x: 'tr_s', y: ['signal_au'], time: 't1_s', rate: { name: 'rate1_per_s', label: 'R_1' }, flags: SATURATION_FLAGS, knowsBlank: true,

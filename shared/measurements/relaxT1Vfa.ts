@@ -2,6 +2,7 @@ import { FLIP_FLAGS } from '../science/relaxometry/tubeFlags'
 import { SAMPLE_CONDITIONS } from './relaxation/conditions'
 import { TUBE_COLUMNS } from './relaxation/columns'
 import { signalKind } from './relaxation/kinds'
+import { proposeAngles } from './relaxation/propose'
 import { settingsFrom } from './relaxation/settings'
 import { NOISE_CONDITIONS, REGION_COLUMNS, SEQUENCE, SIGNAL_COLUMN, SIGNAL_SD_COLUMN } from './relaxation/signalColumns'
 import { numbersOf, signalProblems, type SignalWords } from './relaxation/signalProblems'
@@ -55,6 +56,7 @@ export const relaxT1Vfa = defineMeasurement(signalKind({
   models: [{ id: 'variableFlipAngle' }],
   defaultModel: () => 'variableFlipAngle',
   checkTubes: (tubes, conditions) => [...tubeSetProblems(tubes), ...tubes.flatMap(tube => signalProblems(tube, conditions, WORDS)), ...angleProblems(tubes)],
+  propose: proposeAngles,
   words: { token: 't1', tube: { x: { label: 'Flip angle', unit: 'rad' }, y: { label: 'Signal', unit: 'au' } }, rate: { label: 'R_1', unit: 's^-1' }, caption: '' },
   signals: {
     x: 'flip_rad', y: ['signal_au'], time: 't1_s', rate: { name: 'rate1_per_s', label: 'R_1' }, flags: FLIP_FLAGS, knowsBlank: true,

@@ -1,5 +1,6 @@
 import { ECHO_FLAGS } from '../science/relaxometry/tubeFlags'
 import { signalKind } from './relaxation/kinds'
+import { proposeEchoes } from './relaxation/propose'
 import { checkEchoTubes, ECHO_COLUMNS, ECHO_CONDITIONS, echoFlags, skippedEchoes } from './relaxation/echoForm'
 import { pixelSigma } from './relaxation/noise'
 import { optionOf } from './fitOptions'
@@ -25,6 +26,7 @@ export const relaxT2Echo = defineMeasurement(signalKind({
   defaultModel: ({ signalForm }) => signalForm === 'meanSquares' ? 'multiEchoMeanSquares' : 'multiEcho',
   options: [SKIP_ECHOES_OPTION, NOISE_OPTION],
   checkTubes: checkEchoTubes,
+  propose: proposeEchoes,
   words: { token: 't2', tube: { x: { label: 'TE', unit: 's' }, y: { label: 'Signal', unit: 'au' } }, rate: { label: 'R_2', unit: 's^-1' }, caption: '' },
   signals: {
     x: 'te_s', y: ['signal_au', 'meanSquare_au2'], time: 't2_s', rate: { name: 'rate2_per_s', label: 'R_2' }, flags: ECHO_FLAGS, knowsBlank: false,

@@ -2,7 +2,7 @@ import type { SeriesPart, UnderstoodTube } from './tabular/understood'
 
 /**
  * Parts the tubes of a file into series, one per agent and batch. A blank that names no agent is shared: every series gets a copy of it; one
- * that names an agent and no batch goes to all batches of that agent. Tubes put aside belong to none, nor do those whose
+ * that names an agent and no batch goes to all batches of that agent; a reference tube goes to all. Tubes put aside belong to none, nor do those whose
  * concentration is still open. Tube numbers stay those of the file.
  */
 export function splitSeries({ tubes }: { readonly tubes: readonly UnderstoodTube[] }): SeriesPart[] {
@@ -19,6 +19,7 @@ export function splitSeries({ tubes }: { readonly tubes: readonly UnderstoodTube
 
 function belongs(tube: UnderstoodTube, part: SeriesPart): boolean {
   if (tube.role === 'aside') return false
+  if (tube.role === 'reference') return true
   if (tube.role === 'sample') return tube.agent === part.complexCode && tube.batch === part.lot
   if (tube.agent === null) return true
   return tube.agent === part.complexCode && (tube.batch === null || tube.batch === part.lot)
@@ -27,7 +28,7 @@ function belongs(tube: UnderstoodTube, part: SeriesPart): boolean {
 function toSeriesTube(tube: UnderstoodTube): SeriesPart['tubes'][number][] {
   if (tube.conc_mM === null) return []
   return [{
-    tubeNo: tube.tubeNo, label: tube.label, role: tube.role === 'blank' ? 'blank' : 'sample', conc_mM: tube.conc_mM, concSe_mM: tube.concSe_mM,
+    tubeNo: tube.tubeNo, label: tube.label, role: tube.role === 'aside' ? 'sample' : tube.role, conc_mM: tube.conc_mM, concSe_mM: tube.concSe_mM,
     points: tube.points, key: tube.key, place: tube.place,
   }]
 }

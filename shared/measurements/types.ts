@@ -68,7 +68,8 @@ export interface PointTable {
 export interface SeriesTube {
   tubeNo: number
   label: string
-  role: 'sample' | 'blank'
+  /** reference: the tube by which the instrument is watched; fitted, and never part of the line. */
+  role: 'sample' | 'blank' | 'reference'
   conc_mM: number
   /** Standard error of this tube's own concentration (pipetting); null = not given. */
   concSe_mM: number | null
@@ -157,7 +158,7 @@ export interface SecondOpinionResult {
 export interface TubeResult {
   tubeNo: number
   label: string
-  role: 'sample' | 'blank'
+  role: 'sample' | 'blank' | 'reference'
   conc_mM: number
   /** Reason why the whole tube is left out; null = it counts. */
   excluded: string | null
@@ -202,6 +203,8 @@ export interface UploadProblem {
   message: string
   accepted: string
   severity: 'blocks' | 'asks'
+  /** Sheet of a workbook that row and column belong to; absent for text files and for problems of the form. */
+  sheet?: string
 }
 
 /**
@@ -222,6 +225,8 @@ export interface MeasurementKind {
   /** within: ids of models that contain this one as a special case; an F-test may compare it with those. */
   models: readonly { id: string, version: number, title: string, within?: readonly string[] }[]
   defaultModel: (conditions: Conditions) => string
+  /** Proposes an acquisition for tubes whose relaxation times lie between two: values of the x column in stored units, and why these. Left out: none. */
+  propose?: (expected: { shortest_s: number, longest_s: number, tr_s: number | null }) => { values: number[], why: string } | null
   /** Choices beside the model; left out: none. */
   options?: readonly FitOptionSpec[]
   /** Problems of complete tubes with their conditions, beyond single cells. */

@@ -55,7 +55,7 @@ export type FlagDto = z.output<typeof FlagDto>
 export const TubeDto = z.object({
   tubeNo: z.number(),
   label: z.string(),
-  role: z.enum(['sample', 'blank']),
+  role: z.enum(['sample', 'blank', 'reference']),
   conc_mM: z.number(),
   excluded: z.string().nullable(),
   headline: NamedQuantity.nullable(),

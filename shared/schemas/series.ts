@@ -57,7 +57,7 @@ export const SeriesDto = z.object({
   models: z.array(z.object({ id: z.string(), version: z.number(), title: z.string() })),
   defaultModel: z.string(),
   options: z.array(FitOptionDto),
-  tubes: z.array(z.object({ tubeNo: z.number(), label: z.string(), role: z.enum(['sample', 'blank']), conc_mM: z.number(), concSe_mM: z.number().nullable(), points: z.number(), place: z.string() })),
+  tubes: z.array(z.object({ tubeNo: z.number(), label: z.string(), role: z.enum(['sample', 'blank', 'reference']), conc_mM: z.number(), concSe_mM: z.number().nullable(), points: z.number(), place: z.string() })),
   inputHash: z.string(),
   /** null where the person may not see files. */
   file: z.object({ uploadId: z.string(), name: z.string(), bytes: z.number(), sha256: z.string(), uploadedBy: z.string(), uploadedAt: z.string() }).nullable(),

@@ -52,7 +52,7 @@ export const PreviewDto = z.object({
   found: z.array(z.object({ key: z.string(), value: z.union([z.number(), z.string()]), place: z.string(), text: z.string() })),
   conditions: z.record(z.string(), z.union([z.number(), z.string(), z.null()])),
   tubes: z.array(z.object({
-    tubeNo: z.number(), key: z.string(), label: z.string(), role: z.enum(['sample', 'blank', 'aside']), agent: z.string().nullable(), batch: z.string().nullable(),
+    tubeNo: z.number(), key: z.string(), label: z.string(), role: z.enum(['sample', 'blank', 'reference', 'aside']), agent: z.string().nullable(), batch: z.string().nullable(),
     conc_mM: z.number().nullable(), concSe_mM: z.number().nullable(), place: z.string(), points: z.number(),
   })),
   series: z.array(z.object({ complexCode: z.string().nullable(), lot: z.string().nullable(), tubes: z.number(), title: z.string() })),

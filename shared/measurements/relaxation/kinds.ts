@@ -9,7 +9,7 @@ import { fitSignalTubes, type SignalKind } from './signalTubes'
 import { findModel } from '../../science/models'
 import type { AnalysisInput, Flag, MeasurementKind, TubeResult } from '../types'
 
-interface SignalSpec extends Pick<MeasurementKind, 'kind' | 'version' | 'title' | 'purpose' | 'columns' | 'conditions' | 'templates' | 'defaultModel' | 'checkTubes'> {
+interface SignalSpec extends Pick<MeasurementKind, 'kind' | 'version' | 'title' | 'purpose' | 'columns' | 'conditions' | 'templates' | 'defaultModel' | 'checkTubes' | 'propose'> {
   digit: '1' | '2'
   models: readonly { id: string, within?: readonly string[] }[]
   /** Options besides the interval. */

@@ -42,7 +42,7 @@ interface Prepared { tube: SeriesTube, left: LeftOut, data: FitData, noiseSource
 interface Parts { one: Prepared, recovery: RecoveryFit, pool: PooledNoise | null, model: Model, kind: SignalKind, input: AnalysisInput, ranges: readonly BlankRange[] }
 
 /**
- * Fits every tube of a series of signals. Tubes that are left out are fitted on their own, so that they can be shown at their place and change nothing elsewhere.
+ * Fits every tube of a series of signals. Reference tubes and tubes that are left out are fitted on their own, so that they can be shown at their place and change nothing elsewhere.
  * @throws Error for a model that is not registered
  */
 export function fitSignalTubes(input: AnalysisInput, kind: SignalKind): TubeResult[] {
@@ -51,8 +51,8 @@ export function fitSignalTubes(input: AnalysisInput, kind: SignalKind): TubeResu
   const prepared = input.tubes.map(tube => prepare(tube, model, kind, input))
   const results = new Map<number, TubeResult>()
   const ranges = kind.knowsBlank ? findBlankRanges(BLANK_RANGES, blankConditions(input.conditions)) : []
-  const counted = prepared.filter(one => one.left.tube === null)
-  for (const group of [counted, ...prepared.filter(one => one.left.tube !== null).map(one => [one])]) {
+  const isApart = (one: Prepared) => one.left.tube !== null || one.tube.role === 'reference'
+  for (const group of [prepared.filter(one => !isApart(one)), ...prepared.filter(isApart).map(one => [one])]) {
     const fits = fitTubes(model, group.map(one => one.data), kind.signal(model, input.conditions), { secondOpinion: true }, k => group[k]?.options ?? {})
     group.forEach((one, k) => {
       const recovery = fits.tubes[k]

@@ -19,7 +19,7 @@ export function ratesFrom(tubes: readonly SeriesTube[], results: readonly TubeRe
   return results.flatMap((result) => {
     const tube = tubes.find(candidate => candidate.tubeNo === result.tubeNo)
     const rate = result.parameters.find(parameter => parameter.name === rateName)
-    if (tube === undefined || rate === undefined) return []
+    if (tube === undefined || rate === undefined || tube.role === 'reference') return []
     const { tubeNo, label, role, conc_mM, concSe_mM } = tube
     return [{ tubeNo, label, role, conc_mM, concSe_mM, rate_per_s: rate.value, se_per_s: rate.se, excluded: result.excluded }]
   })

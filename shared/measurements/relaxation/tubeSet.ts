@@ -5,7 +5,8 @@ import type { SeriesTube, UploadProblem } from '../types'
 export const MIN_TUBES = 3
 
 /** What keeps a set of tubes from giving a slope. */
-export function tubeSetProblems(tubes: readonly SeriesTube[]): UploadProblem[] {
+export function tubeSetProblems(all: readonly SeriesTube[]): UploadProblem[] {
+  const tubes = all.filter(tube => tube.role !== 'reference')
   const accepted = `at least ${MIN_TUBES} tubes with different concentrations, a blank among them if there is one`
   if (tubes.length < MIN_TUBES) {
     const count = tubes.length === 1 ? 'only one tube' : `only ${tubes.length} tubes`
