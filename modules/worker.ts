@@ -2,8 +2,8 @@ import { join } from 'node:path'
 import { defineNuxtModule, useLogger } from '@nuxt/kit'
 import { build } from 'esbuild'
 
-/** What the worker process consists of: source under server/, and the name beside the web server's own entry; the thread that reads workbooks serves the web process. */
-const ENTRIES = { worker: 'server/worker/main.ts', analyseThread: 'server/worker/analyseThread.ts', workbookThread: 'server/worker/workbookThread.ts' }
+/** What the worker process consists of: source under server/, and the name beside the web server's own entry; the thread that reads large files and workbooks serves the web process. */
+const ENTRIES = { worker: 'server/worker/main.ts', analyseThread: 'server/worker/analyseThread.ts', tableThread: 'server/worker/tableThread.ts' }
 
 /**
  * Bundles the worker process and its calculation thread beside the built web server: <output>/server/worker.mjs and analyseThread.mjs.

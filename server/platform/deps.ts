@@ -4,7 +4,7 @@ import type { Clock } from './clock'
 import type { Ids } from './ids'
 import type { Passwords } from './passwords'
 import type { FileStorage } from './storage'
-import type { Workbooks } from './workbooks'
+import type { TableReader } from './tableReader'
 
 /** What services reach the outside through. Passed in, never imported, so that tests and the demo loader choose clock, ids and storage. */
 export interface Deps {
@@ -13,7 +13,7 @@ export interface Deps {
   ids: Ids
   storage: FileStorage
   passwords: Passwords
-  workbooks: Workbooks
+  tables: TableReader
   /** Registered measurement kinds; tests add a toy kind. */
   kinds: Readonly<Record<string, MeasurementKind>>
   /** Public address of the web process, for links in mail. */

@@ -1,12 +1,15 @@
 import { AppError } from '../../shared/errors'
 import type { UploadDraft } from '../../shared/measurements/draft'
-import { readText } from '../../shared/measurements/tabular/readText'
-import { understandTable } from '../../shared/measurements/tabular/understand'
+import { MEASUREMENTS } from '../../shared/measurements/index'
+import { asks } from '../../shared/measurements/tabular/problem'
+import { readTable } from '../../shared/measurements/tabular/readTable'
+import type { SheetFacts } from '../../shared/measurements/tabular/tubeSheet'
 import type { Understood } from '../../shared/measurements/tabular/understood'
-import { workbookTable, type WorkbookTable } from '../../shared/measurements/workbook/toTable'
+import { isArchive } from '../../shared/measurements/workbook/readWorkbook'
 import type { MeasurementKind, UploadProblem } from '../../shared/measurements/types'
 import type { Deps } from '../platform/deps'
 import { sha256 } from '../platform/hashes'
+import { findTubeSheet, type TubeSheetRow } from '../queries/tubeSheets'
 import { findStaged, type StagedRow } from '../queries/uploads'
 import type { UploadTarget } from '../queries/uploadTargets'
 
@@ -43,28 +46,35 @@ export async function stagedBytes(deps: Pick<Deps, 'storage'>, staged: StagedRow
   return bytes
 }
 
-const NOTHING: Understood = {
-  preview: [], rowCount: 0, columnCount: 0, workbook: null, encoding: null, metadata: [], delimiter: null, decimal: 'point', headerRow: null, layout: 'long',
-  how: { delimiter: 'guessed', decimal: 'guessed', headerRow: 'guessed', layout: 'guessed' }, columns: [], looseUnits: [], found: [], conditions: {}, tubes: [], series: [],
-  problems: [], canStore: false,
-}
+interface Reading { programmeId: string, kind: MeasurementKind, draft: UploadDraft, targets: readonly UploadTarget[] }
 
-/** Reads bytes under a draft and looks its agents up: the one reading that preview shows and confirm stores. */
-export async function readUpload(deps: Pick<Deps, 'workbooks'>, bytes: Uint8Array, { kind, draft, targets }: { kind: MeasurementKind, draft: UploadDraft, targets: readonly UploadTarget[] }): Promise<Understood> {
-  const read = isArchive(bytes) ? await readSheets(deps, bytes, draft) : readText(bytes)
-  if (!read.ok) return { ...NOTHING, problems: [read.problem] }
-  const understood = { ...understandTable({ text: read.text, kind, draft }), encoding: 'encoding' in read ? read.encoding : null }
-  const unknown = understood.series.flatMap(part => targetProblem(part, targets) ?? [])
+/**
+ * Reads bytes under a draft and looks its agents up: the one reading that preview shows and confirm stores. A tube sheet that the person or the file names
+ * fills in what the file leaves open.
+ */
+export async function readUpload(deps: Pick<Deps, 'tables' | 'db'>, bytes: Uint8Array, { programmeId, kind, draft, targets }: Reading): Promise<Understood> {
+  const alone = draft.tubeSheet ? null : await readBytes(deps, bytes, { kind, draft, sheet: null })
+  const code = draft.tubeSheet === undefined ? alone?.tubeSheet ?? null : draft.tubeSheet
+  const row = code === null ? null : await findTubeSheet(deps.db, programmeId, code)
+  const understood = row === null && alone !== null ? alone : await readBytes(deps, bytes, { kind, draft, sheet: row?.body ?? null })
+  const unknown = [...understood.series.flatMap(part => targetProblem(part, targets) ?? []), ...tubeSheetProblems(code, { row, kind })]
   const problems = [...understood.problems, ...unknown]
-  return { ...understood, problems, canStore: understood.canStore && unknown.length === 0 }
+  return { ...understood, problems, canStore: understood.canStore && unknown.every(problem => problem.severity !== 'blocks') }
 }
 
-/** Workbooks are archives, and archives begin with these bytes; whether it is a workbook is seen when it is unpacked. */
-const isArchive = (bytes: Uint8Array): boolean => bytes.length > 4 && bytes[0] === 0x50 && bytes[1] === 0x4B && bytes[2] === 0x03 && bytes[3] === 0x04
+/** Up to this size a text is read at once: it takes a few milliseconds, and a thread would take longer to begin. */
+const SMALL_BYTES = 64 * 1024
 
-async function readSheets({ workbooks }: Pick<Deps, 'workbooks'>, bytes: Uint8Array, draft: UploadDraft): Promise<{ ok: true, text: WorkbookTable } | { ok: false, problem: UploadProblem }> {
-  const read = await workbooks.read(bytes)
-  return read.ok ? { ok: true, text: workbookTable(read.sheets, draft.sheet) } : read
+/** A thread knows the registered kinds; one that only a test knows is read here. */
+function readBytes({ tables }: Pick<Deps, 'tables'>, bytes: Uint8Array, { kind, draft, sheet }: { kind: MeasurementKind, draft: UploadDraft, sheet: SheetFacts | null }): Promise<Understood> {
+  const isSmall = bytes.length <= SMALL_BYTES && !isArchive(bytes)
+  return isSmall || MEASUREMENTS[kind.kind] !== kind ? readTable(bytes, { kind, draft, sheet }) : tables.read({ bytes, kind: kind.kind, draft, sheet })
+}
+
+function tubeSheetProblems(code: string | null, { row, kind }: { row: TubeSheetRow | null, kind: MeasurementKind }): UploadProblem[] {
+  if (code === null) return []
+  if (row === null) return [asks('unknownTubeSheet', `The programme has no tube sheet ${code}.`, 'a tube sheet of this programme, or none', { field: 'tubeSheet' })]
+  return row.kind === kind.kind ? [] : [asks('otherKind', `Tube sheet ${code} was made for another measurement (${row.kind}); its tubes are used all the same.`, 'the measurement that the sheet was made for, or another sheet', { field: 'tubeSheet' })]
 }
 
 /** Where the programme has no such agent, or the agent no such batch. What is not named at all is a problem of the table already. */

@@ -5,7 +5,7 @@ import type { Deps } from '../platform/deps'
 import { randomIds } from '../platform/ids'
 import { scryptPasswords } from '../platform/passwords'
 import { folderStorage } from '../platform/storage'
-import { threadWorkbooks } from '../platform/workbooks'
+import { threadReader } from '../platform/tableReader'
 
 let deps: Deps | undefined
 
@@ -17,7 +17,7 @@ export function useDeps(): Deps {
     ids: randomIds,
     storage: folderStorage(setting('LANTHORN_STORAGE')),
     passwords: scryptPasswords(),
-    workbooks: threadWorkbooks(),
+    tables: threadReader(),
     kinds: MEASUREMENTS,
     origin: process.env.LANTHORN_ORIGIN ?? `http://${process.env.HOST ?? '127.0.0.1'}:${process.env.PORT ?? '3000'}`,
   }

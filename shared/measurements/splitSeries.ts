@@ -1,7 +1,7 @@
 import type { SeriesPart, UnderstoodTube } from './tabular/understood'
 
 /**
- * Parts the tubes of a file into series, one per agent and batch. A blank that names no agent is shared: every series gets a copy of it; one
+ * Parts the tubes of a file into series, one per agent and batch. A blank or a reference tube that names no agent is shared: every series gets a copy of it; one
  * that names an agent and no batch goes to all batches of that agent; a reference tube goes to all. Tubes put aside belong to none, nor do those whose
  * concentration is still open. Tube numbers stay those of the file.
  */

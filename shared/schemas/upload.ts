@@ -25,6 +25,8 @@ export const ConfirmRequest = z.strictObject({ draft: UploadDraft })
 
 export const UploadProblemDto = z.object({
   id: z.string(), row: z.number().nullable(), column: z.number().nullable(), field: z.string().nullable(), message: z.string(), accepted: z.string(), severity: z.enum(['blocks', 'asks']),
+  /** Sheet of a workbook that row and column belong to. */
+  sheet: z.string().optional(),
 })
 export type UploadProblemDto = z.output<typeof UploadProblemDto>
 
@@ -38,6 +40,8 @@ export const PreviewDto = z.object({
   rowCount: z.number(),
   columnCount: z.number(),
   metadata: z.array(z.object({ row: z.number(), key: z.string().nullable(), value: z.string(), place: z.string() })),
+  /** Code of the tube sheet that the file names. */
+  tubeSheet: z.string().nullable(),
   workbook: z.object({ sheet: z.string(), sheets: z.array(z.string()) }).nullable(),
   encoding: z.string().nullable(),
   delimiter: z.string().nullable(),

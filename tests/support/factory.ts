@@ -7,7 +7,7 @@ import { openDatabase } from '../../server/platform/database'
 import { randomIds, toBinary } from '../../server/platform/ids'
 import type { OutgoingMail } from '../../server/platform/mailer'
 import { scryptPasswords } from '../../server/platform/passwords'
-import { threadWorkbooks } from '../../server/platform/workbooks'
+import { threadReader } from '../../server/platform/tableReader'
 import { memoryStorage } from '../../server/platform/storage'
 import { membershipsOf, writeRoles } from '../../server/queries/people'
 import { MEASUREMENTS } from '../../shared/measurements/index'
@@ -26,7 +26,7 @@ export function makeDeps(overrides: Partial<WorkerDeps> = {}): TestDeps {
   const sent: OutgoingMail[] = []
   const kinds = overrides.kinds ?? MEASUREMENTS
   return {
-    db, clock: fixedClock(TEST_START), ids: randomIds, storage: memoryStorage(), passwords: scryptPasswords(1024), workbooks: threadWorkbooks(), kinds, origin: 'http://127.0.0.1:3000',
+    db, clock: fixedClock(TEST_START), ids: randomIds, storage: memoryStorage(), passwords: scryptPasswords(1024), tables: threadReader(), kinds, origin: 'http://127.0.0.1:3000',
     mailer: { send: async (mail) => { sent.push(mail); return `<${mail.id}@test>` }, close: () => undefined },
     analyse: async (input) => {
       const kind = kinds[input.kind]

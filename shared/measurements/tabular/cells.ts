@@ -1,7 +1,8 @@
 import { toStored, type Unit } from '../../science/units'
 import type { ColumnSpec, UploadProblem } from '../types'
+import { readWithUnit } from './cellUnit'
 import { parseNumberCell, type DecimalMark, type NumberCell } from './numberCell'
-import { blocks, quoted } from './problem'
+import { blocks, note, quoted } from './problem'
 
 /** A cell that should hold a number, with its place in the file. */
 export interface ValueCell {
@@ -15,16 +16,21 @@ export interface ValueCell {
 
 /** Reads a cell into the stored unit; null where it is empty, unreadable (with a problem) or of unknown unit. */
 export function readCell(cell: ValueCell, decimal: DecimalMark, problems: UploadProblem[]): number | null {
-  const parsed = parseNumberCell(cell.text, decimal)
-  if (!parsed.ok) {
-    if (parsed.reason !== 'empty') problems.push(numberProblem(cell, parsed, decimal))
-    return null
-  }
-  if (cell.unit === null) return null
-  const value = toStored(parsed.value, cell.unit)
+  const value = storedValue(cell, decimal, problems)
+  if (value === null) return null
   const outside = domainProblem(cell, value)
   if (outside === null) return value
-  problems.push(outside)
+  note(problems, outside)
+  return null
+}
+
+/** A unit in the cell itself counts for that cell, whatever the head says. */
+function storedValue(cell: ValueCell, decimal: DecimalMark, problems: UploadProblem[]): number | null {
+  const parsed = parseNumberCell(cell.text, decimal)
+  if (parsed.ok) return cell.unit === null ? null : toStored(parsed.value, cell.unit)
+  const measured = readWithUnit(cell.text, cell.spec, decimal)
+  if (measured !== null) return toStored(measured.value, measured.unit)
+  if (parsed.reason !== 'empty') note(problems, numberProblem(cell, parsed, decimal))
   return null
 }
 

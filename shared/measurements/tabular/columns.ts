@@ -1,6 +1,7 @@
 import { storedUnit, type Unit } from '../../science/units'
 import type { UploadDraft } from '../draft'
 import type { ColumnSpec, MeasurementKind, UploadProblem } from '../types'
+import { readWithUnit } from './cellUnit'
 import { findUnit, type HeaderMatch } from './headerText'
 import { matchHeaders, specsOf, type Layout } from './layout'
 import { columnLetter } from './place'
@@ -24,6 +25,7 @@ export interface ReadColumn {
 interface Input {
   kind: MeasurementKind
   header: TableRecord | null
+  body: readonly TableRecord[]
   /** A row of units beneath the head. */
   unitRow: TableRecord | null
   width: number
@@ -67,13 +69,20 @@ function matchesRole({ header, kind }: Input, role: ColumnSpec['role']): boolean
   return header !== null && matchHeaders(header.cells, kind.columns).some(match => match?.spec.role === role)
 }
 
-function withUnits(column: ReadColumn, columns: readonly ReadColumn[], { draft, unitRow }: Input): ReadColumn {
+function withUnits(column: ReadColumn, columns: readonly ReadColumn[], { draft, unitRow, body }: Input): ReadColumn {
   const { spec } = column
   if (spec === null || spec.dimension === 'text') return { ...column, unit: null }
   const chosen = draft.columns?.find(candidate => candidate.index === column.index)?.unit ?? null
   if (chosen !== null) return { ...column, unit: findUnit(chosen, spec.dimension) }
   const below = unitRow === null ? null : findUnit(unitRow.cells[column.index] ?? '', spec.dimension)
-  return { ...column, unit: column.unit ?? below ?? followedUnit(spec, columns) ?? unitlessUnit(spec) }
+  return { ...column, unit: column.unit ?? below ?? followedUnit(spec, columns) ?? unitlessUnit(spec) ?? unitInCells(column.index, spec, body) }
+}
+
+/** The unit that every filled cell looked at carries itself; each is read in its own. */
+function unitInCells(index: number, spec: ColumnSpec, body: readonly TableRecord[]): Unit | null {
+  const cells = body.slice(0, 50).map(record => record.cells[index] ?? '').filter(cell => cell !== '')
+  const units = cells.map(cell => (readWithUnit(cell, spec, 'point') ?? readWithUnit(cell, spec, 'comma'))?.unit ?? null)
+  return units.every(unit => unit !== null) ? units[0] ?? null : null
 }
 
 /** An error without a unit of its own is in the unit of the column it belongs to. */

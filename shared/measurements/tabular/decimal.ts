@@ -17,7 +17,7 @@ export function sniffDecimal(records: readonly TableRecord[]): DecimalGuess {
   let example: DecimalGuess['example'] = null
   for (const record of records) {
     record.cells.forEach((cell, index) => {
-      if (!/[.,]/.test(cell)) return
+      if (record.isNumber?.[index] || cell.length > 40 || !/[.,]/.test(cell)) return
       if (parseNumberCell(cell, 'point').ok) points++
       else if (parseNumberCell(cell, 'comma').ok) {
         commas++

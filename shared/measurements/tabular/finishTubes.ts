@@ -5,9 +5,10 @@ import type { How } from './columns'
 import { specsOf } from './layout'
 import { UPLOAD_LIMITS } from './limits'
 import { parseLooseNumber, type DecimalMark } from './numberCell'
-import { asks, blocks, quoted } from './problem'
+import { asks, blocks, note, quoted } from './problem'
 import type { RawPoint, RawTube } from './rawTube'
 import { isBlankName, readNames, readTubeLabel, type LabelGuess } from './tubeLabel'
+import { onSheet, type SheetFacts, type SheetTube } from './tubeSheet'
 import type { UnderstoodTube } from './understood'
 
 export interface FinishInput {
@@ -17,6 +18,7 @@ export interface FinishInput {
   /** Agent and batch that a line above the table names for all tubes. */
   named: { agent: string | null, batch: string | null }
   problems: UploadProblem[]
+  sheet: SheetFacts | null
 }
 
 /** Reads the numbers of every tube and settles name, role, concentration and agent: the person's choice, then the file, then the tube's name. */
@@ -36,18 +38,19 @@ function finishTube(raw: RawTube, index: number, bare: ReadonlyMap<string, numbe
   const label = choice?.label || raw.label || nameFor(raw, index)
   checkLabel(label, raw, problems)
   const guess = readTubeLabel(raw.label)
-  const conc = settleConcentration(raw, choice, bare.get(raw.key) ?? guess.conc_mM, input)
-  const role = choice?.role ?? guessRole(raw, guess, conc.value)
-  const agent = settleAgent(raw, role, guess, choice, input)
+  const planned = onSheet(raw.label, input.sheet)
+  const conc = settleConcentration(raw, choice, guess.conc_mM ?? planned?.conc_mM ?? bare.get(raw.key) ?? null, input)
+  const role = choice?.role ?? guessRole(raw, guess, { conc_mM: conc.value, planned })
+  const agent = settleAgent(raw, { role, guess, choice, planned }, input)
   const { table, places } = readPoints(raw, input)
   const tube: UnderstoodTube = {
     tubeNo: index + 1, key: raw.key, label, role, agent: agent.agent, batch: agent.batch,
-    conc_mM: role === 'blank' ? conc.value ?? 0 : conc.value,
-    concSe_mM: choice?.concSe_mM !== undefined ? choice.concSe_mM : raw.concSe ? readCell(raw.concSe, input.decimal, problems) : guess.concSe_mM,
+    conc_mM: role === 'blank' || role === 'reference' ? conc.value ?? 0 : conc.value,
+    concSe_mM: choice?.concSe_mM !== undefined ? choice.concSe_mM : raw.concSe ? readCell(raw.concSe, input.decimal, problems) : guess.concSe_mM ?? plannedError(planned, conc.value),
     how: { role: choice?.role === undefined ? 'guessed' : 'chosen', agent: agent.how, conc: conc.how },
     place: raw.place, points: table, pointPlaces: places,
   }
-  problems.push(...tubeProblems(tube, raw))
+  note(problems, ...tubeProblems(tube, raw))
   return tube
 }
 
@@ -80,19 +83,28 @@ function settleConcentration(raw: RawTube, choice: TubeDraft | undefined, guess:
   return { value: guess, how: 'guessed' }
 }
 
-function guessRole(raw: RawTube, guess: LabelGuess, conc_mM: number | null): 'sample' | 'blank' {
+/** The error on a tube sheet belongs to the concentration on it, not to another one that the file has. */
+function plannedError(planned: SheetTube | null, conc_mM: number | null): number | null {
+  return planned !== null && planned.conc_mM === conc_mM ? planned.concSe_mM : null
+}
+
+function guessRole(raw: RawTube, guess: LabelGuess, { conc_mM, planned }: { conc_mM: number | null, planned: SheetTube | null }): Exclude<UnderstoodTube['role'], 'aside'> {
   if (conc_mM === 0 || (raw.agent !== null && isBlankName(raw.agent.text))) return 'blank'
+  if (planned !== null && (raw.conc === null || raw.conc.text === '')) return planned.role
   return conc_mM === null || guess.conc_mM !== null ? guess.role : 'sample'
 }
 
 type Owner = { agent: string | null, batch: string | null, how: How }
 
+interface Known { role: UnderstoodTube['role'], guess: LabelGuess, choice: TubeDraft | undefined, planned: SheetTube | null }
+
 /** A blank belongs to one agent only where the file or the person says so; otherwise all agents share it. */
-function settleAgent(raw: RawTube, role: UnderstoodTube['role'], guess: LabelGuess, choice: TubeDraft | undefined, { draft, named }: FinishInput): Owner {
+function settleAgent(raw: RawTube, { role, guess, choice, planned }: Known, { draft, named }: FinishInput): Owner {
   const inFile = { agent: raw.agent && !isBlankName(raw.agent.text) && /\w/.test(raw.agent.text) ? raw.agent.text : null, batch: raw.batch && /\w/.test(raw.batch.text) ? raw.batch.text : null }
-  const fromLabel = role === 'blank' ? { agent: null, batch: null } : guess.agent !== null ? guess : sampleName(raw)
-  const standard = role === 'blank' ? { agent: null, batch: null } : { agent: draft.complexCode ?? null, batch: draft.lot ?? null }
-  const lines = role === 'blank' ? { agent: null, batch: null } : named
+  const isShared = role === 'blank' || role === 'reference'
+  const fromLabel = isShared ? { agent: null, batch: null } : guess.agent !== null ? guess : planned !== null ? { agent: planned.agent, batch: planned.lot } : sampleName(raw)
+  const standard = isShared ? { agent: null, batch: null } : { agent: draft.complexCode ?? null, batch: draft.lot ?? null }
+  const lines = isShared ? { agent: null, batch: null } : named
   const agent = choice?.complexCode !== undefined ? choice.complexCode : inFile.agent ?? standard.agent ?? lines.agent ?? fromLabel.agent
   const batch = choice?.lot !== undefined ? choice.lot : inFile.batch ?? standard.batch ?? lines.batch ?? fromLabel.batch
   const how: How = choice?.complexCode !== undefined || (inFile.agent === null && standard.agent !== null) ? 'chosen' : inFile.agent ?? lines.agent ? 'from the header' : 'guessed'
@@ -137,10 +149,10 @@ function readPoint(point: RawPoint, hasSigma: boolean, { kind, decimal, problems
   if (point.x === null && specsOf(kind, 'x').length > 0) return null
   if (point.y.text === '' && (point.x === null || point.x.text === '')) return null
   if (point.y.text === '') {
-    problems.push(asks('emptyValue', `${point.y.spec.label}: the cell is empty, so the row is no point.`, 'a number, or the row as it is: not measured', { row: point.y.row, column: point.y.column }))
+    note(problems, asks('emptyValue', `${point.y.spec.label}: the cell is empty, so the row is no point.`, 'a number, or the row as it is: not measured', { row: point.y.row, column: point.y.column }))
     return null
   }
-  if (point.x?.text === '') problems.push(blocks('emptyX', `${point.x.spec.label}: the cell is empty.`, 'a number in every row that has a value', { row: point.x.row, column: point.x.column }))
+  if (point.x?.text === '') note(problems, blocks('emptyX', `${point.x.spec.label}: the cell is empty.`, 'a number in every row that has a value', { row: point.x.row, column: point.x.column }))
   const read = (cell: ValueCell | null) => cell === null ? null : readCell(cell, decimal, problems)
   const x = read(point.x)
   const y = read(point.y)

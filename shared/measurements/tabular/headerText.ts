@@ -1,5 +1,6 @@
 import { parseUnit, type Dimension, type Unit } from '../../science/units'
 import type { ColumnSpec } from '../types'
+import { UPLOAD_LIMITS } from './limits'
 
 /** What a head says: which column, and in which unit. */
 export interface HeaderMatch {
@@ -27,6 +28,7 @@ export function plainWords(text: string): string {
 
 /** Every way in which a head can be split into name and unit: 'TI (ms)', 'TI [ms]', 'TI / ms', 'TI, ms', 'TI_ms', 'TI ms', 'TI'. */
 export function headerReadings(text: string): Reading[] {
+  if (text.length > UPLOAD_LIMITS.wordsLength) return [{ name: text.slice(0, UPLOAD_LIMITS.wordsLength), unit: null }]
   const head = text.trim().replace(/\s*[:=]$/, '')
   const readings: Reading[] = [{ name: head, unit: null }]
   const bracket = /^(.*?)\s*[([]\s*([^()[\]]*(?:\([^()]*\))?[^()[\]]*)\s*[)\]]\s*$/.exec(head)
@@ -62,15 +64,24 @@ export function matchHeader(text: string, specs: readonly ColumnSpec[], present:
 
 /** A head that is a substance with a unit of concentration behind it ('NiCl2 (mM)', 'Gd-DOTA / µM') is a column of concentrations. */
 function matchByUnit(text: string, specs: readonly ColumnSpec[]): HeaderMatch | null {
+  if (text.length > UPLOAD_LIMITS.wordsLength) return null
   const spec = specs.find(candidate => candidate.role === 'conc')
   const match = /^\s*([^()[\]/]*[A-Za-z][^()[\]/]*)(?:[([]([^()[\]]+)[)\]]|\s\/\s(.+))\s*$/.exec(text)
   const unit = spec && spec.dimension !== 'text' ? findUnit(match?.[2] ?? match?.[3] ?? '', spec.dimension) : null
   return spec && unit ? { spec, unit, unknownUnit: null } : null
 }
 
+// The metal whose concentration is meant: 'mM Gd', 'mM (Gd)', 'mmol Gd/L' say no other unit.
+const METAL = /(?:Gd|Dy|Eu|Tb|Yb|Ho|Er|Tm|Pr|Nd|Sm|La|Lu|Ln|Mn|Fe|Ni|Cu|metal)(?:\s?\(?I{2,3}\)?|\s?[23]\+|³⁺|²⁺)?/
+
 export function findUnit(text: string, dimension: Dimension): Unit | null {
+  if (text.length > UPLOAD_LIMITS.wordsLength) return null
   const parsed = parseUnit(text, dimension)
-  return parsed.ok ? parsed.unit : null
+  if (parsed.ok) return parsed.unit
+  const bare = text.trim().replace(/^[([]\s*(.*?)\s*[)\]]$/, '$1').replace(/([a-z]{2,})\.$/i, '$1')
+  const plain = dimension === 'concentration' ? bare.replace(new RegExp(`\\s*(?:of\\s)?[([]?${METAL.source}[)\\]]?\\s*(?=$|/)`), '').trim() : bare
+  const again = plain === text ? parsed : parseUnit(plain, dimension)
+  return again.ok ? again.unit : null
 }
 
 function rank(spec: ColumnSpec, present: readonly string[]): number {

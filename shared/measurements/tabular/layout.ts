@@ -1,5 +1,6 @@
 import type { ColumnSpec, MeasurementKind } from '../types'
 import { findUnit, matchHeader, plainWords, type HeaderMatch } from './headerText'
+import { looksMeasured } from './cellUnit'
 import { parseNumberCell, type DecimalMark } from './numberCell'
 import { filledCells, isBlank, type TableRecord } from './records'
 import type { Unit } from '../../science/units'
@@ -13,6 +14,7 @@ export interface HeadNumber { text: string, unit: Unit | null, unitText: string 
 
 /** Reads a head that is a value of this column, as times are where every tube has a row. */
 export function readHeadNumber(text: string, spec: ColumnSpec, decimal: DecimalMark): HeadNumber | null {
+  if (text.length > 60) return null
   const match = /^(.*?)[\s=:_]*([-+\u2212]?\d[\d.,]*(?:[eE][-+]?\d+)?)[\s_]*(\D*)$/.exec(text.trim())
   if (!match || spec.dimension === 'text') return null
   const [, words = '', number = '', unitText = ''] = match
@@ -87,5 +89,5 @@ function isTransposed({ kind, matches, header, body }: { kind: MeasurementKind, 
 
 export function numericShare(body: readonly TableRecord[], column: number, decimal: DecimalMark): number {
   const cells = body.slice(0, 50).map(record => record.cells[column] ?? '').filter(cell => cell !== '')
-  return cells.length === 0 ? 0 : cells.filter(cell => parseNumberCell(cell, decimal).ok).length / cells.length
+  return cells.length === 0 ? 0 : cells.filter(cell => parseNumberCell(cell, decimal).ok || looksMeasured(cell, decimal)).length / cells.length
 }

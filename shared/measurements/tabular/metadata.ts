@@ -77,6 +77,14 @@ export function findNamed(lines: readonly MetadataLine[], role: ColumnSpec['role
   return line?.value ?? null
 }
 
+/** Code of a tube sheet that a line names: 'Tube sheet: TS-7K3M9Q', or the code alone. */
+export function findSheetCode(lines: readonly MetadataLine[]): string | null {
+  const line = lines.find(({ key, value }) => CODE.test(value) && (key === null || ['tube sheet', 'tubesheet', 'sheet', 'tube list'].includes(plainWords(key))))
+  return line === undefined ? null : CODE.exec(line.value)?.[0].toUpperCase() ?? null
+}
+
+const CODE = /\bTS-[0-9A-Z]{4,10}\b/i
+
 interface ConditionMatch {
   spec: ConditionSpec
   /** Unit written with the key, or the stored one where the key is our own ('temperature_K'). */

@@ -5,8 +5,8 @@ export type NumberCell =
   | { ok: true, value: number }
   | { ok: false, reason: 'empty' | 'notFinite' | 'otherDecimal' | 'grouped' | 'bound' | 'text' }
 
-/** Spaces that part thousands: plain, no-break, thin, narrow no-break. */
-const GROUP = '[ \\u00A0\\u2009\\u202F]'
+/** Marks that part thousands without doubt: spaces (plain, no-break, thin, narrow no-break) and apostrophes. */
+const GROUP = '[ \\u00A0\\u2009\\u202F\'\u2019]'
 const DIGITS = `\\d{1,3}(?:${GROUP}\\d{3})+|\\d+`
 const SHAPE: Record<DecimalMark, RegExp> = {
   point: new RegExp(`^([-+\\u2212]?)(?:(${DIGITS})(?:\\.(\\d*))?|\\.(\\d+))(?:[eE]([-+\\u2212]?\\d{1,4}))?$`),

@@ -19,6 +19,14 @@ export function asks(id: string, message: string, accepted: string, where: Where
   return { ...blocks(id, message, accepted, where), severity: 'asks' }
 }
 
+/** Adds a problem. Beyond the limit the last place is kept for one that blocks, so that a file full of faults costs no more and still cannot be stored. */
+export function note(problems: UploadProblem[], ...found: readonly UploadProblem[]): void {
+  for (const problem of found) {
+    if (problems.length < UPLOAD_LIMITS.keptProblems) problems.push(problem)
+    else if (problem.severity === 'blocks' && problems.at(-1)?.severity !== 'blocks') problems[problems.length - 1] = problem
+  }
+}
+
 /** Each problem once, those of the form and the whole file first, then as the file reads; beyond the limit only their number. */
 export function listProblems(problems: readonly UploadProblem[]): UploadProblem[] {
   const once = new Map(problems.map(problem => [JSON.stringify([problem.id, problem.row, problem.column, problem.field, problem.message]), problem]))
@@ -29,7 +37,7 @@ export function listProblems(problems: readonly UploadProblem[]): UploadProblem[
   const rest = ordered.slice(UPLOAD_LIMITS.listedProblems)
   if (rest.length === 0) return ordered
   const severity = rest.some(problem => problem.severity === 'blocks') ? blocks : asks
-  const more = severity('more', `${rest.length} more problems of this file are not listed.`, 'the problems above put right first; the list is made anew each time')
+  const more = severity('more', `${problems.length >= UPLOAD_LIMITS.keptProblems ? 'At least ' : ''}${rest.length} more problems of this file are not listed.`, 'the problems above put right first; the list is made anew each time')
   return [...ordered.slice(0, UPLOAD_LIMITS.listedProblems), more]
 }
 

@@ -8,12 +8,12 @@ export type TextRead =
   | { ok: true, text: string, encoding: Encoding }
   | { ok: false, problem: UploadProblem }
 
-const ACCEPTED = 'a text table (CSV or TSV) with commas, semicolons or tabs between columns, in UTF-8'
+const ACCEPTED = 'a text table (CSV or TSV) with commas, semicolons or tabs between columns, or an XLSX workbook'
 
 /** First bytes that betray a file which is no text, with the words for it. */
 const SIGNATURES: readonly { bytes: readonly number[], what: string }[] = [
   { bytes: [0x50, 0x4B, 0x03, 0x04], what: 'a spreadsheet workbook or another packed archive' },
-  { bytes: [0xD0, 0xCF, 0x11, 0xE0], what: 'an old office document' },
+  { bytes: [0xD0, 0xCF, 0x11, 0xE0], what: 'an old office document, or a workbook with a password' },
   { bytes: [0x25, 0x50, 0x44, 0x46], what: 'a PDF document' },
   { bytes: [0x89, 0x50, 0x4E, 0x47], what: 'a PNG picture' },
   { bytes: [0xFF, 0xD8, 0xFF], what: 'a JPEG picture' },
@@ -23,7 +23,7 @@ const SIGNATURES: readonly { bytes: readonly number[], what: string }[] = [
 /**
  * Decodes the bytes of an upload.
  *
- * UTF-8 with or without byte-order mark; UTF-16 with one; text that is no UTF-8 and holds no control characters is taken for the
+ * UTF-8 and UTF-16, each with or without byte-order mark; text that is no UTF-8 and holds no control characters is taken for the
  * Windows western code page, in which ° and µ are single bytes. Line ends become \n. Anything else is refused with a reason.
  */
 export function readText(bytes: Uint8Array): TextRead {
@@ -47,12 +47,22 @@ function refuse(id: string, message: string, accepted: string): TextRead {
 }
 
 function decode(bytes: Uint8Array): { text: string, encoding: Encoding } | null {
-  const encoding: Encoding = bytes[0] === 0xFF && bytes[1] === 0xFE ? 'utf-16le' : bytes[0] === 0xFE && bytes[1] === 0xFF ? 'utf-16be' : 'utf-8'
+  const encoding: Encoding = bytes[0] === 0xFF && bytes[1] === 0xFE ? 'utf-16le' : bytes[0] === 0xFE && bytes[1] === 0xFF ? 'utf-16be' : unmarkedWide(bytes) ?? 'utf-8'
   const text = tryDecode(bytes, encoding)
   if (text !== null) return { text, encoding }
   if (encoding !== 'utf-8') return null
   const western = tryDecode(bytes, 'windows-1252')
   return western === null ? null : { text: western, encoding: 'windows-1252' }
+}
+
+/** UTF-16 without its mark: Latin text has a zero in every second byte, and on one side only. */
+function unmarkedWide(bytes: Uint8Array): Encoding | null {
+  const head = bytes.subarray(0, 2000)
+  if (bytes.length % 2 !== 0 || head.length < 8) return null
+  let [even, odd] = [0, 0]
+  head.forEach((byte, index) => { if (byte === 0) { if (index % 2 === 0) even++; else odd++ } })
+  const most = head.length / 2 * 0.7
+  return odd >= most && even === 0 ? 'utf-16le' : even >= most && odd === 0 ? 'utf-16be' : null
 }
 
 /** null where the bytes are not of this encoding: the decoder has no other way to say so than to throw. */

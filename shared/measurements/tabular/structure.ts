@@ -4,9 +4,11 @@ import type { MeasurementKind, UploadProblem } from '../types'
 import { unitlessUnit } from './columns'
 import { findUnit, matchHeader } from './headerText'
 import { findHeader, guessLayout, matchHeaders, specsOf, type Layout } from './layout'
+import { UPLOAD_LIMITS } from './limits'
 import { parseNumberCell, type DecimalMark } from './numberCell'
 import { blocks } from './problem'
 import { filledCells, isBlank, type TableRecord } from './records'
+import { partTail } from './tail'
 import type { AttributeRow } from './wideTubes'
 
 /** The parts of a table: lines above it, its head, rows that say something of every tube, and the rows of values. */
@@ -15,6 +17,8 @@ export interface TableStructure {
   unitRow: TableRecord | null
   attributes: AttributeRow[]
   body: TableRecord[]
+  /** Rows of sums and means beneath the values. */
+  summaries: TableRecord[]
   /** Lines that are not part of the table. */
   around: TableRecord[]
   width: number
@@ -49,11 +53,13 @@ export function findStructure(input: StructureInput): TableStructure {
     ? partAttributes({ above: records.slice(0, start), header, below, isTransposed }, input)
     : { attributes: [], body: below, around: records.slice(0, start) }
   const unitRow = isTransposed ? null : findUnitRow(parted.body[0], kind)
+  const width = lastFilled([...(header ? [header] : []), ...parted.attributes.map(attribute => attribute.record), ...(header ? [] : parted.body.slice(0, 50))])
+  const tail = partTail(unitRow === null ? parted.body : parted.body.slice(1), { width, decimal })
   return {
     header: isTransposed ? null : header, unitRow, layout, isTransposed, attributes: parted.attributes,
-    body: unitRow === null ? parted.body : parted.body.slice(1),
-    around: [...comments, ...parted.around].sort((a, b) => a.row - b.row),
-    width: lastFilled([...(header ? [header] : []), ...parted.attributes.map(attribute => attribute.record), ...(header ? [] : parted.body.slice(0, 50))]),
+    body: tail.body, summaries: tail.summaries,
+    around: [...comments, ...parted.around, ...tail.remarks].sort((a, b) => a.row - b.row),
+    width,
   }
 }
 
@@ -133,9 +139,8 @@ function findUnitRow(record: TableRecord | undefined, kind: MeasurementKind): Ta
 /** Rows that hold more than the head has room for: most often a decimal comma that was taken for the mark between columns. */
 export function widthProblems({ body, width, header }: TableStructure): UploadProblem[] {
   if (header === null) return []
-  return body.flatMap((record) => {
+  return body.filter(record => record.cells.findLastIndex(cell => cell !== '') >= width).slice(0, UPLOAD_LIMITS.keptProblems).flatMap((record) => {
     const last = record.cells.findLastIndex(cell => cell !== '')
-    if (last < width) return []
     return [blocks('extraCells', `The row has ${last + 1} cells, the head only ${width}.`,
       'as many cells as the head has; with decimal commas, semicolons or tabs between columns', { row: record.row, column: width + 1 })]
   })

@@ -1,5 +1,6 @@
 import { toStored } from '../../science/units'
 import { findUnit, plainWords } from './headerText'
+import { UPLOAD_LIMITS } from './limits'
 import { parseLooseNumber } from './numberCell'
 
 /** What a tube's name suggests; null where it says nothing. */
@@ -16,7 +17,8 @@ const FILLER = /\b(?:tube|vial|sample|probe|nr|no|number|conc|concentration|c|si
 const AMOUNT = /([-+\u2212]?\d+(?:[.,]\d+)?(?:[eE][-+]?\d+)?)\s*(?:±\s*(\d+(?:[.,]\d+)?)\s*)?([mµ\u03BCun]?M(?![A-Za-z\d-])|[mµ\u03BCun]?mol\s?\/\s?[lL]|mol\/m3)/
 
 /** Reads role, concentration, agent and batch out of a tube's name: 'SK-07 0.50 mM', 'blank', '0,5 ± 0,01 mM', 'Gd-DOTA lot 3 250 µM'. */
-export function readTubeLabel(label: string): LabelGuess {
+export function readTubeLabel(full: string): LabelGuess {
+  const label = full.slice(0, UPLOAD_LIMITS.wordsLength)
   const amount = AMOUNT.exec(label.replaceAll('_', ' '))
   const conc_mM = amount ? inMillimolar(amount[1], amount[3]) : null
   const concSe_mM = amount?.[2] === undefined ? null : inMillimolar(amount[2], amount[3])
@@ -27,7 +29,7 @@ export function readTubeLabel(label: string): LabelGuess {
 }
 
 export function isBlankName(text: string): boolean {
-  const words = plainWords(text.replace(FILLER, ' ').replace(/[()[\],;:=/]/g, ' '))
+  const words = plainWords(text.slice(0, UPLOAD_LIMITS.wordsLength).replace(FILLER, ' ').replace(/[()[\],;:=/]/g, ' '))
   return BLANK_WORDS.includes(words.replace(/\s*\d+$/, ''))
 }
 
@@ -38,7 +40,8 @@ function inMillimolar(number: string | undefined, unitText: string | undefined):
 }
 
 /** What stands beside an amount is the agent's name, unless it only counts tubes ('tube 3', 'T3', '7'). */
-export function readNames(rest: string): { agent: string | null, batch: string | null } {
+export function readNames(name: string): { agent: string | null, batch: string | null } {
+  const rest = name.slice(0, UPLOAD_LIMITS.wordsLength)
   const lot = /\b(?:lot|batch)\b[\s:#]*(\S+)/i.exec(rest)
   const words = (lot ? rest.replace(lot[0], ' ') : rest).replace(FILLER, ' ').split(/[\s,;:=|()[\]]+/).filter(word => word !== '')
   const [agent, batch] = words

@@ -29,7 +29,7 @@ export interface UnderstoodTube {
   tubeNo: number
   key: string
   label: string
-  role: 'sample' | 'blank' | 'aside'
+  role: 'sample' | 'blank' | 'reference' | 'aside'
   /** As the file or the person names them; null = not named, or a blank that all agents share. */
   agent: string | null
   batch: string | null
@@ -50,6 +50,8 @@ export interface SeriesPart {
 }
 
 export interface Understood {
+  /** Code of the tube sheet that the file names. */
+  tubeSheet: string | null
   preview: { row: number, cells: string[] }[]
   rowCount: number
   columnCount: number

@@ -4,6 +4,7 @@ import type { ValueCell } from './cells'
 import { unitlessUnit, type ReadColumn } from './columns'
 import type { HeaderMatch } from './headerText'
 import { readHeadNumber, specsOf } from './layout'
+import { UPLOAD_LIMITS } from './limits'
 import type { DecimalMark } from './numberCell'
 import { columnLetter, rowsText } from './place'
 import type { NamedCell, RawPoint, RawTube } from './rawTube'
@@ -34,6 +35,7 @@ export function columnTubes({ columns, header, attributes, body }: ColumnInput):
 }
 
 function errorOwner(header: string): string | null {
+  if (header.length > UPLOAD_LIMITS.wordsLength) return null
   const match = /^(?:(?:sd|se|sem|std|error|±)[\s_:]+(.+)|(.+?)[\s_,(]+(?:sd|se|sem|std|error|±)\)?)$/i.exec(header.trim())
   return (match?.[1] ?? match?.[2])?.trim().toLowerCase() ?? null
 }

@@ -1,11 +1,10 @@
-/** What a workbook may be when its entries are unpacked. A table of the largest size allowed stays far below. */
-export const WORKBOOK_LIMITS = {
-  entries: 2000,
-  /** Bytes of one entry, and of all that are unpacked. */
-  entryBytes: 64 * 1024 * 1024,
-  totalBytes: 128 * 1024 * 1024,
-  /** Unpacked over packed size of an entry above 1 MB. */
-  ratio: 400,
+/** What a workbook may be at most once it is inflated: checked before a byte of it is read as a sheet. */
+export const ARCHIVE_LIMITS = {
+  entries: 2_000,
+  entryBytes: 48 * 1024 * 1024,
+  totalBytes: 80 * 1024 * 1024,
+  /** Inflated over packed, for entries above 1 MB: sheets reach 20 to 40. */
+  ratio: 250,
   sheets: 60,
-  seconds: 10,
+  nameLength: 300,
 } as const
