@@ -77,6 +77,8 @@ describe('versions of a fit', () => {
     ['the same point twice', { exclusions: [BUBBLE, BUBBLE] }, 'exclusions.1'],
     ['to put back what is not out', { putBack: [{ tubeNo: 1, pointIndex: null }] }, 'putBack.0'],
     ['an unknown model', { modelId: 'toy.magic' }, 'modelId'],
+    ['an option that is not there', { options: { magic: 1 } }, 'options.magic'],
+    ['a choice that an option does not have', { options: { note: 'loud' } }, 'options.note'],
     ['an unknown parent', { parentVersion: 7 }, 'parentVersion'],
   ])('refuses %s, and says what it would accept', async (_, body, field) => {
     const { request, programme } = await seriesWithFit()

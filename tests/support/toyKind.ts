@@ -26,6 +26,7 @@ export const toyKind: MeasurementKind = defineMeasurement({
   templates: [{ fileName: 'glow.csv', text: 'tube,agent,batch,conc (mM),dwell (s),glow\n' }],
   models: [{ id: 'toy.mean', version: 2, title: 'Mean', within: ['toy.drift'] }, { id: 'toy.drift', version: 1, title: 'Mean and drift' }],
   defaultModel: () => 'toy.mean',
+  options: [{ key: 'note', label: 'Note', type: 'choice', standard: 'plain', help: 'Changes nothing', choices: [{ value: 'plain', label: 'plain' }, { value: 'kept', label: 'kept' }] }],
   checkTubes: tubes => tubes.length < 3 ? [{ id: 'toyFew', row: null, column: null, field: null, message: 'Fewer than three tubes.', accepted: 'three tubes', severity: 'blocks' }] : [],
   analyse,
   evidence: (outcome, input) => [{
