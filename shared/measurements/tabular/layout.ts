@@ -57,6 +57,8 @@ function headerScore(record: TableRecord, below: readonly TableRecord[], kind: M
   const other = [...roles].filter(role => role !== 'x' && role !== 'y').length
   const isLast = !below.some(next => !isBlank(next))
   if (main + other === 0 || (isLast && main === 0)) return 0
+  // 'Mean' heads a column of signals, and a row of means beneath a table of them.
+  if (isLast && numbers >= filled / 2 && specsOf(kind, 'x').length > 0) return 0
   const width = Math.max(0, ...below.map(filledCells))
   return main + other + (filled >= 0.8 * width ? 2 : 0)
 }
