@@ -36,6 +36,7 @@ export function sheetTable({ name, isHidden }: SheetPart, { scan, rows, percents
 }
 
 function limitProblem({ fault, rows, columns }: SheetScan): UploadProblem | null {
+  if (fault !== null && (fault.row < 1 || fault.column < 1)) return blocks('brokenWorkbook', 'The sheet has a cell that stands in no row or no column.', 'the workbook saved once more by a spreadsheet program, or the sheet saved as CSV')
   if (fault !== null && fault.row > UPLOAD_LIMITS.rows) return blocks('tooManyRows', `The sheet has a cell in row ${fault.row}; the limit is ${UPLOAD_LIMITS.rows}.`, 'the table in several files', { row: fault.row })
   if (fault !== null) return blocks('tooManyColumns', `The sheet has a cell in column ${fault.column}; the limit is ${UPLOAD_LIMITS.columns}.`, 'the table in several files', { row: fault.row, column: fault.column })
   return rows * columns > UPLOAD_LIMITS.cells ? blocks('tooManyCells', `The sheet spans ${rows} rows and ${columns} columns; the limit is ${UPLOAD_LIMITS.cells} cells.`, 'the table in several files') : null
