@@ -4,7 +4,7 @@ export const UPLOAD_LIMITS = {
   rows: 50_000,
   columns: 500,
   /** Cells of the read table: rows times its widest row. */
-  cells: 2_000_000,
+  cells: 600_000,
   tubes: 500,
   labelLength: 120,
   /** Characters of one cell. */

@@ -24,6 +24,8 @@ export function scanTags(xml: string, onTag: (tag: Tag) => void): void {
 }
 
 function skipTo(xml: string, open: number): number | null {
+  const sign = xml[open + 1]
+  if (sign !== '!' && sign !== '?') return null
   const end = xml.startsWith('<!--', open) ? '-->' : xml.startsWith('<![CDATA[', open) ? ']]>' : xml.startsWith('<?', open) ? '?>' : null
   if (end === null) return null
   const found = xml.indexOf(end, open)
@@ -32,12 +34,13 @@ function skipTo(xml: string, open: number): number | null {
 
 function readTag(inside: string): Omit<Tag, 'textBefore' | 'start' | 'end'> {
   const isEnd = inside.startsWith('/')
-  const isEmpty = inside.endsWith('/')
-  const body = inside.slice(isEnd ? 1 : 0, isEmpty ? -1 : undefined)
-  const cut = body.search(/\s/)
-  const full = cut < 0 ? body : body.slice(0, cut)
-  const colon = full.indexOf(':')
-  return { name: full.slice(colon + 1), prefix: full.slice(0, colon + 1), isEnd, isEmpty, attributes: cut < 0 ? '' : body.slice(cut) }
+  const isEmpty = inside.endsWith('/') && !isEnd
+  const last = isEmpty ? inside.length - 1 : inside.length
+  let cut = isEnd ? 1 : 0
+  let begin = cut
+  // Sheets have hundreds of thousands of tags: the name is found sign by sign.
+  for (; cut < last && inside.charCodeAt(cut) > 32; cut++) if (inside.charCodeAt(cut) === 58) begin = cut + 1
+  return { name: inside.slice(begin, cut), prefix: inside.slice(isEnd ? 1 : 0, begin), isEnd, isEmpty, attributes: inside.slice(cut, last) }
 }
 
 /** Value of an attribute, whatever its prefix; null where the tag has none. */
