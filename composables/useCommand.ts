@@ -31,8 +31,8 @@ export function useCommand() {
   let unanswered: { request: string, key: string } | null = null
 
   async function send<T>(url: string, { method = 'POST', body }: CommandOptions = {}): Promise<CommandAnswer<T>> {
-    const request = `${method} ${url} ${body instanceof FormData ? 'form' : JSON.stringify(body)}`
-    const key = unanswered?.request === request && !(body instanceof FormData) ? unanswered.key : v7()
+    const request = `${method} ${url} ${body instanceof FormData ? formText(body) : JSON.stringify(body)}`
+    const key = unanswered?.request === request ? unanswered.key : v7()
     unanswered = { request, key }
     isPending.value = true
     failure.value = null
@@ -65,6 +65,9 @@ export function useCommand() {
 
   return { send, isPending, failure, errorFor, errorBeside, clear: () => { failure.value = null } }
 }
+
+/** What tells one form from another: of a file its name, size and time. The server compares the bytes. */
+const formText = (form: FormData): string => [...form.entries()].map(([name, value]) => value instanceof File ? `${name} ${value.name} ${value.size} ${value.lastModified}` : `${name}=${value}`).join(', ')
 
 const MAY_HAVE_BEEN_DONE: readonly CommandFailure['code'][] = ['unreachable', 'internal']
 

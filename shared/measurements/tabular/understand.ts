@@ -71,7 +71,7 @@ export function understandSource(source: SourceTable, { kind, draft = {}, sheet 
   note(problems, ...checkConditions(kind, conditions), ...seriesProblems({ kind, series, tubes, conditions, raw }), ...sheetProblems(sheet, tubes, new Map(raw.map(tube => [tube.key, tube.label]))))
   const listed = listProblems(problems).map(problem => placedIn(problem, source))
   return {
-    ...frame(source, decimal), metadata, tubeSheet: findSheetCode(metadata) ?? source.tubeSheet, headerRow: structure.header?.row ?? null, layout: structure.layout, how: howOf(draft),
+    ...frame(source, { decimal, problems: listed }), metadata, tubeSheet: findSheetCode(metadata) ?? source.tubeSheet, headerRow: structure.header?.row ?? null, layout: structure.layout, how: howOf(draft),
     columns: describeColumns({ columns, structure, kind, decimal }), looseUnits: loose, found, conditions, tubes, series,
     problems: listed, canStore: series.length > 0 && listed.every(problem => problem.severity !== 'blocks'),
   }
@@ -98,17 +98,19 @@ function howOf(draft: UploadDraft): Understood['how'] {
   return { delimiter: how(draft.delimiter), decimal: how(draft.decimal), headerRow: how(draft.headerRow), layout: how(draft.layout) }
 }
 
-function frame({ records, delimiter, isSheet, facts }: SourceTable, decimal: DecimalMark) {
+/** First rows of the file, and those of its problems wherever they stand, so that each can be looked at. */
+function frame({ records, delimiter, isSheet, facts }: SourceTable, { decimal, problems }: { decimal: DecimalMark, problems: readonly UploadProblem[] }) {
+  const faulty = new Set(problems.map(problem => problem.row))
   const filled = records.filter((record, i) => i < records.length - 1 || record.cells.some(cell => cell !== ''))
   return {
-    ...facts, preview: filled.slice(0, UPLOAD_LIMITS.previewRows).map(record => ({ row: record.row, cells: record.cells.slice(0, UPLOAD_LIMITS.columns) })),
+    ...facts, preview: filled.filter((record, i) => i < UPLOAD_LIMITS.previewRows || faulty.has(record.row)).map(record => ({ row: record.row, cells: record.cells.slice(0, UPLOAD_LIMITS.columns) })),
     rowCount: filled.length, columnCount: filled.reduce((width, record) => Math.max(width, record.cells.length), 0), delimiter: isSheet ? null : delimiter, decimal,
   }
 }
 
 function emptyOutcome(source: SourceTable, { decimal, problems }: { decimal: DecimalMark, problems: UploadProblem[] }): Understood {
   return {
-    ...frame(source, decimal), metadata: [], tubeSheet: null, headerRow: null, layout: 'long', how: howOf({}), columns: [], looseUnits: [], found: [], conditions: {}, tubes: [], series: [],
+    ...frame(source, { decimal, problems }), metadata: [], tubeSheet: null, headerRow: null, layout: 'long', how: howOf({}), columns: [], looseUnits: [], found: [], conditions: {}, tubes: [], series: [],
     problems: listProblems(problems).map(problem => placedIn(problem, source)), canStore: false,
   }
 }

@@ -8,5 +8,5 @@ export default defineRoute({
   output: StagedUploadDto,
   // The form around the file takes a little more.
   maxBytes: UPLOAD_LIMITS.bytes + 16 * 1024,
-  run: ({ actor, programmeId, files }) => stageUpload(useDeps(), { actor, programmeId, files }),
+  run: ({ actor, programmeId, files, idempotency }) => stageUpload(useDeps(), { actor, programmeId, files, idempotency }),
 })
