@@ -62,8 +62,10 @@ const HIDDEN = /[\u200B-\u200F\u202A-\u202E\u2060-\u2069\uFEFF]/g
 /** A cell without blanks around it and without hidden marks; what was taken out or is too long is a problem at its place. */
 export function cleanCell(text: string, where: { row: number, column: number }, problems: UploadProblem[]): string {
   const trimmed = text.trim()
-  const cell = trimmed.replace(HIDDEN, '').trim()
-  if (cell !== trimmed) note(problems, asks('hiddenMarks', 'The cell holds marks that are not seen (direction of writing, no width); it is read without them.', 'the cell typed anew, or as it is read', where))
+  const plain = trimmed.replace(HIDDEN, '').trim()
+  // Exports put an apostrophe before texts that a spreadsheet would take for a formula; it is not part of the name.
+  const cell = plain.replace(/^'(?=[=+\-@])/, '')
+  if (plain !== trimmed) note(problems, asks('hiddenMarks', 'The cell holds marks that are not seen (direction of writing, no width); it is read without them.', 'the cell typed anew, or as it is read', where))
   if (cell.length > UPLOAD_LIMITS.cellLength) note(problems, blocks('longCell', `The cell has ${cell.length} characters; the limit is ${UPLOAD_LIMITS.cellLength}.`, 'a number, a name or a few words', where))
   return cell.length > UPLOAD_LIMITS.cellLength ? cell.slice(0, UPLOAD_LIMITS.cellLength) : cell
 }
