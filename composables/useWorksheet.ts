@@ -14,17 +14,17 @@ export function useWorksheet() {
   const form = reactive({
     agent: '', lot: '', basis: 'assay' as string, assay: 'icp' as string,
     mass_mg: null as number | null, massSe_mg: 0.1 as number | null, molarMass_g_per_mol: null as number | null, purity_percent: 100 as number | null, puritySe_percent: 1 as number | null,
-    water_percent: 0 as number | null, waterSe_percent: 0.5 as number | null, volume_mL: 10 as number | null, volumeSe_mL: 0.025 as number | null, stock_mM: null as number | null, stockSe_mM: null as number | null,
+    water_percent: 0 as number | null, waterSe_percent: 0.5 as number | null, volume_ml: 10 as number | null, volumeSe_ml: 0.025 as number | null, stock_mM: null as number | null, stockSe_mM: null as number | null,
     samePipette: true, calibration_percent: 0.6 as number | null, repeat_percent: 0.3 as number | null, diluentCalibration_percent: 0.6 as number | null, diluentRepeat_percent: 0.3 as number | null,
     least_uL: 10 as number | null, final_uL: 1000 as number | null,
     tubes: [{ label: 'blank', role: 'blank', wanted_mM: 0 }, ...STANDARD_mM.map((wanted_mM, i) => ({ label: `t${i + 2}`, role: 'sample', wanted_mM }))] as TubeInput[],
   })
   const stock = computed<Known | null>(() => {
     if (form.basis === 'assay') return form.stock_mM === null || form.stock_mM <= 0 ? null : { value: form.stock_mM, se: form.stockSe_mM ?? 0 }
-    const { mass_mg, molarMass_g_per_mol, volume_mL } = form
-    if (mass_mg === null || molarMass_g_per_mol === null || volume_mL === null || mass_mg <= 0) return null
+    const { mass_mg, molarMass_g_per_mol, volume_ml } = form
+    if (mass_mg === null || molarMass_g_per_mol === null || volume_ml === null || mass_mg <= 0) return null
     const made = weighedStock_mM({
-      mass_mg, massSe_mg: form.massSe_mg ?? 0, molarMass_g_per_mol, volume_mL, volumeSe_mL: form.volumeSe_mL ?? 0, purity_frac: fraction(form.purity_percent), puritySe_frac: fraction(form.puritySe_percent),
+      mass_mg, massSe_mg: form.massSe_mg ?? 0, molarMass_g_per_mol, volume_ml, volumeSe_ml: form.volumeSe_ml ?? 0, purity_frac: fraction(form.purity_percent), puritySe_frac: fraction(form.puritySe_percent),
       water_frac: fraction(form.water_percent), waterSe_frac: fraction(form.waterSe_percent),
     })
     return Number.isFinite(made.value) && made.value > 0 ? made : null

@@ -184,6 +184,8 @@ export interface SeriesResult {
   points: { tubeNo: number, label: string, x: number, y: number, ySe: number | null, fitted: number, studentised: number | null, cook: number | null, leaveOneOut: number | null, excluded: string | null }[]
   line: { x: number, y: number }[]
   band: { x: number, low: number, high: number }[]
+  /** A second curve through the rates, such as a binding isotherm. Absent where there is none. */
+  curve?: { name: string, points: { x: number, y: number }[] }
   statistics: { label: string, value: number | null, text: string }[]
   /** Absent in fits of engine 1. */
   correlation?: CorrelationTable | null

@@ -13,6 +13,14 @@ export const LANTHANIDES = {
   Yb: { name: 'ytterbium', molarMass_g_per_mol: 173.045 }, Lu: { name: 'lutetium', molarMass_g_per_mol: 174.967 },
 } as const
 
+/**
+ * Effective magnetic moments of the aqua ions at room temperature, Bohr magnetons: calculated g_J√(J(J + 1)), except Sm and Eu, whose excited states count (measured).
+ * @source Van Vleck, The Theory of Electric and Magnetic Susceptibilities (1932); values from memory
+ */
+export const MOMENTS_muB: Readonly<Partial<Record<keyof typeof LANTHANIDES, number>>> = {
+  Ce: 2.54, Pr: 3.58, Nd: 3.62, Sm: 1.6, Eu: 3.4, Gd: 7.94, Tb: 9.72, Dy: 10.65, Ho: 10.61, Er: 9.58, Tm: 7.56, Yb: 4.54,
+}
+
 export type Metal = keyof typeof LANTHANIDES
 export const METALS = Object.keys(LANTHANIDES) as [Metal, ...Metal[]]
 export const MetalSymbol = z.enum(METALS, { error: `The metal must be one of the lanthanides. Accepted: ${METALS.join(', ')}.` })

@@ -20,8 +20,10 @@ describe('variable projection', () => {
     const model = MODELS[id] as Model
     const { x, settings, truth } = model.example
     const random = createRandom(id)
-    const sigma = x.map((_, i) => 5 + i)
-    const y = x.map((ti, i) => model.evaluate(ti, truth, settings) + sigma[i]! * random.normal())
+    const exact = x.map(ti => model.evaluate(ti, truth, settings))
+    const largest = Math.max(...exact.map(Math.abs))
+    const sigma = x.map((_, i) => (largest * (5 + i)) / 5e3)
+    const y = exact.map((value, i) => value + sigma[i]! * random.normal())
     const projection = prepareSeparable(model, x, sigma.map(s => 1 / s), settings)!.search(y)
     const fit = fitModel(model, { x, y, sigma }, { settings, start: truth })
     if (!fit.ok) throw new Error(fit.message)

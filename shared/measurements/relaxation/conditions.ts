@@ -40,6 +40,7 @@ export const SAMPLE_CONDITIONS: readonly ConditionSpec[] = [
     ],
   },
   { key: 'mediumDetail', label: 'Medium in words', type: 'text', required: false, help: 'Species, supplier lot, protein content', synonyms: ['medium detail', 'medium note'] },
+  { key: 'protein_mM', label: 'Protein in the medium', type: 'number', dimension: 'concentration', shownUnit: 'mM', required: false, min: 1e-6, max: 100, help: 'Needed for a binding isotherm; albumin of plasma is about 0.6 mM', synonyms: ['protein', 'protein concentration', 'albumin concentration', 'hsa concentration', '[hsa]'], when: { key: 'medium', is: ['plasma', 'serum', 'blood', 'albumin'] } },
   { key: 'buffer', label: 'Buffer', type: 'text', required: false, help: 'Name and concentration, such as 50 mM HEPES', synonyms: ['buffer'] },
   { key: 'date', label: 'Date', type: 'date', required: false, help: 'Day of the measurement', synonyms: ['date', 'measured on', 'day', 'acquisition date'] },
   { key: 'operator', label: 'Measured by', type: 'text', required: false, help: 'Who stood at the instrument', synonyms: ['operator', 'measured by', 'user'] },

@@ -37,6 +37,7 @@ function seriesLayers(series: SeriesResult, used: readonly SeriesPoint[], out: r
   return [
     { type: 'band', name: '95 % band', token, points: series.band },
     { type: 'line', name: 'line', token: 'ink', labelled: false, points: series.line },
+    ...(series.curve ? [{ type: 'line' as const, name: series.curve.name, token: 's2' as const, dash: 'dashed' as const, points: series.curve.points }] : []),
     ...(bars.length > 0 ? [{ type: 'errorBars' as const, name: '±1 SE', token, points: bars }] : []),
     { type: 'points', name: rate.label, token, points: used.map(at) },
     ...(out.length > 0 ? [{ type: 'cross' as const, name: 'left out', points: out.map(at) }] : []),

@@ -2,7 +2,7 @@ import { describeConditions } from './conditions'
 import { checkExclusions } from './exclusions'
 import { seriesFigureOf, tubeFigureOf, type FigureWords } from './figures'
 import { conditionsText, engineText, intervalText, leftOutText, noiseText, samplingText, slopeText, tubesText } from './methodText'
-import { INTERVAL_OPTION } from './options'
+import { INTERVAL_OPTION, LINE_OPTION } from './options'
 import { sdFlags } from './recoveryFlags'
 import { relaxivityEvidence, seriesOutcome } from './seriesOutcome'
 import { fitSignalTubes, type SignalKind } from './signalTubes'
@@ -41,7 +41,7 @@ export function signalKind({ digit, models, options = [], words, signals, flags,
       if (model === null) throw new Error(`No model is called ${id}.`)
       return { id, version: model.version, title: model.title, within }
     }),
-    options: [INTERVAL_OPTION, ...options],
+    options: [INTERVAL_OPTION, ...options, LINE_OPTION],
     analyse(input) {
       checkExclusions(input.tubes, input.exclusions)
       const tubes = fitSignalTubes(input, signals)

@@ -20,3 +20,8 @@ export const NOISE_OPTION: FitOptionSpec = {
   help: 'Measured needs the SD of the background among the conditions; where it is not given, the noise is fitted',
   choices: [{ value: 'measured', label: 'measured in the background, if given' }, { value: 'fitted', label: 'fitted with each tube' }],
 }
+
+export const LINE_OPTION: FitOptionSpec = {
+  key: 'line', label: 'Line through the rates', type: 'choice', standard: 'straight', help: 'With protein in the medium rates can bend; the isotherm needs the protein\'s concentration among the conditions and stands beside the straight line',
+  choices: [{ value: 'straight', label: 'straight line' }, { value: 'binding', label: 'straight line, and a binding isotherm beside it' }],
+}

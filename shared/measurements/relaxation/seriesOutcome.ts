@@ -1,6 +1,9 @@
 import type { EvidenceDraft } from '../../evidence/types'
 import type { AnalysisInput, AnalysisOutcome, Conditions, Flag, TubeResult } from '../types'
+import { optionOf } from '../fitOptions'
+import { fitBinding, withBinding } from './binding'
 import { evidenceConditions } from './conditions'
+import { LINE_OPTION } from './options'
 import { fitSlope, lineSeLabel } from './slope'
 import { ratesFrom } from './tubeRate'
 
@@ -17,8 +20,12 @@ interface Parts {
 export function seriesOutcome({ input, tubes, digit, flags, method }: Parts): AnalysisOutcome {
   const slope = fitSlope(ratesFrom(input.tubes, tubes, `rate${digit}_per_s`), input.conditions, digit)
   if (!slope.ok) return { ...slope, tubes }
+  const binding = optionOf(input, LINE_OPTION) === 'binding' ? fitBinding(slope.used, input.conditions) : null
   const used = tubes.filter(tube => slope.used.some(rate => rate.tubeNo === tube.tubeNo))
-  return { ok: true, tubes, series: slope.series, flags: [...slope.flags, ...flags], passed: slope.passed, method: method(used) }
+  return {
+    ok: true, tubes, series: binding === null ? slope.series : withBinding(slope.series, binding), flags: [...slope.flags, ...binding?.flags ?? [], ...flags], passed: slope.passed,
+    method: `${method(used)}${binding?.method ?? ''}`,
+  }
 }
 
 /** What a series says about its agent: one relaxivity, with the error its stock shares with other series. */

@@ -60,12 +60,19 @@ function seriesResult(rates: readonly TubeRate[], used: readonly TubeRate[], lin
     headline, parameters: [headline, named({ name: `rate${digit}Dia_per_s`, label: `R_{${digit},dia}`, unit: 's^-1' }, intercept)],
     points: rates.map(rate => seriesPoint(rate, used, line)), line: band.map(({ x, rate_per_s }) => ({ x, y: rate_per_s })),
     band: band.flatMap(({ x, low_per_s, high_per_s }) => low_per_s === null || high_per_s === null ? [] : [{ x, low: low_per_s, high: high_per_s }]),
-    statistics: statisticsOf(line, digit),
+    statistics: statisticsOf(line, digit), correlation: correlationOf(line, digit),
   }
 }
 
 function named(base: Pick<NamedQuantity, 'name' | 'label' | 'unit'>, { value, se, interval }: RelaxivityDone['relaxivity_per_mM_s']): NamedQuantity {
   return { ...base, value, kind: '=', se, interval: interval && [interval[0], interval[1]], evidenceId: null }
+}
+
+/** Of slope and intercept, by the line alone: a common concentration error moves the slope only. */
+function correlationOf({ covariance, fitSe_per_mM_s: slopeSe, diamagnetic_per_s: { se } }: RelaxivityDone, digit: '1' | '2'): SeriesResult['correlation'] {
+  if (covariance === null || slopeSe === null || se === null || !(slopeSe > 0) || !(se > 0)) return null
+  const value = covariance / (slopeSe * se)
+  return { names: [`r${digit}_per_mM_s`, `rate${digit}Dia_per_s`], labels: [`r_${digit}`, `R_{${digit},dia}`], matrix: [[1, value], [value, 1]] }
 }
 
 function seriesPoint(rate: TubeRate, used: readonly TubeRate[], line: RelaxivityDone): SeriesResult['points'][number] {
@@ -89,6 +96,7 @@ function statisticsOf(line: RelaxivityDone, digit: '1' | '2'): SeriesResult['sta
     { label: `SE of r_${digit} from the common concentration error`, value: line.scaleSe_per_mM_s, text: line.scaleSe_per_mM_s === null ? 'not given' : `${shown(line.scaleSe_per_mM_s)} mM^-1 s^-1` },
     { label: 'Reduced χ²', value: line.reducedChi2, text: line.reducedChi2 === null ? 'not available: no errors of the rates' : `${shown(line.reducedChi2)}${line.chi2P === null ? '' : `, ${pWords(line.chi2P)}`}` },
     { label: 'Quadratic term', value: line.quadraticP, text: line.quadraticP === null ? 'not available' : pWords(line.quadraticP) },
+    { label: 'Lack of fit', value: line.lackOfFit?.p ?? null, text: line.lackOfFit === null ? 'no two tubes share a concentration' : `F(${line.lackOfFit.dof1}, ${line.lackOfFit.dof2}) = ${shown(line.lackOfFit.f)}, ${pWords(line.lackOfFit.p)}` },
     { label: 'R²', value: line.r2, text: shown(line.r2, 6) },
     { label: 'Intercept without the blank, less the blank', value: blank?.difference_per_s ?? null, text: blank === null ? 'no blank to compare' : `${shown(blank.difference_per_s, 2)} s^-1${blank.p === null ? '' : `, ${pWords(blank.p)}`}` },
     { label: `Largest rate over R_{${digit},dia}`, value: line.span, text: line.span === null ? 'not available: the intercept is not above 0' : shown(line.span) },

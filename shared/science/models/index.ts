@@ -1,3 +1,4 @@
+import { bindingIsotherm } from './bindingIsotherm'
 import type { Model } from './define'
 import { inversionRecovery3 } from './inversionRecovery3'
 import { inversionRecoveryDelay } from './inversionRecoveryDelay'
@@ -11,7 +12,7 @@ import { variableFlipAngle } from './variableFlipAngle'
 /** Every model the product can fit, by id. */
 export const MODELS = {
   inversionRecovery3, inversionRecoveryTiRepeat, inversionRecoveryDelay, saturationRecovery, saturationRecoveryOffset, lookLocker, variableFlipAngle,
-  multiEcho, multiEchoOffset, multiEchoNoiseFloor, multiEchoMeanSquares,
+  multiEcho, multiEchoOffset, multiEchoNoiseFloor, multiEchoMeanSquares, bindingIsotherm,
 } as const
 
 export type ModelId = keyof typeof MODELS

@@ -8,8 +8,8 @@ export interface WeighedStock {
   readonly puritySe_frac: number
   readonly water_frac: number
   readonly waterSe_frac: number
-  readonly volume_mL: number
-  readonly volumeSe_mL: number
+  readonly volume_ml: number
+  readonly volumeSe_ml: number
 }
 
 export interface Known { readonly value: number, readonly se: number }
@@ -19,10 +19,10 @@ export interface Known { readonly value: number, readonly se: number }
  * mass that is not above 0.
  * @source propagation of uncertainty, JCGM 100:2008 (GUM), 5.1.2
  */
-export function weighedStock_mM({ mass_mg, massSe_mg, molarMass_g_per_mol, purity_frac, puritySe_frac, water_frac, waterSe_frac, volume_mL, volumeSe_mL }: WeighedStock): Known {
-  if (!(volume_mL > 0) || !(molarMass_g_per_mol > 0)) return { value: NaN, se: NaN }
-  const value = (1e3 * mass_mg * purity_frac * (1 - water_frac)) / (molarMass_g_per_mol * volume_mL)
-  const relative = Math.hypot(massSe_mg / mass_mg, puritySe_frac / purity_frac, waterSe_frac / (1 - water_frac), volumeSe_mL / volume_mL)
+export function weighedStock_mM({ mass_mg, massSe_mg, molarMass_g_per_mol, purity_frac, puritySe_frac, water_frac, waterSe_frac, volume_ml, volumeSe_ml }: WeighedStock): Known {
+  if (!(volume_ml > 0) || !(molarMass_g_per_mol > 0)) return { value: NaN, se: NaN }
+  const value = (1e3 * mass_mg * purity_frac * (1 - water_frac)) / (molarMass_g_per_mol * volume_ml)
+  const relative = Math.hypot(massSe_mg / mass_mg, puritySe_frac / purity_frac, waterSe_frac / (1 - water_frac), volumeSe_ml / volume_ml)
   return { value, se: value * relative }
 }
 

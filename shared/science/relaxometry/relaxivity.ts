@@ -1,6 +1,7 @@
 import { fitLine, lineBand, studentFactor, type LineDone } from '../least-squares/line'
 import { fitYork, type YorkDone } from '../least-squares/york'
 import { compareWithBlank, type BlankAgreement } from './blankAgreement'
+import { testLackOfFit, type LackOfFit } from './lackOfFit'
 
 /** One tube of a series, as the line sees it. */
 export interface RelaxivityTube {
@@ -61,6 +62,8 @@ export interface RelaxivityDone {
   readonly reducedChi2: number | null
   readonly chi2P: number | null
   readonly quadraticP: number | null
+  /** Line against the scatter of tubes that share a concentration; null where none do. */
+  readonly lackOfFit: LackOfFit | null
   readonly r2: number
   /** Intercept of the line through the other tubes against the blank; null without a blank or without two other concentrations. */
   readonly blank: BlankAgreement | null
@@ -99,9 +102,10 @@ export function fitRelaxivity(tubes: readonly RelaxivityTube[], { scale_frac = n
   const york = method === 'york' ? fitYork({ x, y, xSigma, ySigma: ySigma!, sigmaDof: timeSeDof }, { level }) : null
   if (york && !york.ok) return refuse('notConverged', york.message, 'Errors of rates and concentrations that leave a line.')
   // With the slope known, an error of the concentration is one more error of the rate: that is how York's line is judged point by point.
-  const judged = fitLine({ x, y, sigma: ySigma && ySigma.map((s, i) => Math.hypot(s, (york?.slope ?? 0) * xSigma[i]!)), sigmaDof: timeSeDof }, { level })
+  const sigma = ySigma && ySigma.map((s, i) => Math.hypot(s, (york?.slope ?? 0) * xSigma[i]!))
+  const judged = fitLine({ x, y, sigma, sigmaDof: timeSeDof }, { level })
   if (!judged.ok) return refuse('tooFewPoints', judged.message, judged.accepted)
-  return report({ tubes, x, y, ySigma, method, judged, line: york ?? judged, scale_frac, level })
+  return report({ tubes, x, y, ySigma, method, judged, line: york ?? judged, lackOfFit: testLackOfFit(x, y, sigma, judged.rss), scale_frac, level })
 }
 
 const refuse = (reason: RelaxivityRefused['reason'], message: string, accepted: string): RelaxivityRefused => ({ ok: false, reason, message, accepted })
@@ -132,17 +136,18 @@ interface Parts {
   /** Line that judges the points, with the same weights. */
   readonly judged: LineDone
   readonly line: LineDone | YorkDone
+  readonly lackOfFit: LackOfFit | null
   readonly scale_frac: number | null
   readonly level: number
 }
 
-function report({ tubes, x, y, ySigma, method, judged, line, scale_frac, level }: Parts): RelaxivityDone {
+function report({ tubes, x, y, ySigma, method, judged, line, lackOfFit, scale_frac, level }: Parts): RelaxivityDone {
   const scaleSe = scale_frac === null ? null : Math.abs(line.slope) * scale_frac
   const slope = withScale(line, scaleSe, level)
   return {
     ok: true, relaxivity_per_mM_s: slope, fitSe_per_mM_s: line.slopeSe, scaleSe_per_mM_s: scaleSe,
     diamagnetic_per_s: { value: line.intercept, se: line.interceptSe, interval: line.interceptInterval }, method, dof: line.dof, intervalDof: line.intervalDof, level,
-    reducedChi2: line.reducedChi2, chi2P: line.chi2P, quadraticP: judged.quadraticP, r2: judged.r2,
+    reducedChi2: line.reducedChi2, chi2P: line.chi2P, quadraticP: judged.quadraticP, lackOfFit, r2: judged.r2,
     blank: compareWithBlank(tubes, y, ySigma), span: line.intercept > 0 ? Math.max(...y) / line.intercept : null,
     points: judged.points.map((point, i) => ({
       conc_mM: x[i]!, rate_per_s: y[i]!, rateSe_per_s: ySigma && ySigma[i]!, fitted_per_s: line.intercept + line.slope * x[i]!,

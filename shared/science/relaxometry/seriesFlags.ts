@@ -69,6 +69,10 @@ export const SERIES_FLAGS: readonly Flag<RelaxivityDone>[] = [
     test: ({ quadraticP }) => whenKnown(quadraticP, 0.05, p => `Quadratic term: ${p}.`),
   },
   {
+    id: 'lackOfFit', title: 'Line misses repeated concentrations', advice: 'Tubes of one concentration agree better with each other than with the line: look for binding, aggregation or a wrong dilution.',
+    test: ({ lackOfFit }) => lackOfFit && whenKnown(lackOfFit.p, 0.05, p => `Lack of fit: F(${lackOfFit.dof1}, ${lackOfFit.dof2}) = ${digits(lackOfFit.f)}, ${p}.`),
+  },
+  {
     id: 'outlyingTube', title: 'One tube lies off the line', advice: 'Look at how that tube was made; leave it out with its reason where there is one.', test: testOutlier,
   },
   {
