@@ -78,7 +78,8 @@ function closeCell(cell: OpenCell, scan: SheetScan): boolean {
     scan.fault ??= { row, column }
     return false
   }
-  if (cell.hasFormula) scan.formulas.push({ row, column, hasValue: cell.hasValue })
+  // A formula that ended in an error has its own problem at the cell.
+  if (cell.hasFormula && cell.type !== 'e') scan.formulas.push({ row, column, hasValue: cell.hasValue })
   if (cell.type === 'e') scan.errors.push({ row, column, text: cell.value === '' ? '#ERROR!' : cell.value.slice(0, 40) })
   else if (cell.style !== null && cell.type === 'n') scan.styles.set(cellName(row, column), cell.style)
   return cell.hasValue
