@@ -41,8 +41,8 @@ export async function insertReferenceTube(trx: Knex, row: { id: string, programm
   })
 }
 
-export interface ReadingRow { seriesId: string, fitId: string, title: string, agentCode: string, label: string, kind: string, quantity: string, value: number, se: number | null, temperature_K: number | null, on: Date }
-interface RawReading { series_id: Buffer, fit_id: Buffer, title: string, code: string, label: string, kind: string, quantity: string, value_text: string, se_text: string | null, temperature_K: number | null, on_day: Date }
+export interface ReadingRow { uploadId: string, seriesId: string, fitId: string, title: string, agentCode: string, label: string, kind: string, quantity: string, value: number, se: number | null, temperature_K: number | null, on: Date }
+interface RawReading { upload_id: Buffer, series_id: Buffer, fit_id: Buffer, title: string, code: string, label: string, kind: string, quantity: string, value_text: string, se_text: string | null, temperature_K: number | null, on_day: Date }
 
 /** What the newest fit of each series that still counts read of a tube of this name on this instrument, in order of time. */
 export async function referenceReadings(db: Knex, programmeId: string, { instrument, label }: { instrument: string, label: string }): Promise<ReadingRow[]> {
@@ -52,16 +52,16 @@ export async function referenceReadings(db: Knex, programmeId: string, { instrum
     .whereNotExists(db('fit as later').whereRaw('later.series_id = fit.series_id AND later.version_no > fit.version_no').select(db.raw('1')))
     .whereNotExists(db('series_event as event').whereRaw('event.series_id = series.id AND event.event = ?', ['withdrawn']).select(db.raw('1')))
     .whereNotExists(db('series as next').whereRaw('next.replaces = series.id').select(db.raw('1')))
-    .select('reading.series_id', 'reading.fit_id', 'series.title', 'complex.code', 'reading.label', 'reading.kind', 'reading.quantity', 'reading.value_text', 'reading.se_text', 'reading.temperature_K',
+    .select('series.upload_id', 'reading.series_id', 'reading.fit_id', 'series.title', 'complex.code', 'reading.label', 'reading.kind', 'reading.quantity', 'reading.value_text', 'reading.se_text', 'reading.temperature_K',
       db.raw('COALESCE(reading.measured_on, DATE(series.created_at)) AS on_day'))
     .orderBy('on_day').orderBy('series.created_at').orderBy('reading.series_id') as RawReading[]
   return rows.map(row => ({
-    seriesId: fromBinary(row.series_id), fitId: fromBinary(row.fit_id), title: row.title, agentCode: row.code, label: row.label, kind: row.kind, quantity: row.quantity, value: Number(row.value_text),
+    uploadId: fromBinary(row.upload_id), seriesId: fromBinary(row.series_id), fitId: fromBinary(row.fit_id), title: row.title, agentCode: row.code, label: row.label, kind: row.kind, quantity: row.quantity, value: Number(row.value_text),
     se: row.se_text === null ? null : Number(row.se_text), temperature_K: row.temperature_K === null ? null : Number(row.temperature_K.toPrecision(9)), on: row.on_day,
   }))
 }
 
-export async function insertReading(trx: Knex, row: Omit<ReadingRow, 'title' | 'agentCode' | 'on'> & { id: string, programmeId: string, instrument: string, tubeNo: number, measuredOn: string | null, at: Date }): Promise<void> {
+export async function insertReading(trx: Knex, row: Omit<ReadingRow, 'uploadId' | 'title' | 'agentCode' | 'on'> & { id: string, programmeId: string, instrument: string, tubeNo: number, measuredOn: string | null, at: Date }): Promise<void> {
   await trx('reference_reading').insert({
     id: toBinary(row.id), programme_id: toBinary(row.programmeId), series_id: toBinary(row.seriesId), fit_id: toBinary(row.fitId), tube_no: row.tubeNo, label: row.label, instrument: row.instrument, kind: row.kind,
     quantity: row.quantity, value_text: String(row.value), se_text: row.se === null ? null : String(row.se), temperature_K: row.temperature_K, measured_on: row.measuredOn, created_at: row.at,

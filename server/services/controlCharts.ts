@@ -11,7 +11,9 @@ type Chart = InstrumentDto['charts'][number]
 
 /** Charts of one reference tube: one for each measurement and temperature, since a time at 25 °C says nothing of one at 37 °C. */
 export async function chartsOf({ db, kinds }: Pick<Deps, 'db' | 'kinds'>, { programmeId, instrument, label, since }: { programmeId: string, instrument: string, label: string, since: Date }): Promise<Chart[]> {
-  const readings = (await referenceReadings(db, programmeId, { instrument, label })).filter(one => one.on >= since)
+  const all = (await referenceReadings(db, programmeId, { instrument, label })).filter(one => one.on >= since)
+  // Series of one file share its reading: one session, however many agents were in it.
+  const readings = all.filter((one, i) => all.findIndex(other => other.uploadId === one.uploadId && groupOf(other) === groupOf(one)) === i)
   const groups = new Map<string, ReadingRow[]>()
   for (const one of readings) {
     const key = groupOf(one)
@@ -29,7 +31,7 @@ function chartDto(rows: readonly ReadingRow[], kindTitle: string): Chart {
   const label = first.quantity.startsWith('t2') ? 'T_2' : 'T_1'
   const sessions = rows.map((one, i) => {
     const judged = chart.sessions[i]!
-    return { seriesId: one.seriesId, title: one.title, agentCode: one.agentCode, on: one.on.toISOString().slice(0, 10), value: one.value, se: one.se, isBase: judged.isBase, z: judged.z, isOutside: judged.isOutside }
+    return { uploadId: one.uploadId, seriesId: one.seriesId, title: one.title, agentCode: one.agentCode, on: one.on.toISOString().slice(0, 10), value: one.value, se: one.se, isBase: judged.isBase, z: judged.z, isOutside: judged.isOutside }
   })
   return {
     quantity: first.quantity, label, unit: 's', kindTitle, temperature_K: first.temperature_K, centre: chart.centre, sd: chart.sd, baseCount: chart.baseCount, sessions, figure: figureOf(sessions, chart, label),
@@ -68,12 +70,12 @@ function figureOf(sessions: Chart['sessions'], { centre, sd }: { centre: number 
  * Flags of the session in which a series was measured: its reference tube against the others of the instrument. They are read when the fit is looked at and are no part of
  * what is stored with it, since they follow from other series as well.
  */
-export async function sessionFlags(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId, seriesId, instrument }: { programmeId: string, seriesId: string, instrument: unknown }): Promise<FlagDto[]> {
+export async function sessionFlags(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId, uploadId, instrument }: { programmeId: string, uploadId: string, instrument: unknown }): Promise<FlagDto[]> {
   if (typeof instrument !== 'string') return []
   const reference = (await currentReferences(deps.db, programmeId)).find(one => one.instrument === instrument)
   if (!reference) return []
   const charts = await chartsOf(deps, { programmeId, instrument, label: reference.label, since: reference.since })
-  return charts.flatMap(chart => chart.sessions.filter(one => one.seriesId === seriesId && one.isOutside).map((one): FlagDto => ({
+  return charts.flatMap(chart => chart.sessions.filter(one => one.uploadId === uploadId && one.isOutside).map((one): FlagDto => ({
     id: 'session', title: 'Reference tube outside two SD', tubeNo: null,
     sentence: `${chart.label.replace('_', '')} of ${reference.label} is ${formatNumber(one.value, 4)}${NBSP}s on ${one.on}, ${formatFixed(Math.abs(one.z ?? 0), 1)} SD from the mean of the base sessions${chart.temperature_K === null ? '' : ` at ${formatFixed(chart.temperature_K - CELSIUS_ZERO_K, 0)} °C`}. Check temperature, timing and B1 of that session before signing.`,
   })))

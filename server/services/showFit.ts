@@ -28,6 +28,6 @@ export async function showFit(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId, s
     places: scope === 'signed' ? new Map() : await tubePlaces(deps.db, programmeId, seriesId),
   })
   // Flags of the session follow from other series as well: shown with the fit, no part of what is stored. Partners see what was signed, and no more.
-  const session = scope === 'signed' ? [] : await sessionFlags(deps, { programmeId, seriesId, instrument: series.conditions.instrument })
+  const session = scope === 'signed' ? [] : await sessionFlags(deps, { programmeId, uploadId: series.uploadId, instrument: series.conditions.instrument })
   return { ...dto, flags: [...dto.flags, ...session] }
 }

@@ -9,6 +9,7 @@ import { isArchive } from '../../shared/measurements/workbook/readWorkbook'
 import type { MeasurementKind, UploadProblem } from '../../shared/measurements/types'
 import type { Deps } from '../platform/deps'
 import { sha256 } from '../platform/hashes'
+import { currentReferences } from '../queries/instruments'
 import { findTubeSheet, type TubeSheetRow } from '../queries/tubeSheets'
 import { findStaged, type StagedRow } from '../queries/uploads'
 import type { UploadTarget } from '../queries/uploadTargets'
@@ -56,10 +57,23 @@ export async function readUpload(deps: Pick<Deps, 'tables' | 'db'>, bytes: Uint8
   const alone = draft.tubeSheet ? null : await readBytes(deps, bytes, { kind, draft, sheet: null })
   const code = draft.tubeSheet === undefined ? alone?.tubeSheet ?? null : draft.tubeSheet
   const row = code === null ? null : await findTubeSheet(deps.db, programmeId, code)
-  const understood = row === null && alone !== null ? alone : await readBytes(deps, bytes, { kind, draft, sheet: row?.body ?? null })
+  const first = row === null && alone !== null ? alone : await readBytes(deps, bytes, { kind, draft, sheet: row?.body ?? null })
+  const named = await withReferences(deps, first, { programmeId, draft })
+  const understood = named === draft ? first : await readBytes(deps, bytes, { kind, draft: named, sheet: row?.body ?? null })
   const unknown = [...understood.series.flatMap(part => targetProblem(part, targets) ?? []), ...tubeSheetProblems(code, { row, kind })]
   const problems = [...understood.problems, ...unknown]
   return { ...understood, problems, canStore: understood.canStore && unknown.every(problem => problem.severity !== 'blocks') }
+}
+
+/** The draft with the role of the instrument's reference tube filled in, where a tube goes by its name and nobody chose another role; the same draft where there is none. */
+async function withReferences({ db }: Pick<Deps, 'db'>, { conditions, tubes }: Understood, { programmeId, draft }: Pick<Reading, 'programmeId' | 'draft'>): Promise<UploadDraft> {
+  const { instrument } = conditions
+  const label = typeof instrument !== 'string' ? null : (await currentReferences(db, programmeId)).find(one => one.instrument === instrument)?.label.toLowerCase() ?? null
+  const found = label === null ? [] : tubes.filter(tube => tube.label.toLowerCase() === label && tube.role !== 'reference' && tube.how.role === 'guessed')
+  if (found.length === 0) return draft
+  const chosen = draft.tubes ?? []
+  const added = found.map(({ key }) => ({ ...chosen.find(one => one.key === key), key, role: 'reference' as const }))
+  return { ...draft, tubes: [...chosen.filter(one => !found.some(tube => tube.key === one.key)), ...added] }
 }
 
 /** Up to this size a text is read at once: it takes a few milliseconds, and a thread would take longer to begin. */

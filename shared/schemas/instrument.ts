@@ -9,7 +9,8 @@ export const InstrumentListDto = z.object({
 export type InstrumentListDto = z.output<typeof InstrumentListDto>
 
 export const ReferenceSessionDto = z.object({
-  seriesId: z.string(), title: z.string(), agentCode: z.string(), on: z.string(), value: z.number(), se: z.number().nullable(), isBase: z.boolean(),
+  /** File of the session; its series share one reading. */
+  uploadId: z.string(), seriesId: z.string(), title: z.string(), agentCode: z.string(), on: z.string(), value: z.number(), se: z.number().nullable(), isBase: z.boolean(),
   /** Distance from the mean of the base sessions in their SD; null while there are too few. */
   z: z.number().nullable(), isOutside: z.boolean(),
 })

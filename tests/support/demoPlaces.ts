@@ -2,15 +2,17 @@ import { readFile } from 'node:fs/promises'
 import { DEMO_PASSWORD } from '../../shared/demo'
 import type { QueueItemDto } from '../../shared/schemas/check'
 import type { DecisionListDto } from '../../shared/schemas/decision'
+import type { InstrumentListDto } from '../../shared/schemas/instrument'
 import type { RecordListDto } from '../../shared/schemas/record'
 import type { SeriesDto, SeriesListDto } from '../../shared/schemas/series'
+import type { TubeSheetList } from '../../shared/schemas/tubeSheet'
 import type { ConfirmedDto, StagedUploadDto } from '../../shared/schemas/upload'
 import type { AgentDto } from '../../shared/schemas/agent'
 import { ApiClient } from './apiClient'
 import { readPatiently, sendPatiently } from './patientClient'
 
 /** Ids of things of the demonstration that pages are about. */
-export interface DemoPlaces { series: string, record: string, waitingFit: string, waitingRecord: string, batchVersion: string, decision: string, staged: string }
+export interface DemoPlaces { series: string, record: string, waitingFit: string, waitingRecord: string, batchVersion: string, decision: string, staged: string, instrument: string, sheet: string }
 
 const BASE = '/api/programmes/skerry'
 
@@ -22,11 +24,14 @@ export async function demoPlaces(): Promise<DemoPlaces> {
   const { batches } = await read<AgentDto>(chemist, '/agents/SK-07')
   const queue = await read<QueueItemDto[]>(physicist, '/checks')
   const { decisions } = await read<DecisionListDto>(physicist, '/decisions')
+  const { instruments } = await read<InstrumentListDto>(chemist, '/instruments')
+  const { sheets } = await read<TubeSheetList>(chemist, '/sheets')
   const waiting = (kind: string) => found(queue.find(one => one.kind === kind), `a waiting ${kind}`).id
   return {
     series: found(series[0], 'a series of SK-07').id, record: found(records.find(one => one.agent === 'SK-07'), 'a record of SK-07').id,
     batchVersion: found(batches[0]?.current, 'a batch of SK-07').id, waitingFit: waiting('fit'), waitingRecord: waiting('record'),
     decision: found(decisions.find(one => one.agent === 'SK-07'), 'a decision on SK-07').id, staged: await stage(chemist),
+    instrument: found(instruments.find(one => one.name === 'Bay 3'), 'the instrument of bay 3').id, sheet: found(sheets[0], 'a tube sheet').code,
   }
 }
 

@@ -2,10 +2,13 @@ import type { WorkerDeps } from '../../../server/jobs/define'
 import { JOBS } from '../../../server/jobs/index'
 import { drainJobs } from '../../../server/jobs/runJobs'
 import type { fixedClock } from '../../../server/platform/clock'
+import { addInstrument } from '../../../server/queries/presets'
 import { countPersons, markDemoPersons } from '../../../server/queries/persons'
 import { enterRecord } from '../../../server/services/enterRecord'
+import { nameReferenceTube } from '../../../server/services/instruments'
 import { registerAgent } from '../../../server/services/registerAgent'
 import { registerBatch } from '../../../server/services/registerBatch'
+import { saveTubeSheet } from '../../../server/services/tubeSheets'
 import { savePreset } from '../../../server/services/savePreset'
 import { SourceInput } from '../../../shared/schemas/source'
 import { DEMO_AGENTS } from './agents'
@@ -42,6 +45,7 @@ export async function loadDemo(deps: DemoDeps, readFile: ReadDemoFile): Promise<
     actor: institute.people.idris, programmeId: institute.programmeId,
     preset: { name: 'Bay 3, inversion recovery in plasma', kind: 'relax.t1.ir', conditions: { instrument: 'Bay 3', b0_T: 3, temperature_K: 310.15, pH: 7.4, medium: 'plasma', timing: 'longTr', signalForm: 'signed', concBasis: 'icp', concScaleError_frac: 0.015 } },
   })
+  await nameReference(deps, institute)
   for (const file of [...DEMO_FILES].sort((a, b) => (a.day < b.day ? -1 : 1))) {
     deps.clock.set(at(file.day, 10))
     await measure(deps, institute, file, await readFile(file.fileName))
@@ -50,6 +54,19 @@ export async function loadDemo(deps: DemoDeps, readFile: ReadDemoFile): Promise<
   await drainJobs(deps, JOBS, institute.programmeId)
   await markDemoPersons(deps.db, Object.values(institute.people).map(one => one.personId))
   return institute
+}
+
+/** The scanner of bay 3 is watched by a sealed tube; one tube sheet waits to be filled in. */
+async function nameReference(deps: DemoDeps, { programmeId, people }: Institute): Promise<void> {
+  const id = deps.ids.next()
+  await addInstrument(deps.db, { id, programmeId, name: 'Bay 3', b0_T: 3, at: deps.clock.now() })
+  const request = { label: 'REF', contents: 'Sealed tube, 0.26 mM MnCl_2 in water', since: '2026-09-01', reason: 'Made for this bay in August; T1 held for a month.', expectedSeq: 0 }
+  await nameReferenceTube(deps, { actor: people.oren, programmeId, id, request })
+  const tube = (tubeNo: number, conc_mM: number) => ({ tubeNo, label: `t${tubeNo}`, role: conc_mM === 0 ? 'blank' as const : 'sample' as const, agent: conc_mM === 0 ? null : 'SK-08', lot: conc_mM === 0 ? null : 'A1', conc_mM, concSe_mM: conc_mM === 0 ? null : Number((0.006 * conc_mM).toPrecision(2)), stock_uL: 100 * conc_mM, diluent_uL: 1000 - 100 * conc_mM })
+  await saveTubeSheet(deps, {
+    actor: people.idris, programmeId,
+    sheet: { kind: 'relax.t2.echo', title: 'SK-08 A1, T2 in plasma', conditions: { b0_T: 3, temperature_K: 310.15, medium: 'plasma', concBasis: 'icp', concScaleError_frac: 0.015 }, tubes: [0, 0.25, 0.5, 1, 1.5, 2].map((conc, i) => tube(i + 1, conc)), values: Array.from({ length: 24 }, (_, i) => Number((0.008 * (i + 1)).toPrecision(3))), columns: 3 },
+  })
 }
 
 async function registerAll(deps: DemoDeps, { programmeId, people }: Institute): Promise<void> {

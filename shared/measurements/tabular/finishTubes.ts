@@ -7,7 +7,7 @@ import { UPLOAD_LIMITS } from './limits'
 import { parseLooseNumber, type DecimalMark } from './numberCell'
 import { asks, blocks, note, quoted } from './problem'
 import type { RawPoint, RawTube } from './rawTube'
-import { isBlankName, readNames, readTubeLabel, type LabelGuess } from './tubeLabel'
+import { isBlankName, isReferenceName, readNames, readTubeLabel, type LabelGuess } from './tubeLabel'
 import { onSheet, type SheetFacts, type SheetTube } from './tubeSheet'
 import type { UnderstoodTube } from './understood'
 
@@ -89,6 +89,7 @@ function plannedError(planned: SheetTube | null, conc_mM: number | null): number
 }
 
 function guessRole(raw: RawTube, guess: LabelGuess, { conc_mM, planned }: { conc_mM: number | null, planned: SheetTube | null }): Exclude<UnderstoodTube['role'], 'aside'> {
+  if (isReferenceName(raw.label)) return 'reference'
   if (conc_mM === 0 || (raw.agent !== null && isBlankName(raw.agent.text))) return 'blank'
   if (planned !== null && (raw.conc === null || raw.conc.text === '')) return planned.role
   return conc_mM === null || guess.conc_mM !== null ? guess.role : 'sample'

@@ -49,3 +49,6 @@ export function readNames(name: string): { agent: string | null, batch: string |
   if (words.length > 2) return { agent: null, batch: lot?.[1] ?? null }
   return { agent, batch: lot?.[1] ?? batch ?? null }
 }
+
+/** A tube that says of itself that it is the instrument's reference: 'REF', 'reference tube'. */
+export const isReferenceName = (text: string): boolean => /^ref(?:erence)?(?:[\s_-]*(?:tube|vial|sample))?$/i.test(text.trim())
