@@ -1,8 +1,9 @@
 import { describe, expect, it } from 'vitest'
+import writeXlsxFile from 'write-excel-file/node'
 import { relaxT1Ir } from '#shared/measurements/relaxT1Ir'
 import { readTable } from '#shared/measurements/tabular/readTable'
 import { RECOVERY_FORM } from './measurementsSupport'
-import { PHANTOM, TEXT_SHAPES, utf8, type Shape } from '../support/tableShapes'
+import { columnRows, longRows, PHANTOM, TEXT_SHAPES, utf8, type Shape } from '../support/tableShapes'
 import { SHEET_SHAPES } from '../support/sheetShapes'
 
 const draft = { conditions: { ...RECOVERY_FORM }, complexCode: 'SK-07', lot: 'B2' }
@@ -31,6 +32,11 @@ async function expectPhantom(shape: Shape): Promise<void> {
 describe('one phantom in every shape in which tables come gives the same tubes and points', () => {
   it.each(TEXT_SHAPES)('as text: $name', expectPhantom)
   it.each(SHEET_SHAPES)('as a workbook: $name', expectPhantom)
+
+  it.each([['a row per point', longRows()], ['a column per tube', columnRows()]])('as a workbook that another library wrote: %s', async (name, rows) => {
+    const cells = rows.map(row => row.map(cell => cell === '' ? null : /^-?[\d.]+$/.test(cell) ? { value: Number(cell), type: Number } : { value: cell, type: String }))
+    await expectPhantom({ name, bytes: new Uint8Array(await writeXlsxFile(cells, { sheet: 'Signals' }).toBuffer()) })
+  })
 
   it('in at least sixty shapes', () => {
     expect(TEXT_SHAPES.length + SHEET_SHAPES.length).toBeGreaterThanOrEqual(60)
