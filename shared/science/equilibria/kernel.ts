@@ -1,0 +1,254 @@
+/**
+ * The speciation solver for many neighbouring points (a pH sweep, a titration): laid out once, no allocation per step, each point started from the
+ * one before. Same equations, basis and tolerance as solve.ts, which is asked where a point does not come out.
+ */
+import { factorScaled, solveScaled } from './cholesky'
+import { pivotBasis, type PivotBasis } from './pivot'
+import { BALANCE_TOLERANCE, solveSystem, type SpeciationRefused } from './solve'
+import type { CompiledSystem } from './system'
+
+const STEP_LIMIT = 60
+/** Lowest rise that a line search cannot tell from rounding, in units of Σ c + |F|. */
+const ROUNDING = 4e-15
+
+export interface Kernel {
+  readonly system: CompiledSystem
+  readonly n: number
+  readonly m: number
+  /** May be changed by the caller between points: ln β of every species with held components folded in, and the totals, mol/L. */
+  readonly lnBeta: Float64Array
+  readonly totals_M: Float64Array
+  /** ln(free) of the unknowns and the concentration of every species at the last point solved. */
+  readonly u: Float64Array
+  readonly c: Float64Array
+  /** Newton steps of the last point, and the largest relative balance error there. */
+  steps: number
+  balanceError: number
+  readonly work: Work
+}
+
+interface Work {
+  basis: PivotBasis | null
+  /** Non-zero entries of the basis by species, laid out as the powers below. */
+  readonly basisFirst: Int32Array
+  readonly basisIndex: Int32Array
+  readonly basisValue: Float64Array
+  readonly size: Float64Array
+  readonly totals: Float64Array
+  readonly trial: Float64Array
+  readonly trialC: Float64Array
+  readonly gap: Float64Array
+  readonly hessian: Float64Array
+  readonly scale: Float64Array
+  readonly dv: Float64Array
+  readonly du: Float64Array
+  /** Non-zero powers by species: positions in `index`/`value` from first[j] to first[j + 1]. */
+  readonly first: Int32Array
+  readonly index: Int32Array
+  readonly value: Float64Array
+}
+
+/** Lays a compiled system out for repeated solving. */
+export function openKernel(system: CompiledSystem): Kernel {
+  const n = system.unknowns.length
+  const m = system.names.length
+  const first = new Int32Array(m + 1)
+  const index: number[] = []
+  const value: number[] = []
+  for (let j = 0; j < m; j++) {
+    for (let k = 0; k < n; k++) {
+      if (system.powers[k * m + j] === 0) continue
+      index.push(k)
+      value.push(system.powers[k * m + j]!)
+    }
+    first[j + 1] = index.length
+  }
+  const vector = () => new Float64Array(n)
+  return {
+    system, n, m, lnBeta: system.lnBeta.slice(), totals_M: system.totals_M.slice(), u: vector(), c: new Float64Array(m), steps: 0, balanceError: 0,
+    work: {
+      basis: null, basisFirst: new Int32Array(m + 1), basisIndex: new Int32Array(n * m), basisValue: new Float64Array(n * m), size: vector(),
+      totals: vector(), trial: vector(), trialC: new Float64Array(m), gap: vector(), hessian: new Float64Array(n * n), scale: vector(), dv: vector(), du: vector(),
+      first, index: Int32Array.from(index), value: Float64Array.from(value),
+    },
+  }
+}
+
+/**
+ * Solves at the totals and ln β now in the kernel, from ln(free) in `u`; the solution replaces `u` and `c`.
+ * @returns null when solved, otherwise why not
+ */
+export function solvePoint(kernel: Kernel): SpeciationRefused | null {
+  const { work } = kernel
+  let objective = concentrationsAt(kernel, kernel.u, kernel.c)
+  kernel.steps = 0
+  for (let turn = 0; turn <= STEP_LIMIT && Number.isFinite(objective); turn++) {
+    const fresh = chooseBasis(kernel)
+    const rowError = measureGap(kernel)
+    if (rowError <= BALANCE_TOLERANCE / 4 && worstBalance(kernel) <= BALANCE_TOLERANCE) return null
+    if (!newton(kernel, work.basis!)) {
+      if (fresh) break
+      work.basis = null
+      continue
+    }
+    const next = search(kernel, objective)
+    if (Number.isNaN(next)) break
+    objective = next
+    kernel.steps++
+  }
+  return solveAfresh(kernel)
+}
+
+/** Keeps the basis while it serves; true when it was chosen anew. Its totals are those of the moment. */
+export function chooseBasis(kernel: Kernel): boolean {
+  const { work, n, m, c, totals_M } = kernel
+  let fresh = false
+  if (work.basis === null || !serves(work, work.basis, c)) {
+    work.basis = pivotBasis(kernel.system.powers, totals_M, Array.from(c.keys()).sort((a, b) => c[b]! - c[a]!))
+    packBasis(work, work.basis, m)
+    fresh = true
+  }
+  // the first n species are the bare components, so their columns of the rows are the transformation itself
+  const { rows } = work.basis
+  for (let k = 0; k < n; k++) {
+    let sum = 0
+    for (let i = 0; i < n; i++) sum += rows[k * m + i]! * totals_M[i]!
+    work.totals[k] = sum
+  }
+  return fresh
+}
+
+/** As basisServes of pivot.ts, on the packed entries. */
+function serves({ basisFirst, basisIndex }: Work, { pivots }: PivotBasis, c: Float64Array): boolean {
+  for (let j = 0; j < c.length; j++) {
+    for (let at = basisFirst[j]!; at < basisFirst[j + 1]!; at++) if (c[j]! > 10 * c[pivots[basisIndex[at]!]!]!) return false
+  }
+  return true
+}
+
+function packBasis({ basisFirst, basisIndex, basisValue }: Work, { rows, pivots }: PivotBasis, m: number): void {
+  let at = 0
+  for (let j = 0; j < m; j++) {
+    for (let k = 0; k < pivots.length; k++) {
+      if (Math.abs(rows[k * m + j]!) <= 1e-9) continue
+      basisIndex[at] = k
+      basisValue[at++] = rows[k * m + j]!
+    }
+    basisFirst[j + 1] = at
+  }
+}
+
+/** Gap of every balance in the pivot basis; returns the largest relative error of a row. */
+function measureGap({ n, m, c, work }: Kernel): number {
+  const { totals, gap, size, basisFirst, basisIndex, basisValue } = work
+  for (let k = 0; k < n; k++) {
+    gap[k] = totals[k]!
+    size[k] = Math.abs(totals[k]!)
+  }
+  for (let j = 0; j < m; j++) {
+    for (let at = basisFirst[j]!; at < basisFirst[j + 1]!; at++) {
+      const term = basisValue[at]! * c[j]!
+      gap[basisIndex[at]!]! -= term
+      size[basisIndex[at]!]! += term < 0 ? -term : term
+    }
+  }
+  let rowError = 0
+  for (let k = 0; k < n; k++) if (size[k]! > 0) rowError = Math.max(rowError, Math.abs(gap[k]!) / size[k]!)
+  return rowError
+}
+
+/** Lower triangle of the Hessian in the pivot basis. */
+export function assembleHessian({ n, m, c, work }: Kernel): void {
+  const { hessian, basisFirst, basisIndex, basisValue } = work
+  hessian.fill(0)
+  for (let j = 0; j < m; j++) {
+    const from = basisFirst[j]!
+    const to = basisFirst[j + 1]!
+    for (let a = from; a < to; a++) {
+      const term = basisValue[a]! * c[j]!
+      const row = basisIndex[a]! * n
+      for (let b = from; b <= a; b++) hessian[row + basisIndex[b]!]! += term * basisValue[b]!
+    }
+  }
+}
+
+function newton(kernel: Kernel, { rows }: PivotBasis): boolean {
+  const { n, m, work } = kernel
+  assembleHessian(kernel)
+  if (!factorScaled(work.hessian, work.scale, n)) return false
+  work.dv.set(work.gap)
+  solveScaled(work.hessian, work.scale, work.dv, n)
+  work.du.fill(0)
+  for (let k = 0; k < n; k++) for (let i = 0; i < n; i++) work.du[i]! += rows[k * m + i]! * work.dv[k]!
+  return true
+}
+
+/** Damped step as in solve.ts; the objective at the new point, NaN where none is lower. */
+function search(kernel: Kernel, objective: number): number {
+  const { n, u, c, work } = kernel
+  let longest = 0
+  let slope = 0
+  let sum = Math.abs(objective)
+  for (let k = 0; k < n; k++) {
+    longest = Math.max(longest, Math.abs(work.du[k]!))
+    slope -= work.gap[k]! * work.dv[k]!
+  }
+  if (!(longest < Infinity)) return NaN
+  for (let j = 0; j < kernel.m; j++) sum += c[j]!
+  let length = longest > 1 ? (1 + Math.log(longest)) / longest : 1
+  for (let attempt = 0; attempt < 60; attempt++) {
+    for (let k = 0; k < n; k++) work.trial[k] = u[k]! + length * work.du[k]!
+    const next = concentrationsAt(kernel, work.trial, work.trialC)
+    if (next <= objective + 1e-4 * length * slope + ROUNDING * sum) {
+      u.set(work.trial)
+      c.set(work.trialC)
+      return next
+    }
+    length /= 2
+  }
+  return NaN
+}
+
+/** Fills c at ln(free) = u and returns the convex function whose gradient are the balances. */
+export function concentrationsAt({ n, m, lnBeta, totals_M, work: { first, index, value } }: Kernel, u: Float64Array, c: Float64Array): number {
+  let objective = 0
+  for (let j = 0; j < m; j++) {
+    let exponent = lnBeta[j]!
+    for (let at = first[j]!; at < first[j + 1]!; at++) exponent += value[at]! * u[index[at]!]!
+    c[j] = Math.exp(exponent)
+    objective += c[j]!
+  }
+  for (let k = 0; k < n; k++) objective -= totals_M[k]! * u[k]!
+  return objective
+}
+
+function worstBalance(kernel: Kernel): number {
+  const { n, m, c, totals_M, work: { first, index, value, trial, size } } = kernel
+  for (let k = 0; k < n; k++) {
+    trial[k] = totals_M[k]!
+    size[k] = Math.abs(totals_M[k]!)
+  }
+  for (let j = 0; j < m; j++) {
+    for (let at = first[j]!; at < first[j + 1]!; at++) {
+      const term = value[at]! * c[j]!
+      trial[index[at]!]! -= term
+      size[index[at]!]! += term < 0 ? -term : term
+    }
+  }
+  let worst = 0
+  for (let k = 0; k < n; k++) if (size[k]! > 0) worst = Math.max(worst, Math.abs(trial[k]!) / size[k]!)
+  kernel.balanceError = worst
+  return worst
+}
+
+/** The slow, sure way: without a start from a neighbour. */
+function solveAfresh(kernel: Kernel): SpeciationRefused | null {
+  const answer = solveSystem({ ...kernel.system, lnBeta: kernel.lnBeta.slice(), totals_M: kernel.totals_M.slice() })
+  if (!answer.ok) return answer
+  kernel.u.set(answer.lnFree)
+  concentrationsAt(kernel, kernel.u, kernel.c)
+  kernel.steps += answer.iterations
+  kernel.balanceError = answer.balanceError
+  kernel.work.basis = null
+  return null
+}
