@@ -83,9 +83,10 @@ function targetOf({ complexCode, lot }: SeriesPart, targets: readonly UploadTarg
 }
 
 /** How the file was read, for whoever asks later. Keys without a value are left out: canonical text has no undefined. */
-function mappingOf({ delimiter, decimal, headerRow, layout, columns, found }: Understood, draft: UploadDraft): unknown {
+function mappingOf({ delimiter, decimal, headerRow, layout, columns, found, workbook, encoding, tubeSheet }: Understood, draft: UploadDraft): unknown {
   const read = columns.map(({ index, header, stem, unit }) => ({ index, header, stem, unit }))
-  return { delimiter, decimal, headerRow, layout, columns: read, found, draft: JSON.parse(JSON.stringify(draft)) as unknown }
+  const sheet = draft.tubeSheet === undefined ? tubeSheet : draft.tubeSheet
+  return { delimiter, decimal, headerRow, layout, columns: read, found, encoding, sheet: workbook?.sheet ?? null, tubeSheet: sheet, draft: JSON.parse(JSON.stringify(draft)) as unknown }
 }
 
 async function settledError(deps: Deps, { actor, programmeId, id }: ConfirmInput, staged: StagedRow): Promise<AppError> {

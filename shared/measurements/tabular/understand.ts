@@ -120,7 +120,7 @@ interface RawInput { structure: TableStructure, columns: readonly ReadColumn[], 
 function rawTubes({ structure, columns, kind, draft, decimal }: RawInput): RawTube[] {
   const { header, body, attributes, layout } = structure
   if (layout === 'long') return longTubes(body, columns, specsOf(kind, 'x').length === 0)
-  if (layout === 'columnPerTube') return columnTubes({ columns, header, attributes, body })
+  if (layout === 'columnPerTube') return columnTubes({ kind, columns, header, attributes, body })
   const matches = header === null ? [] : matchHeaders(header.cells, kind.columns)
   return rowTubes({ kind, columns, header, body, decimal, xUnit: chosenUnit(specsOf(kind, 'x')[0], draft) ?? cornerUnit(matches) })
 }

@@ -2,7 +2,7 @@ import type { Unit } from '../../science/units'
 import type { ColumnSpec, MeasurementKind } from '../types'
 import type { ValueCell } from './cells'
 import { unitlessUnit, type ReadColumn } from './columns'
-import type { HeaderMatch } from './headerText'
+import { plainWords, type HeaderMatch } from './headerText'
 import { readHeadNumber, specsOf } from './layout'
 import { UPLOAD_LIMITS } from './limits'
 import type { DecimalMark } from './numberCell'
@@ -21,17 +21,36 @@ interface ColumnInput {
 }
 
 /** Tubes of a table with a column per tube: heads are names, times run down. An error column is headed like its tube with SD or SE added. */
-export function columnTubes({ columns, header, attributes, body }: ColumnInput): RawTube[] {
+export function columnTubes({ kind, columns, header, attributes, body }: ColumnInput & { kind: MeasurementKind }): RawTube[] {
   const xColumn = columns.find(column => column.spec?.role === 'x') ?? null
-  const tubes = columns.filter(column => column.isTube)
+  const named = columns.filter(column => column.isTube)
+  const beside = besideTubes(named, kind)
+  const tubes = named.filter(column => !beside.has(column))
   const errors = new Map(tubes.flatMap((column) => {
     const owner = tubes.find(candidate => candidate !== column && errorOwner(column.header) === candidate.header.trim().toLowerCase())
     return owner ? [[column, owner] as const] : []
   }))
   return tubes.filter(column => !errors.has(column)).map((column) => {
     const error = [...errors].find(([, owner]) => owner === column)?.[0] ?? null
-    return columnTube({ column, error, xColumn, header, attributes, body })
+    const aux = [...beside].flatMap(([each, { owner, spec }]) => owner === column ? [{ ...each, spec, unit: unitlessUnit(spec) }] : [])
+    return columnTube({ column, error, aux, xColumn, header, attributes, body })
   })
+}
+
+/** Columns that hold another number of each point of a tube: headed like the tube with the number's name before or behind it ('A pixels'). */
+function besideTubes(tubes: readonly ReadColumn[], kind: MeasurementKind): Map<ReadColumn, { owner: ReadColumn, spec: ColumnSpec }> {
+  const beside = new Map<ReadColumn, { owner: ReadColumn, spec: ColumnSpec }>()
+  const byName = new Map(tubes.map(column => [plainWords(column.header), column]))
+  // Only numbers without a unit of their own can be read without asking for one.
+  for (const spec of specsOf(kind, 'aux').filter(one => unitlessUnit(one) !== null)) {
+    for (const column of tubes) {
+      const words = plainWords(column.header)
+      const rest = [...spec.synonyms].sort((a, b) => b.length - a.length).flatMap(name => words.endsWith(` ${name}`) ? [words.slice(0, -name.length - 1)] : words.startsWith(`${name} `) ? [words.slice(name.length + 1)] : [])
+      const owner = rest.map(name => byName.get(name)).find(candidate => candidate !== undefined && candidate !== column)
+      if (owner && !beside.has(column)) beside.set(column, { owner, spec })
+    }
+  }
+  return beside
 }
 
 function errorOwner(header: string): string | null {
@@ -40,9 +59,9 @@ function errorOwner(header: string): string | null {
   return (match?.[1] ?? match?.[2])?.trim().toLowerCase() ?? null
 }
 
-interface OneColumn extends Omit<ColumnInput, 'columns'> { column: ReadColumn, error: ReadColumn | null, xColumn: ReadColumn | null }
+interface OneColumn extends Omit<ColumnInput, 'columns'> { column: ReadColumn, error: ReadColumn | null, aux: readonly ReadColumn[], xColumn: ReadColumn | null }
 
-function columnTube({ column, error, xColumn, header, attributes, body }: OneColumn): RawTube {
+function columnTube({ column, error, aux, xColumn, header, attributes, body }: OneColumn): RawTube {
   const named = (role: ColumnSpec['role']): NamedCell | null => {
     const attribute = attributes.find(candidate => candidate.spec.role === role)
     const text = attribute?.record.cells[column.index] ?? ''
@@ -53,23 +72,25 @@ function columnTube({ column, error, xColumn, header, attributes, body }: OneCol
   })
   const valueOf = (role: ColumnSpec['role']) => attributes.filter(candidate => candidate.spec.role === role).map(value).find(cell => cell.text !== '') ?? null
   const ySpec = column.spec
-  const aux = attributes.filter(candidate => candidate.spec.role === 'aux').map(value)
+  const ofTube = attributes.filter(candidate => candidate.spec.role === 'aux').map(value)
   const points = xColumn === null || ySpec === null
     ? resultPoints(attributes, value)
-    : body.flatMap(record => bodyPoint(record, { column, error, xColumn, ySpec })).map(point => ({ ...point, aux }))
+    : body.flatMap(record => bodyPoint(record, { column, error, aux, xColumn, ySpec })).map(point => ({ ...point, aux: [...point.aux, ...ofTube] }))
   return {
     key: `column ${column.index}`, label: named('tube')?.text ?? column.header, agent: named('agent'), batch: named('batch'), conc: valueOf('conc'), concSe: valueOf('concError'),
     points, conflicts: [], place: `column ${columnLetter(column.index)}, ${rowsText(points.map(point => point.y.row))}`, row: header?.row ?? body[0]?.row ?? 1, column: column.index + 1,
   }
 }
 
+interface BodyColumns { column: ReadColumn, error: ReadColumn | null, aux: readonly ReadColumn[], xColumn: ReadColumn, ySpec: ColumnSpec }
+
 /** An empty cell is a time at which this tube was not measured. */
-function bodyPoint(record: TableRecord, { column, error, xColumn, ySpec }: { column: ReadColumn, error: ReadColumn | null, xColumn: ReadColumn, ySpec: ColumnSpec }): RawPoint[] {
+function bodyPoint(record: TableRecord, { column, error, aux, xColumn, ySpec }: BodyColumns): RawPoint[] {
   if ((record.cells[column.index] ?? '') === '') return []
   const cell = (at: ReadColumn, spec: ColumnSpec | null): ValueCell | null =>
     spec === null ? null : { text: record.cells[at.index] ?? '', row: record.row, column: at.index + 1, spec, unit: at.unit }
   const y = cell(column, ySpec)
-  return y === null ? [] : [{ x: cell(xColumn, xColumn.spec), y, sigma: error === null ? null : cell(error, { ...ySpec, label: `${ySpec.label}, error`, above: 0 }), aux: [] }]
+  return y === null ? [] : [{ x: cell(xColumn, xColumn.spec), y, sigma: error === null ? null : cell(error, { ...ySpec, label: `${ySpec.label}, error`, above: 0 }), aux: aux.flatMap(each => cell(each, each.spec) ?? []) }]
 }
 
 function resultPoints(attributes: readonly AttributeRow[], value: (attribute: AttributeRow) => ValueCell): RawPoint[] {
