@@ -3,7 +3,7 @@ import writeXlsxFile from 'write-excel-file/node'
 import { relaxT1Ir } from '#shared/measurements/relaxT1Ir'
 import { readTable } from '#shared/measurements/tabular/readTable'
 import { RECOVERY_FORM } from './measurementsSupport'
-import { columnRows, longRows, PHANTOM, TEXT_SHAPES, utf8, type Shape } from '../support/tableShapes'
+import { columnRows, joined, longRows, PHANTOM, TEXT_SHAPES, utf8, type Shape } from '../support/tableShapes'
 import { SHEET_SHAPES } from '../support/sheetShapes'
 
 const draft = { conditions: { ...RECOVERY_FORM }, complexCode: 'SK-07', lot: 'B2' }
@@ -52,6 +52,25 @@ describe('what two readings could mean is asked and not guessed away', () => {
   it('commas before three digits everywhere', async () => {
     const understood = await read({ name: '', bytes: utf8('TI (ms);blank;0.5 mM;1 mM\n50;1,234;1,500;2,500\n100;2,500;3,500;4,500\n500;3,500;4,500;5,500\n900;3,500;4,500;5,500\n') })
     expect(understood.problems.map(problem => problem.id)).toContain('decimalDoubt')
+  })
+})
+
+describe('what a file says twice', () => {
+  const twice = `Field: 3 T\nField: 9.4 T\nTemperature: 37 °C\nTemperature: 310.15 K\n${joined(longRows())}`
+  const form = Object.fromEntries(Object.entries(RECOVERY_FORM).filter(([key]) => key !== 'b0_T' && key !== 'temperature_K'))
+
+  it('is asked about where it differs, and a typed value ends the doubt', async () => {
+    const read = (conditions: Record<string, string | number>) => readTable(utf8(twice), { kind: relaxT1Ir, draft: { ...draft, conditions } })
+    const { problems, conditions } = await read(form)
+    expect(problems.filter(problem => problem.id === 'contradiction')).toMatchObject([{ field: 'conditions.b0_T', severity: 'asks', message: expect.stringContaining('row 1 says \'3 T\', row 2 says \'9.4 T\'') }])
+    expect(conditions.b0_T).toBe(3)
+    expect((await read({ ...form, b0_T: 7 })).problems.map(problem => problem.id)).not.toContain('contradiction')
+  })
+
+  it('a tube called mean stays a tube where it has points of its own', async () => {
+    const rows = longRows().map(row => row.map(cell => cell === 'n4' ? 'Mean' : cell))
+    const { tubes } = await read({ name: '', bytes: utf8(joined(rows)) })
+    expect(tubes.map(tube => tube.label)).toEqual(['blank', 'n1', 'n2', 'n3', 'Mean'])
   })
 })
 

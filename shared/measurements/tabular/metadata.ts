@@ -27,13 +27,16 @@ export interface FoundCondition {
   text: string
 }
 
+/** Signs of a line that are looked at: a line about the conditions is short, and searching a long one backwards is slow. */
+const LONGEST = 1_000
+
 export function readMetadata(records: readonly TableRecord[], delimiter: Delimiter): MetadataLine[] {
   return records.filter(record => record.cells.some(cell => cell !== '')).map(record => readLine(record, delimiter))
 }
 
 function readLine(record: TableRecord, delimiter: Delimiter): MetadataLine {
   const { row } = record
-  const raw = trimMarks(record.raw, delimiter)
+  const raw = trimMarks(record.raw.slice(0, LONGEST), delimiter)
   const sign = /[:=]/.exec(raw)
   const cut = raw.indexOf(delimiter)
   const index = record.cells.findIndex((cell, i) => i > 0 && cell !== '')

@@ -54,7 +54,7 @@ export function findStructure(input: StructureInput): TableStructure {
     : { attributes: [], body: below, around: records.slice(0, start) }
   const unitRow = isTransposed ? null : findUnitRow(parted.body[0], kind)
   const width = lastFilled([...(header ? [header] : []), ...parted.attributes.map(attribute => attribute.record), ...(header ? [] : parted.body.slice(0, 50))])
-  const tail = partTail(unitRow === null ? parted.body : parted.body.slice(1), { width, decimal })
+  const tail = partTail(unitRow === null ? parted.body : parted.body.slice(1), { width, decimal, layout })
   return {
     header: isTransposed ? null : header, unitRow, layout, isTransposed, attributes: parted.attributes,
     body: tail.body, summaries: tail.summaries,

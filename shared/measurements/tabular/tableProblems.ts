@@ -1,5 +1,7 @@
+import type { UploadDraft } from '../draft'
 import type { MeasurementKind, UploadProblem } from '../types'
 import { acceptedUnits } from './columns'
+import type { FoundCondition } from './metadata'
 import { asks, blocks, quoted } from './problem'
 import { widthProblems, type TableStructure } from './structure'
 import { tailProblems } from './tail'
@@ -7,6 +9,16 @@ import type { Understood } from './understood'
 
 export function decimalDoubt({ text, row, column }: { text: string, row: number, column: number }): UploadProblem {
   return asks('decimalDoubt', `${quoted(text)} can be a number with a decimal comma or one with thousands: the comma is taken for the decimal mark.`, 'the decimal mark chosen, and thousands parted by spaces', { row, column })
+}
+
+/** Places that say different things of one condition, unless a person has said what counts. */
+export function contradictions(found: readonly FoundCondition[], kind: MeasurementKind, draft: UploadDraft): UploadProblem[] {
+  return kind.conditions.flatMap((spec) => {
+    const [first, ...others] = found.filter(one => one.key === spec.key)
+    const other = others.find(one => one.value !== first?.value)
+    if (first === undefined || other === undefined || Object.hasOwn(draft.conditions ?? {}, spec.key)) return []
+    return [asks('contradiction', `${spec.label}: ${first.place} says ${quoted(first.text)}, ${other.place} says ${quoted(other.text)}; the first counts.`, 'the value typed, or as it is', { field: `conditions.${spec.key}` })]
+  })
 }
 
 export function noTable(isSheet: boolean): UploadProblem {

@@ -22,7 +22,7 @@ import type { Delimiter, TableRecord } from './records'
 import { seriesProblems } from './seriesProblems'
 import { textTable, type SourceTable } from './source'
 import { findStructure, type TableStructure } from './structure'
-import { decimalDoubt, looseProblem, noTable, structureProblems } from './tableProblems'
+import { contradictions, decimalDoubt, looseProblem, noTable, structureProblems } from './tableProblems'
 import { sheetFound, sheetProblems, type SheetFacts } from './tubeSheet'
 import type { Understood } from './understood'
 import { columnTubes, cornerUnit, rowTubes } from './wideTubes'
@@ -59,9 +59,10 @@ export function understandSource(source: SourceTable, { kind, draft = {}, sheet 
   const columns = readColumns({ ...structure, kind, draft })
   const metadata = readMetadata(structure.around, delimiter)
   const inLines = findConditions(metadata, kind.conditions)
-  const found = firstOfEach([...inLines.found, ...impliedConditions(structure, columns), ...source.found, ...sheetFound(sheet)])
+  const everyFound = [...inLines.found, ...impliedConditions(structure, columns), ...source.found, ...sheetFound(sheet)]
+  const found = firstOfEach(everyFound)
   const conditions = mergeConditions(kind, found, draft.conditions)
-  note(problems, ...inLines.problems, ...(hasTable ? [...structureProblems(structure), ...columnProblems(columns, { ...structure, kind, draft })] : []))
+  note(problems, ...inLines.problems, ...contradictions(everyFound, kind, draft), ...(hasTable ? [...structureProblems(structure), ...columnProblems(columns, { ...structure, kind, draft })] : []))
   const loose = looseUnits({ structure, columns, kind, draft, decimal })
   note(problems, ...loose.filter(unit => unit.unit === null).map(unit => looseProblem(unit, kind)))
   const named = { agent: findNamed(metadata, 'agent', kind.columns), batch: findNamed(metadata, 'batch', kind.columns) }
