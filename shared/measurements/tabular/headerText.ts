@@ -26,6 +26,9 @@ export function plainWords(text: string): string {
     .trim()
 }
 
+/** A head with more places to split at is a sentence. */
+const MOST_READINGS = 24
+
 /** Every way in which a head can be split into name and unit: 'TI (ms)', 'TI [ms]', 'TI / ms', 'TI, ms', 'TI_ms', 'TI ms', 'TI'. */
 export function headerReadings(text: string): Reading[] {
   if (text.length > UPLOAD_LIMITS.wordsLength) return [{ name: text.slice(0, UPLOAD_LIMITS.wordsLength), unit: null }]
@@ -39,7 +42,7 @@ export function headerReadings(text: string): Reading[] {
       readings.push({ name: head.slice(0, found.index), unit })
     }
   }
-  return readings
+  return readings.slice(0, MOST_READINGS)
 }
 
 /**

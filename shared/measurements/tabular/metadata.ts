@@ -29,9 +29,11 @@ export interface FoundCondition {
 
 /** Signs of a line that are looked at: a line about the conditions is short, and searching a long one backwards is slow. */
 const LONGEST = 1_000
+/** Lines about the conditions are few; what more stands around a table is words. */
+const MOST_LINES = 1_000
 
 export function readMetadata(records: readonly TableRecord[], delimiter: Delimiter): MetadataLine[] {
-  return records.filter(record => record.cells.some(cell => cell !== '')).map(record => readLine(record, delimiter))
+  return records.filter(record => record.cells.some(cell => cell !== '')).slice(0, MOST_LINES).map(record => readLine(record, delimiter))
 }
 
 function readLine(record: TableRecord, delimiter: Delimiter): MetadataLine {
