@@ -56,6 +56,11 @@ describe('titration curves', () => {
     expect(fit.dof).toBe(176)
   })
 
+  it('agree to 1e-6 with another least-squares program over a solver of its own [scipy least_squares, bench/scipy_titration.py]', () => {
+    const scipy = [9.521322, 15.672659, 18.392247, 8.612411]
+    refined(systemOff(0.5), curves).constants.forEach((one, r) => expect(Math.abs(one.logBeta - scipy[r]!)).toBeLessThan(1e-6))
+  })
+
   it('return the constants to 1e-6 from curves without noise, whatever the start', () => {
     const exact = curves.map((one, i) => ({ ...one, readings: file.curves[i]!.exact }))
     for (const by of [-1, 0.3, 1]) for (const one of refined(systemOff(by), exact).constants) expect(Math.abs(one.logBeta - file.true[one.name]!)).toBeLessThan(1e-6)
@@ -122,12 +127,12 @@ describe('titration curves', () => {
         const shaken = { ...one, readings: one.volumes_mL.map(() => 7), volumes_mL: one.volumes_mL.map(v => Math.max(0, v + one.sigma_mL * random.normal())) }
         return { ...one, readings: forward(systemOff(0), shaken).map(pcH => pcH + one.sigma_reading * random.normal()) }
       })
-      for (const { name, logBeta, se } of refined(systemOff(0), noisy).constants) if (Math.abs(logBeta - file.true[name]!) < 1.959964 * se!) inside.set(name, inside.get(name)! + 1)
+      for (const { name, interval } of refined(systemOff(0), noisy).constants) if (interval![0] < file.true[name]! && file.true[name]! < interval![1]) inside.set(name, inside.get(name)! + 1)
     }
     console.log('coverage', [...inside].map(([name, count]) => `${name} ${(100 * count / runs).toFixed(1)} %`).join(', '))
     const all = [...inside.values()].reduce((sum, count) => sum + count, 0) / (4 * runs)
     expect(all).toBeGreaterThan(0.94)
-    expect(all).toBeLessThan(0.965)
+    expect(all).toBeLessThan(0.96)
   }, 600_000)
 })
 

@@ -66,6 +66,8 @@ export interface RefinementRefused {
 /** How far from its start a log β may go. */
 export const REACH = 12
 const PASSES = 12
+/** While the weights still move there is no use in the last digits. */
+const ROUGH = { reductionTolerance: 1e-4, stepTolerance: 1e-4, polishSteps: 0 } as const
 
 /** What a refinement works on; kept apart so that profiles can hold constants without laying the curves out anew. */
 export interface Bench {
@@ -128,13 +130,15 @@ export function minimise(bench: Bench, start: Float64Array, held: ReadonlyMap<nu
   if (!sweep(bench, full, { fitted, jacobian, sigma })) return null
   let solution: Solution | null = null
   const origin = startOf(bench)
+  let isRough = true
   for (let pass = 0; pass < PASSES; pass++) {
-    solution = solve(problemOf(bench, { full, free, sigma, origin }), free.map(j => full[j]!))
+    solution = solve(problemOf(bench, { full, free, sigma, origin }), free.map(j => full[j]!), isRough ? ROUGH : {})
     free.forEach((j, c) => { full[j] = solution!.parameters[c]! })
     if (!sweep(bench, full, { fitted, jacobian, sigma: fresh })) return null
     const moved = fresh.reduce((top, s, i) => Math.max(top, Math.abs(s / sigma[i]! - 1)), 0)
     sigma.set(fresh)
-    if (moved < 1e-7) break
+    if (moved < 1e-7 && !isRough) break
+    isRough = moved > 1e-3
   }
   return solution && { full, solution, sigma, fitted }
 }
