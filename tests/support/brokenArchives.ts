@@ -67,6 +67,7 @@ export const BROKEN_ARCHIVES: Broken[] = [
   { name: 'a cell in row 0', bytes: cell('<c r="D0"><v>1</v></c>'), says: /./ },
   { name: 'a cell in the last row a sheet can have', bytes: withSheet(xml => xml.replace('</sheetData>', '<row r="1048576"><c r="A1048576"><v>1</v></c></row></sheetData>')), says: /row 1048576/ },
   { name: 'a cell in a column far out', bytes: cell('<c r="XFD5"><v>1</v></c>'), says: /column 16384/ },
+  { name: 'a cell far out whose place is written over two lines', bytes: cell('<c r\n=\n"XFD5"><v>1</v></c>'), says: /column 16384/ },
   { name: 'a shared text that is not there', bytes: cell('<c r="D5" t="s"><v>99</v></c>'), says: /./ },
   { name: 'rows in disorder', bytes: withSheet(xml => xml.replace('<row r="3">', '<row r="30">').replaceAll(/"([A-D])3"/g, '"$130"')), says: /cannot be read/ },
   { name: 'a formula never calculated', bytes: cell('<c r="D5"><f>A1*2</f></c>'), says: /D5 holds a formula whose value is not stored/ },

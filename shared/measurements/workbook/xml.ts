@@ -17,7 +17,7 @@ export function scanTags(xml: string, onTag: (tag: Tag) => void): void {
     }
     const close = xml.indexOf('>', open)
     if (close < 0) return
-    onTag({ ...readTag(xml.slice(open + 1, close)), textBefore: text, start: open, end: close + 1 })
+    onTag(readTag(xml, { open, close, textBefore: text }))
     text = ''
     at = close + 1
   }
@@ -32,19 +32,21 @@ function skipTo(xml: string, open: number): number | null {
   return found < 0 ? xml.length : found + end.length
 }
 
-function readTag(inside: string): Omit<Tag, 'textBefore' | 'start' | 'end'> {
-  const isEnd = inside.startsWith('/')
-  const isEmpty = inside.endsWith('/') && !isEnd
-  const last = isEmpty ? inside.length - 1 : inside.length
-  let cut = isEnd ? 1 : 0
-  let begin = cut
+function readTag(xml: string, { open, close, textBefore }: { open: number, close: number, textBefore: string }): Tag {
+  const isEnd = xml.charCodeAt(open + 1) === 47
+  const isEmpty = !isEnd && xml.charCodeAt(close - 1) === 47
+  const last = isEmpty ? close - 1 : close
+  const first = isEnd ? open + 2 : open + 1
+  let cut = first
+  let begin = first
   // Sheets have hundreds of thousands of tags: the name is found sign by sign.
-  for (; cut < last && inside.charCodeAt(cut) > 32; cut++) if (inside.charCodeAt(cut) === 58) begin = cut + 1
-  return { name: inside.slice(begin, cut), prefix: inside.slice(isEnd ? 1 : 0, begin), isEnd, isEmpty, attributes: inside.slice(cut, last) }
+  for (; cut < last && xml.charCodeAt(cut) > 32; cut++) if (xml.charCodeAt(cut) === 58) begin = cut + 1
+  return { name: xml.slice(begin, cut), prefix: xml.slice(first, begin), isEnd, isEmpty, attributes: xml.slice(cut, last), textBefore, start: open, end: close + 1 }
 }
 
 /** Value of an attribute, whatever its prefix; null where the tag has none. */
 export function attribute({ attributes }: Pick<Tag, 'attributes'>, name: string): string | null {
+  if (!attributes.includes(name)) return null
   for (const [, key, double, single] of attributes.matchAll(/\s(?:[\w-]+:)?([\w-]+)\s*=\s*(?:"([^"]*)"|'([^']*)')/g)) {
     if (key === name) return plainText(double ?? single ?? '')
   }
