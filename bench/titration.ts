@@ -7,7 +7,7 @@ import { refineConstants, type TitrationSystem } from '../shared/science/titrati
 const FILE = new URL('../fixtures/reference/titration/curves.json', import.meta.url)
 const stored = JSON.parse(readFileSync(FILE, 'utf8')) as { true: Record<string, number>, pKw: number, curves: Omit<VolumetricCurve, 'kind'>[] }
 const NAMES = ['HL', 'H2L', 'H3L', 'ML']
-const POWERS = [{ L: 1, H: 1 }, { L: 1, H: 2 }, { L: 1, H: 3 }, { M: 1, L: 1 }]
+const POWERS: readonly Record<string, number>[] = [{ L: 1, H: 1 }, { L: 1, H: 2 }, { L: 1, H: 3 }, { M: 1, L: 1 }]
 const OFF = 0.5
 
 /** 3 curves × 60 points × 4 constants, started half a unit off, weights brought up to date; against scipy least_squares over the same Newton solver in numpy. */

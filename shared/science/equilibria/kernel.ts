@@ -8,6 +8,8 @@ import { BALANCE_TOLERANCE, solveSystem, type SpeciationRefused } from './solve'
 import type { CompiledSystem } from './system'
 
 const STEP_LIMIT = 60
+/** A change of ln(free) from which on the order of abundance may have changed. */
+const FAR = 0.3
 /** Lowest rise that a line search cannot tell from rounding, in units of Σ c + |F|. */
 const ROUNDING = 4e-15
 
@@ -28,6 +30,8 @@ export interface Kernel {
 }
 
 interface Work {
+  /** Largest change of ln(free) the last Newton step asked for. */
+  longest: number
   basis: PivotBasis | null
   /** Non-zero entries of the basis by species, laid out as the powers below. */
   readonly basisFirst: Int32Array
@@ -67,7 +71,7 @@ export function openKernel(system: CompiledSystem): Kernel {
   return {
     system, n, m, lnBeta: system.lnBeta.slice(), totals_M: system.totals_M.slice(), u: vector(), c: new Float64Array(m), steps: 0, balanceError: 0,
     work: {
-      basis: null, basisFirst: new Int32Array(m + 1), basisIndex: new Int32Array(n * m), basisValue: new Float64Array(n * m), size: vector(),
+      longest: 0, basis: null, basisFirst: new Int32Array(m + 1), basisIndex: new Int32Array(n * m), basisValue: new Float64Array(n * m), size: vector(),
       totals: vector(), trial: vector(), trialC: new Float64Array(m), gap: vector(), hessian: new Float64Array(n * n), scale: vector(), dv: vector(), du: vector(),
       first, index: Int32Array.from(index), value: Float64Array.from(value),
     },
@@ -82,17 +86,21 @@ export function solvePoint(kernel: Kernel): SpeciationRefused | null {
   const { work } = kernel
   let objective = concentrationsAt(kernel, kernel.u, kernel.c)
   kernel.steps = 0
+  let isFar = true
   for (let turn = 0; turn <= STEP_LIMIT && Number.isFinite(objective); turn++) {
-    const fresh = chooseBasis(kernel)
+    // a short step leaves the order of abundance as it was: the basis is looked at again only after a long one
+    const fresh = isFar && chooseBasis(kernel)
     const rowError = measureGap(kernel)
     if (rowError <= BALANCE_TOLERANCE / 4 && worstBalance(kernel) <= BALANCE_TOLERANCE) return null
     if (!newton(kernel, work.basis!)) {
       if (fresh) break
       work.basis = null
+      isFar = true
       continue
     }
     const next = search(kernel, objective)
     if (Number.isNaN(next)) break
+    isFar = work.longest > FAR
     objective = next
     kernel.steps++
   }
@@ -193,6 +201,7 @@ function search(kernel: Kernel, objective: number): number {
     longest = Math.max(longest, Math.abs(work.du[k]!))
     slope -= work.gap[k]! * work.dv[k]!
   }
+  work.longest = longest
   if (!(longest < Infinity)) return NaN
   for (let j = 0; j < kernel.m; j++) sum += c[j]!
   let length = longest > 1 ? (1 + Math.log(longest)) / longest : 1
