@@ -1,6 +1,7 @@
 import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
-import { openKernel, solvePoint } from '#shared/science/equilibria/kernel'
+import { solvePoint } from '#shared/science/equilibria/kernel'
+import { openKernel } from '#shared/science/equilibria/kernelLayout'
 import { BALANCE_TOLERANCE, solveSystem } from '#shared/science/equilibria/solve'
 import { compileSystem, type CompiledSystem } from '#shared/science/equilibria/system'
 

@@ -117,7 +117,7 @@ describe('titration curves', () => {
     expect(refined(systemOff(0.5), curves)).toEqual(refined(systemOff(0.5), curves))
   })
 
-  it.runIf(process.env.LANTHORN_TEST === 'full')('hold the true constants in 94 to 96 % of their 95 % intervals over 4,000 simulated intervals a constant', () => {
+  it.runIf(process.env.LANTHORN_TEST === 'full')('hold the true constants in 94 to 96 % of their 95 % intervals, over four constants in 4,000 simulated sets of curves', () => {
     const random = createRandom('titration-coverage')
     const inside = new Map(NAMES.map(name => [name, 0]))
     const runs = 4000

@@ -2,7 +2,8 @@
  * Speciation along a path: against pH, or against the total of one component. One layout for all points; each starts from the points before it,
  * extrapolated. Precipitation is not modelled: solids that would form are not looked for (see {@link NO_SOLIDS}).
  */
-import { openKernel, solvePoint, type Kernel } from './kernel'
+import { solvePoint } from './kernel'
+import { openKernel, type Kernel } from './kernelLayout'
 import { solveSystem, type SpeciationRefused } from './solve'
 import { compileSystem, type Component, type Species } from './system'
 

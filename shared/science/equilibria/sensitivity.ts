@@ -3,7 +3,8 @@
  * the transposed system, so the cost does not grow with the number of constants.
  */
 import { factorScaled, solveScaled } from './cholesky'
-import { assembleHessian, chooseBasis, type Kernel } from './kernel'
+import { assembleHessian, chooseBasis } from './kernel'
+import type { Kernel } from './kernelLayout'
 
 export interface Sensitivity {
   /** ∂ ln(free) / ∂ ln β of every species, in the order of the kernel. */

@@ -1,5 +1,6 @@
 /** The curve that a set of constants predicts, with its derivatives. */
-import { openKernel, solvePoint, type Kernel } from '../equilibria/kernel'
+import { solvePoint } from '../equilibria/kernel'
+import { openKernel, type Kernel } from '../equilibria/kernelLayout'
 import { differentiate, openSensitivity, type Sensitivity } from '../equilibria/sensitivity'
 import { compileSystem, type Species } from '../equilibria/system'
 import type { CurvePoints } from './curves'
