@@ -3,7 +3,7 @@ import { describe, expect, it } from 'vitest'
 import { moveToIonicStrength } from '#shared/science/equilibria/activity'
 import { findMissingProtonation, findUnbalanced, reconcileForms } from '#shared/science/equilibria/checkConstants'
 import { comparable, type ConstantConditions } from '#shared/science/equilibria/comparable'
-import { conditionalConstant } from '#shared/science/equilibria/conditional'
+import { conditionalConstant, pM } from '#shared/science/equilibria/conditional'
 
 interface Row { ion: string, logK: number, tolerance: number }
 const series = JSON.parse(readFileSync(new URL('../../fixtures/reference/equilibria/edta.json', import.meta.url), 'utf8')) as { lookedUp: Row[], fromMemory: Row[], zinc: { I_M: number, logK: number }[] }
@@ -27,6 +27,21 @@ describe('published series', () => {
     const loss = series.lookedUp.map(row => row.logK - conditionalConstant({ logK: row.logK, ligandProtonation: protonation }, 7.4).logKCond)
     loss.forEach(value => expect(value).toBeCloseTo(loss[0]!, 12))
     expect(loss[0]).toBeCloseTo(2.79, 2)
+  })
+})
+
+interface Published { ligands: Record<string, { protonation: number[], logK: { Gd: { value: number } } }> }
+const published = JSON.parse(readFileSync(new URL('../../fixtures/reference/stability/published.json', import.meta.url), 'utf8')) as Published
+
+describe('pGd at pH 7.4 with 1 µM metal and 10 µM ligand', () => {
+  it.each([
+    ['DTPA', 19.10], ['DTPA-BMA', 15.83], ['DOTA', 18.65], ['HP-DO3A', 18.16], ['DO3A', 16.02], ['BT-DO3A', 15.57], ['EDTA', 15.51], ['DTMA', 11.58],
+  ])('of %s is %f, and log K′ lies log 9 below it [computed from the published constants by the mass balance]', (ligand, value) => {
+    const { protonation, logK } = published.ligands[ligand]!
+    const complex = { logK: logK.Gd.value, ligandProtonation: protonation }
+    // 0.02: two printed digits; log 9 holds while 1 µM of ligand is bound and 9 µM is left
+    expect(Math.abs(pM(complex) - value)).toBeLessThan(0.02)
+    expect(Math.abs(pM(complex) - conditionalConstant(complex, 7.4).logKCond - Math.log10(9))).toBeLessThan(1e-4)
   })
 })
 

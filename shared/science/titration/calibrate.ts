@@ -85,7 +85,7 @@ function fitRun(run: CalibrationRun, start: readonly number[], free: readonly nu
   let solution: Solution | null = null
   for (let pass = 0; pass < 4; pass++) {
     const at = all
-    const weights = run.volumes_mL.map((v, i) => 1 / Math.hypot(run.sigma_mV, run.sigma_mL * slopeAlong(run, at, v, i)))
+    const weights = run.volumes_mL.map(v => 1 / Math.hypot(run.sigma_mV, run.sigma_mL * slopeAlong(run, at, v)))
     const problem: LeastSquaresProblem = {
       n: weights.length, m: free.length, lower: new Float64Array(free.length).fill(-1e6), upper: new Float64Array(free.length).fill(1e6),
       evaluate: (p, residual, jacobian) => {
@@ -121,7 +121,8 @@ function modelAt(run: StrongRun, p: readonly number[], v: number): { value: numb
   return { value: reading_mV, gradient: [1, Math.log10(h), perLnH_mV * lnPerTotal * byEnd, byPKw, h, kw / h], perTotal: perLnH_mV * lnPerTotal }
 }
 
-function slopeAlong(run: StrongRun, p: readonly number[], v: number, _i: number): number {
+/** mV per mL along the run, which turns the error of a volume into one of the reading. */
+function slopeAlong(run: StrongRun, p: readonly number[], v: number): number {
   const total = run.acid_mmol * (1 - v / p[2]!) / (run.vessel_mL + v)
   return modelAt(run, p, v).perTotal * (-run.acid_mmol / p[2]! - total) / (run.vessel_mL + v)
 }
