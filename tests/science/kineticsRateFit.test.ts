@@ -50,7 +50,7 @@ describe('rates against acid and metal', () => {
       for (let i = 0; i < runs; i++) if (fitted(made(`bound-${k0}-${i}`, k0, 2e-5), 'k0_per_s', 'k1_per_M_s').terms[0]!.upper95 >= k0) inside++
       expect(inside / runs).toBeGreaterThan(0.93)
     }
-  })
+  }, 60_000)
 
   it('tells a zinc term from acid where both were varied, and refuses terms that were not', () => {
     const random = createRandom('zinc')

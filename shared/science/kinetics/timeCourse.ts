@@ -142,7 +142,7 @@ function exponential(data: Data, known: number | null): TimeCourse | KineticsRef
 function secondExponentialP(data: Data, end: number | null, single: number): number | null {
   const dof = data.t.length - (end === null ? 5 : 4)
   if (dof < 3) return null
-  const grid = rateGrid(data, 40)
+  const grid = rateGrid(data, 24)
   let best = single
   grid.forEach((slow, i) => grid.slice(i + 1).forEach(fast => { best = Math.min(best, chi2At(data, end, slow, fast)) }))
   return best > 0 ? fUpperP((single - best) / 2 / (best / dof), 2, dof) : null
