@@ -99,7 +99,7 @@ describe('declaration', () => {
     expect(findModel('constructor')).toBeNull()
   })
   it('rejects bounds the wrong way round and a separable part that leaves a parameter out', () => {
-    const { names: _names, evaluate: _evaluate, jacobian: _jacobian, ...spec } = inversionRecovery3
+    const { names: _names, lower: _lower, upper: _upper, evaluate: _evaluate, jacobian: _jacobian, ...spec } = inversionRecovery3
     expect(() => defineModel({ ...spec, params: { ...spec.params, t1_s: { label: 'T1', unit: 's', min: 2, max: 1 } } })).toThrow('bounds of t1_s')
     expect(() => defineModel({ ...spec, separable: { ...spec.separable!, linear: ['a_au'] } })).toThrow('does not cover')
   })

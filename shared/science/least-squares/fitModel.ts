@@ -2,10 +2,12 @@ import type { Model, Settings } from '../models/define'
 import { informationOf } from './covariance'
 import { prepareData, refuse, type FitData, type PreparedData } from './fitData'
 import type { FitOutcome } from './outcome'
-import type { LeastSquaresProblem, SolveOptions } from './problem'
+import type { LeastSquaresProblem, Solution, SolveOptions } from './problem'
+import { projectQuickly, QUICK_PARAMETERS, solveQuickly, type QuickFit } from './quick'
 import { reportFit } from './reportFit'
 import { findSecondOpinion } from './secondOpinion'
 import { solve } from './trustRegion'
+import { sumOfSquares } from './workspace'
 import { createSearches, type Searches, type SeparableSearch } from './varpro'
 
 export type { FitData } from './fitData'
@@ -55,10 +57,12 @@ export function fitModel(model: Model, data: FitData, options: FitOptions = {}):
   const free = model.names.flatMap((name, j) => options.fixed && name in options.fixed ? [] : [j])
   const prepared = prepareData(model, data, options.settings ?? {}, free.length)
   if (!prepared.ok) return prepared
-  const start = findStart(model, prepared, options)
+  const weights = prepared.sigma && prepared.sigma.map(s => 1 / s)
+  const quick = fitQuickly(model, prepared, weights, options)
+  const start = quick?.parameters ?? findStart(model, prepared, options)
   if (!start) return refuse('noStart', 'The points give no start values for this model.', 'A start value for every parameter, or other points.')
   const problem = problemOf(model, prepared, free, start)
-  const solution = solve(problem, free.map(j => start[j]!), options.solve)
+  const solution = quick === null ? solve(problem, free.map(j => start[j]!), options.solve) : solutionAt(problem, quick)
   if (solution.stop === 'notFinite') {
     return refuse('modelNotFinite', 'The model has no finite value at the start values.', 'Start values at which the model can be computed.')
   }
@@ -67,6 +71,30 @@ export function fitModel(model: Model, data: FitData, options: FitOptions = {}):
   const information = informationOf(solution.jacobian, problem.n, solution.atBound)
   const secondOpinion = options.secondOpinion ? findSecondOpinion(problem, solution, free.map(j => start[j]!)) : null
   return reportFit({ model, data, prepared, options, free, parameters, solution, information, secondOpinion })
+}
+
+/**
+ * The quick way for few parameters that are well told apart and away from their bounds, which most relaxation fits are: from the projection where the model is
+ * separable, else from the start given or guessed. Null sends the fit through the full search.
+ */
+function fitQuickly(model: Model, prepared: PreparedData, weights: readonly number[] | null, options: FitOptions): QuickFit | null {
+  if (options.fixed || options.solve || model.names.length > QUICK_PARAMETERS || prepared.x.length <= model.names.length) return null
+  const data = { x: prepared.x, y: prepared.y, weights, settings: prepared.settings }
+  if (options.start) {
+    const start = findStart(model, prepared, options)
+    return start && solveQuickly(model, data, start)
+  }
+  const search = options.search ?? (model.separable ? (options.searches ?? createSearches()).find(model, { x: prepared.x, sigma: prepared.sigma, settings: prepared.settings }) : null)
+  return search && projectQuickly(model, data, search)
+}
+
+/** The end of a quick fit as a solve reports it. */
+function solutionAt(problem: LeastSquaresProblem, { parameters, evaluations }: QuickFit): Solution {
+  const residual = new Float64Array(problem.n)
+  const jacobian = new Float64Array(problem.n * problem.m)
+  problem.evaluate(parameters, residual, jacobian)
+  const sum = sumOfSquares(residual)
+  return { parameters, residual, jacobian, sumOfSquares: sum, atBound: new Array<boolean>(problem.m).fill(false), evaluations: evaluations + 1, stop: sum === 0 ? 'exact' : 'smallStep', converged: true }
 }
 
 function checkNames(model: Model, { fixed, start }: FitOptions): void {

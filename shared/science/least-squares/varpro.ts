@@ -16,6 +16,10 @@ export interface SeparableSearch {
    * @param logTolerance accuracy of ln τ; coarse where a descent follows. Default 1e-7
    */
   search: (y: ArrayLike<number>, logTolerance?: number) => Projection
+  /**
+   * A start for a descent, read off the grid alone: τ by a parabola through its best three points, the coefficients of the best one. No model value is computed.
+   */
+  seed: (y: ArrayLike<number>) => { readonly tau: number, readonly linear: Float64Array }
   /** The same for one given τ. */
   projectAt: (tau: number, y: ArrayLike<number>) => Projection
 }
@@ -46,11 +50,21 @@ export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: Ar
     return orthonormalise(q, n, k)
   }
   const taus = logarithmicGrid(separable.range(x), model.params[separable.nonlinear]!)
+  const triangles: Float64Array[] = []
   const grid = taus.map((tau) => {
     const q = new Float64Array(n * k)
-    fill(tau, q)
+    triangles.push(fill(tau, q))
     return q
   })
+  const logTaus = taus.map(Math.log)
+  const wySeed = new Float64Array(n)
+  const linearSeed = new Float64Array(k)
+  const seed = (y: ArrayLike<number>) => {
+    for (let i = 0; i < n; i++) wySeed[i] = weights ? y[i]! * weights[i]! : y[i]!
+    const best = bestOfGrid(grid, wySeed, n, k)
+    backSubstituteInto(linearSeed, triangles[best]!, grid[best]!, wySeed, n, k)
+    return { tau: Math.exp(parabolaTop(logTaus, grid, wySeed, { best, n, k })), linear: linearSeed }
+  }
   const scratch = new Float64Array(n * k)
   const projectAt = (tau: number, y: ArrayLike<number>): Projection => {
     const r = fill(tau, scratch)
@@ -67,7 +81,7 @@ export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: Ar
     const bracket = [best - 1, best, best + 1].map(g => Math.log(taus[Math.min(Math.max(g, 0), GRID - 1)]!)) as [number, number, number]
     return projectAt(Math.exp(minimise(objective, bracket, logTolerance)), y)
   }
-  return { search, projectAt }
+  return { search, projectAt, seed }
 }
 
 /** Searches of one series by model, times, weights and settings: tubes measured alike share one grid. */
@@ -93,6 +107,62 @@ function logarithmicGrid([low, high]: readonly [number, number], { min, max }: M
   const from = Math.max(low, min)
   const ratio = Math.min(high, max) / from
   return Array.from({ length: GRID }, (_, g) => from * ratio ** (g / (GRID - 1)))
+}
+
+/** Sum of squares of y that the basis of one grid point holds. */
+function heldBy(q: Float64Array, y: Float64Array, n: number, k: number): number {
+  let held = 0
+  for (let c = 0; c < k; c++) {
+    const at = c * n
+    let product = 0
+    for (let i = 0; i < n; i++) product += q[at + i]! * y[i]!
+    held += product * product
+  }
+  return held
+}
+
+const STRIDE = 3
+
+/** Best grid point: every third one first, then the neighbours of the best of these. Valleys of sums of exponentials are wider than three points of the grid. */
+function bestOfGrid(grid: readonly Float64Array[], y: Float64Array, n: number, k: number): number {
+  let best = 0
+  let most = -1
+  for (let g = 0; g < grid.length; g += STRIDE) {
+    const held = heldBy(grid[g]!, y, n, k)
+    if (held > most) {
+      most = held
+      best = g
+    }
+  }
+  const from = Math.max(0, best - STRIDE + 1)
+  const to = Math.min(grid.length - 1, best + STRIDE - 1)
+  const coarse = best
+  for (let g = from; g <= to; g++) {
+    if (g === coarse) continue
+    const held = heldBy(grid[g]!, y, n, k)
+    if (held > most) {
+      most = held
+      best = g
+    }
+  }
+  return best
+}
+
+/** ln τ at the top of the parabola through the best point and its neighbours; the point itself at the end of the grid. */
+function parabolaTop(logTaus: readonly number[], grid: readonly Float64Array[], y: Float64Array, { best, n, k }: { best: number, n: number, k: number }): number {
+  if (best === 0 || best === grid.length - 1) return logTaus[best]!
+  const [low, here, high] = [heldBy(grid[best - 1]!, y, n, k), heldBy(grid[best]!, y, n, k), heldBy(grid[best + 1]!, y, n, k)]
+  const bend = low - 2 * here + high
+  return bend < 0 ? logTaus[best]! + (0.5 * (low - high) / bend) * (logTaus[best + 1]! - logTaus[best]!) : logTaus[best]!
+}
+
+function backSubstituteInto(linear: Float64Array, r: Float64Array, q: Float64Array, y: Float64Array, n: number, k: number): void {
+  for (let c = k - 1; c >= 0; c--) {
+    let sum = 0
+    for (let i = 0; i < n; i++) sum += q[c * n + i]! * y[i]!
+    for (let d = c + 1; d < k; d++) sum -= r[c * k + d]! * linear[d]!
+    linear[c] = r[c * k + c] === 0 ? 0 : sum / r[c * k + c]!
+  }
 }
 
 /** Grid point whose basis holds most of y: the one that leaves least. */

@@ -92,6 +92,9 @@ export interface ModelSpec<P extends string> {
 /** A declared model with the forms that follow from its declaration. */
 export interface Model<P extends string = string> extends ModelSpec<P> {
   readonly names: readonly P[]
+  /** Bounds in the order of the parameter vector. */
+  readonly lower: Float64Array
+  readonly upper: Float64Array
   /** Model value for parameters by name. */
   evaluate: (x: number, parameters: Readonly<Record<P, number>>, settings?: Settings) => number
   /** ∂f/∂p by name. */
@@ -109,6 +112,8 @@ export function defineModel<P extends string>(spec: ModelSpec<P>): Model<P> {
   return {
     ...spec,
     names,
+    lower: Float64Array.from(names, name => spec.params[name].min),
+    upper: Float64Array.from(names, name => spec.params[name].max),
     evaluate: (x, parameters, settings = {}) =>
       spec.valueAndGradient(x, toVector(parameters), withStandards(spec.settings, settings), new Float64Array(names.length)),
     jacobian: (x, parameters, settings = {}) => {

@@ -1,0 +1,250 @@
+import type { Model, Settings } from '../models/define'
+import type { SeparableSearch } from './varpro'
+
+/** Points as the fit uses them; weights are 1/σ, null for equal ones. */
+export interface QuickData {
+  readonly x: ArrayLike<number>
+  readonly y: ArrayLike<number>
+  readonly weights: ArrayLike<number> | null
+  readonly settings: Settings
+}
+
+/** Minimum with the inverse of JᵀWJ: parameters, sum of squares and what their covariance needs. */
+export interface QuickFit {
+  readonly parameters: Float64Array
+  /** Weighted residual sum of squares. */
+  readonly sumOfSquares: number
+  /** (JᵀWJ)⁻¹ by row. */
+  readonly inverse: Float64Array
+  readonly evaluations: number
+}
+
+/** Most parameters; more gain nothing from small loops. */
+export const QUICK_PARAMETERS = 4
+const MOST_EVALUATIONS = 40
+const STEP = 1e-11
+/** Square of the smallest scaled pivot above which normal equations keep eleven digits. */
+const PIVOT = 1e-4
+const FIRST_DAMPING = 1e-3
+
+const gradient = new Float64Array(QUICK_PARAMETERS)
+const normal = new Float64Array(QUICK_PARAMETERS ** 2)
+const factor = new Float64Array(QUICK_PARAMETERS ** 2)
+const right = new Float64Array(QUICK_PARAMETERS)
+const trialNormal = new Float64Array(QUICK_PARAMETERS ** 2)
+const trialRight = new Float64Array(QUICK_PARAMETERS)
+const step = new Float64Array(QUICK_PARAMETERS)
+const scale = new Float64Array(QUICK_PARAMETERS)
+const current = new Float64Array(QUICK_PARAMETERS)
+const trial = new Float64Array(QUICK_PARAMETERS)
+
+/**
+ * Levenberg–Marquardt on the normal equations for few, well told apart parameters away from their bounds: nothing is stored but JᵀWJ and JᵀWr, which
+ * a small fit builds while it computes the model. It ends when the undamped step no longer moves a parameter by 1e-11 of itself.
+ * @param start inside the bounds
+ * @returns null whenever anything is not plain: ill conditioned, a bound in reach, no convergence, a value that is not finite. Then the full search decides
+ * @source Levenberg, Q. Appl. Math. 2, 164 (1944); Marquardt, J. SIAM 11, 431 (1963)
+ */
+export function solveQuickly(model: Model, data: QuickData, start: ArrayLike<number>): QuickFit | null {
+  const m = model.names.length
+  if (m > QUICK_PARAMETERS || data.x.length < m) return null
+  for (let j = 0; j < m; j++) current[j] = start[j]!
+  let sum = accumulate(model, data, current, normal, right)
+  let damping = 0
+  let evaluations = 1
+  if (!(sum < Infinity)) return null
+  for (;;) {
+    if (!factorise(m, damping)) return null
+    const length = solveStep(m)
+    // Near rounding of the signal a sum of squares says nothing of the parameters any more.
+    if (damping === 0 && length <= STEP) break
+    if (evaluations >= MOST_EVALUATIONS || !moveInside(model, m)) return null
+    const next = accumulate(model, data, trial, trialNormal, trialRight)
+    evaluations += 1
+    if (next <= sum * (1 + 1e-12) || (damping === 0 && length <= 1e-7 && next <= sum * (1 + 1e-6))) {
+      for (let j = 0; j < m; j++) current[j] = trial[j]!
+      normal.set(trialNormal)
+      right.set(trialRight)
+      sum = next
+      damping = damping > 1e-7 ? damping * 0.1 : 0
+    } else {
+      if (!(damping < 1e6)) return null
+      damping = damping === 0 ? FIRST_DAMPING : damping * 10
+    }
+  }
+  return { parameters: current.slice(0, m), sumOfSquares: sum, inverse: invert(m), evaluations }
+}
+
+const seeded = new Float64Array(QUICK_PARAMETERS)
+
+/**
+ * Variable projection with weights and covariance: the start comes from the grid of a prepared search, so that none is needed.
+ * @param search prepared for the same model, times, weights and settings
+ * @source Golub & Pereyra, SIAM J. Numer. Anal. 10, 413 (1973)
+ */
+export function projectQuickly(model: Model, data: QuickData, search: SeparableSearch): QuickFit | null {
+  const { separable, names } = model
+  if (separable === null || names.length > QUICK_PARAMETERS) return null
+  const { tau, linear } = search.seed(data.y)
+  for (let j = 0; j < names.length; j++) {
+    const c = separable.linear.indexOf(names[j]!)
+    seeded[j] = c < 0 ? tau : linear[c]!
+    if (!(seeded[j]! > model.lower[j]! && seeded[j]! < model.upper[j]!)) return null
+  }
+  return solveQuickly(model, data, seeded)
+}
+
+/** Sum of squares at p, JᵀWJ (lower half) and JᵀW(y − f). */
+function accumulate(model: Model, { x, y, weights, settings }: QuickData, p: Float64Array, matrix: Float64Array, vector: Float64Array): number {
+  const m = model.names.length
+  if (m === 3) return accumulateThree(model, { x, y, weights, settings }, p, matrix, vector)
+  if (m === 2) return accumulateTwo(model, { x, y, weights, settings }, p, matrix, vector)
+  matrix.fill(0)
+  vector.fill(0)
+  let sum = 0
+  for (let i = 0; i < x.length; i++) {
+    const value = model.valueAndGradient(x[i]!, p, settings, gradient)
+    const w = weights === null ? 1 : weights[i]!
+    const residual = w * (y[i]! - value)
+    sum += residual * residual
+    for (let a = 0; a < m; a++) {
+      const ga = w * gradient[a]!
+      vector[a]! += ga * residual
+      for (let b = 0; b <= a; b++) matrix[a * m + b]! += ga * w * gradient[b]!
+    }
+  }
+  return sum
+}
+
+/** The same for three parameters, in variables that stay in registers: most relaxation fits are these. */
+function accumulateThree(model: Model, { x, y, weights, settings }: QuickData, p: Float64Array, matrix: Float64Array, vector: Float64Array): number {
+  let sum = 0, v0 = 0, v1 = 0, v2 = 0, m00 = 0, m10 = 0, m11 = 0, m20 = 0, m21 = 0, m22 = 0
+  for (let i = 0; i < x.length; i++) {
+    const value = model.valueAndGradient(x[i]!, p, settings, gradient)
+    const w = weights === null ? 1 : weights[i]!
+    const residual = w * (y[i]! - value)
+    const g0 = w * gradient[0]!
+    const g1 = w * gradient[1]!
+    const g2 = w * gradient[2]!
+    sum += residual * residual
+    v0 += g0 * residual
+    v1 += g1 * residual
+    v2 += g2 * residual
+    m00 += g0 * g0
+    m10 += g1 * g0
+    m11 += g1 * g1
+    m20 += g2 * g0
+    m21 += g2 * g1
+    m22 += g2 * g2
+  }
+  vector[0] = v0
+  vector[1] = v1
+  vector[2] = v2
+  matrix[0] = m00
+  matrix[3] = m10
+  matrix[4] = m11
+  matrix[6] = m20
+  matrix[7] = m21
+  matrix[8] = m22
+  return sum
+}
+
+/** The same for two parameters. */
+function accumulateTwo(model: Model, { x, y, weights, settings }: QuickData, p: Float64Array, matrix: Float64Array, vector: Float64Array): number {
+  let sum = 0, v0 = 0, v1 = 0, m00 = 0, m10 = 0, m11 = 0
+  for (let i = 0; i < x.length; i++) {
+    const value = model.valueAndGradient(x[i]!, p, settings, gradient)
+    const w = weights === null ? 1 : weights[i]!
+    const residual = w * (y[i]! - value)
+    const g0 = w * gradient[0]!
+    const g1 = w * gradient[1]!
+    sum += residual * residual
+    v0 += g0 * residual
+    v1 += g1 * residual
+    m00 += g0 * g0
+    m10 += g1 * g0
+    m11 += g1 * g1
+  }
+  vector[0] = v0
+  vector[1] = v1
+  matrix[0] = m00
+  matrix[2] = m10
+  matrix[3] = m11
+  return sum
+}
+
+/** Cholesky of the normal matrix with its columns scaled to length 1 and the damping on its diagonal; false when the columns are too nearly dependent. */
+function factorise(m: number, damping: number): boolean {
+  for (let a = 0; a < m; a++) {
+    const length = Math.sqrt(normal[a * m + a]!)
+    if (!(length > 0 && length < Infinity)) return false
+    scale[a] = length
+  }
+  for (let a = 0; a < m; a++) {
+    for (let b = 0; b <= a; b++) {
+      let entry = normal[a * m + b]! / (scale[a]! * scale[b]!)
+      if (a === b) entry += damping
+      for (let l = 0; l < b; l++) entry -= factor[a * m + l]! * factor[b * m + l]!
+      if (a > b) factor[a * m + b] = entry / factor[b * m + b]!
+      else {
+        if (!(entry > PIVOT)) return false
+        factor[a * m + a] = Math.sqrt(entry)
+      }
+    }
+  }
+  return true
+}
+
+/** Solves for the step; returns its largest part relative to the parameters. */
+function solveStep(m: number): number {
+  for (let a = 0; a < m; a++) {
+    let value = right[a]! / scale[a]!
+    for (let l = 0; l < a; l++) value -= factor[a * m + l]! * step[l]!
+    step[a] = value / factor[a * m + a]!
+  }
+  let largest = 0
+  for (let a = m - 1; a >= 0; a--) {
+    let value = step[a]!
+    for (let l = a + 1; l < m; l++) value -= factor[l * m + a]! * step[l]!
+    step[a] = value / factor[a * m + a]!
+  }
+  for (let a = 0; a < m; a++) {
+    step[a]! /= scale[a]!
+    largest = Math.max(largest, Math.abs(step[a]!) / (Math.abs(current[a]!) || 1))
+  }
+  return largest
+}
+
+function moveInside(model: Model, m: number): boolean {
+  const { lower, upper } = model
+  for (let a = 0; a < m; a++) {
+    const next = current[a]! + step[a]!
+    if (!(next > lower[a]! && next < upper[a]!)) return false
+    trial[a] = next
+  }
+  return true
+}
+
+/** (LLᵀ)⁻¹ with the scales put back. */
+function invert(m: number): Float64Array {
+  const inverse = new Float64Array(m * m)
+  for (let c = 0; c < m; c++) {
+    // Column c of L⁻¹ stands in `step`.
+    for (let a = c; a < m; a++) {
+      let value = a === c ? 1 : 0
+      for (let l = c; l < a; l++) value -= factor[a * m + l]! * step[l]!
+      step[a] = value / factor[a * m + a]!
+    }
+    for (let a = c; a < m; a++) trialNormal[c * m + a] = step[a]!
+  }
+  for (let a = 0; a < m; a++) {
+    for (let b = 0; b <= a; b++) {
+      let value = 0
+      for (let l = a; l < m; l++) value += trialNormal[a * m + l]! * trialNormal[b * m + l]!
+      value /= scale[a]! * scale[b]!
+      inverse[a * m + b] = value
+      inverse[b * m + a] = value
+    }
+  }
+  return inverse
+}
