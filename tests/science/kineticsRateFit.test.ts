@@ -43,9 +43,9 @@ describe('rates against acid and metal', () => {
     }
   })
 
-  it('covers the true k0 by its one-sided bound in 93 % or more of seeded series', () => {
+  it('covers the true k0, when there is one, by its one-sided 95 % bound in 93 % or more of seeded series', () => {
     const runs = process.env.LANTHORN_TEST === 'full' ? 4000 : 400
-    for (const k0 of [0, 2e-7]) {
+    for (const k0 of [2e-7, 1e-6]) {
       let inside = 0
       for (let i = 0; i < runs; i++) if (fitted(made(`bound-${k0}-${i}`, k0, 2e-5), 'k0_per_s', 'k1_per_M_s').terms[0]!.upper95 >= k0) inside++
       expect(inside / runs).toBeGreaterThan(0.93)
