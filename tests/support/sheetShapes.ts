@@ -26,6 +26,8 @@ export const SHEET_SHAPES: Shape[] = [
   { name: 'values of formulas', bytes: workbook([sheet(WIDE.map((row, i) => i === 0 ? row : row.map(formula)))]), asks: ['formulas'] },
   { name: 'joined cells down the columns of names', bytes: workbook([sheet(once, { after: `<mergeCells>${merges}</mergeCells>` })]), asks: ['merged'] },
   { name: 'a title over joined columns', bytes: workbook([sheet([['Phantom of the second day', null, null], [], ...WIDE], { after: '<mergeCells><mergeCell ref="A1:F1"/></mergeCells>' })]) },
+  { name: 'a head over two rows, its cells joined', bytes: workbook([sheet([['TI (ms)', 'Signal', null, null, null, null], [null, ...(WIDE[0] ?? []).slice(1)], ...WIDE.slice(1)], { after: '<mergeCells><mergeCell ref="A1:A2"/><mergeCell ref="B1:F1"/></mergeCells>' })]) },
+  { name: 'a title, a head and a row of units', bytes: workbook([sheet([['Second day'], [], ['TI', ...(WIDE[0] ?? []).slice(1)], ['ms', 'au', 'au', 'au', 'au', 'au'], ...WIDE.slice(1)])]) },
   { name: 'a table that begins in C5', bytes: workbook([sheet([[], [], [], [], ...WIDE.map(row => [null, null, ...row])])]) },
   { name: 'a hidden sheet before it', bytes: workbook([{ name: 'Old', rows: LONG.slice(0, 20), state: 'hidden' }, sheet(LONG)]) },
   { name: 'a sheet of notes before it', bytes: workbook([{ name: 'Read me', rows: [['Signals of the second day'], ['Nothing else']] }, sheet(LONG)]) },

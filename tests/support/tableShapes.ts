@@ -85,6 +85,11 @@ export const TEXT_SHAPES: Shape[] = [
   shape('names in the head and concentrations in a row', [['TI (ms)', 'blank', 'a', 'b', 'c', 'd'], ['conc (mM)', ...CONC_MM.map(String)], ...columnRows().slice(1)]),
   shape('an SD beside every tube', columnRows().map((row, r) => row.flatMap((cell, j) => j === 0 ? [cell] : [cell, r === 0 ? `${cell} SD` : '4.2']))),
   shape('a region\'s SD and pixels beside each point', longRows().map((row, r) => [...row, ...(r === 0 ? ['ROI SD', 'pixels'] : ['12.5', '64'])])),
+  shape('times across the head, concentrations for names', [['TI (ms)', ...TI_MS.map(String)], ...CONC_MM.map((conc, j) => [`${conc} mM`, ...ALL.map(i => String(signalOf(j, i)))])]),
+  shape('times with their unit across the head, an empty corner', [['', ...TI_MS.map(ti => `${ti} ms`)], ...CONC_MM.map((conc, j) => [`${conc} mM`, ...ALL.map(i => String(signalOf(j, i)))])]),
+  shape('one word over all tubes', [['', 'Signal (a.u.)', '', '', '', ''], ...columnRows()]), shape('one word over all tubes beside the times', [['TI (ms)', 'Signal', '', '', '', ''], ['', ...(columnRows()[0] ?? []).slice(1)], ...columnRows().slice(1)]),
+  shape('heads cut short', [['Sample', 'Conc. (mM)', 'Inv. time (ms)', 'Sig. int. (a.u.)'], ...longRows().slice(1)]), shape('heads without a space before the unit', [['Sample', 'Gd conc.[mmol/L]', 'TI[ms]', 'Mean'], ...longRows().slice(1)]),
+  shape('numbered rows', columnRows().map((row, r) => [r === 0 ? '#' : String(r), ...row])), { name: 'a first line that names the mark between columns', bytes: utf8(`sep=;\n${joined(columnRows(), { mark: ';' })}`) },
   shape('hidden marks in names', longRows().map(row => row.map(cell => cell === 'n1' ? '\u202En1\u200B' : cell)), {}, { asks: ['hiddenMarks'] }),
   shape('names that begin like formulas', longRows().map(row => row.map(cell => cell === 'n1' ? '=SUM(A1)' : cell === 'n2' ? '@n' : cell === 'n3' ? '+cmd' : cell))),
 ]

@@ -13,9 +13,3 @@ export function readWithUnit(text: string, spec: ColumnSpec, decimal: DecimalMar
   const number = match === null ? null : parseNumberCell(match[1] ?? '', decimal)
   return unit !== null && number?.ok ? { value: number.value, unit } : null
 }
-
-/** True for what could be a number with a unit, whatever the column: enough to see which columns hold numbers. */
-export function looksMeasured(text: string, decimal: DecimalMark): boolean {
-  const match = text.length > 60 ? null : WITH_UNIT.exec(text.trim())
-  return match !== null && /^[A-Za-z°µ\u03BC%/^\-\d .·*]{1,12}$/.test(match[2] ?? '') && parseNumberCell(match[1] ?? '', decimal).ok
-}

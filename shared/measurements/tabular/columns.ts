@@ -57,12 +57,19 @@ function fromHeader(header: string, index: number, match: HeaderMatch | null, in
   if (layout === 'columnPerTube') {
     if (input.isTransposed) return { ...base, spec: index === 0 ? null : y, how: 'from the header', isTube: index > 0 }
     if (match?.spec.role === 'x') return { ...base, spec: match.spec, how: 'from the header', isTube: false }
+    if ((match?.spec.role === 'tube' || /^(?:#|№|row|index|i)$/i.test(header)) && onlyCounts(index, input.body)) return { ...base, spec: null, how: 'guessed', isTube: false }
     if (index === 0 && !matchesRole(input, 'x')) return { ...base, spec: x, how: 'guessed', isTube: false }
     return { ...base, unit: null, spec: header === '' && input.header !== null ? null : y, how: 'from the header', isTube: header !== '' || input.header === null }
   }
   if (layout === 'rowPerTube' && (match === null || match.spec.role === 'y')) return { ...base, unit: null, spec: null, how: 'guessed', isTube: false }
   if (layout === 'rowPerTube' && match?.spec.role === 'x') return { ...base, spec: null, how: 'from the header', isTube: false }
   return { ...base, spec: match?.spec ?? null, how: match ? 'from the header' : 'guessed', isTube: false }
+}
+
+/** A column that numbers the rows, headed '#' or 'no'. */
+function onlyCounts(index: number, body: readonly TableRecord[]): boolean {
+  const cells = body.map(record => record.cells[index] ?? '')
+  return cells.length > 1 && cells.every((cell, i) => cell === String(i + 1) || cell === String(i))
 }
 
 function matchesRole({ header, kind }: Input, role: ColumnSpec['role']): boolean {

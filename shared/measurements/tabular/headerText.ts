@@ -11,6 +11,9 @@ export interface HeaderMatch {
   unknownUnit: string | null
 }
 
+/** Words that heads cut short. */
+const WHOLE: Readonly<Record<string, string>> = { inv: 'inversion', sig: 'signal', int: 'intensity', rel: 'relaxation', rep: 'repetition', conc: 'concentration', temp: 'temperature', recov: 'recovery' }
+
 interface Reading { name: string, unit: string | null }
 
 const LOWERED = '₀₁₂₃₄₅₆₇₈₉'
@@ -22,7 +25,7 @@ export function plainWords(text: string): string {
     .replace(/^[\s#]+/, '')
     .replace(/[\s_\-\u2010-\u2015]+/g, ' ')
     .replace(/\s*[:=]\s*$/, '')
-    .replace(/\.$/, '')
+    .replace(/\.(?=\s|$)/g, '')
     .trim()
 }
 
@@ -55,7 +58,8 @@ export function matchHeader(text: string, specs: readonly ColumnSpec[], present:
   let fallback: HeaderMatch | null = null
   for (const reading of headerReadings(text)) {
     const name = plainWords(reading.name)
-    for (const spec of ordered.filter(candidate => candidate.synonyms.includes(name))) {
+    const whole = name.replace(/\b(?:inv|sig|int|rel|rep|conc|temp|recov)\b/g, word => WHOLE[word] ?? word)
+    for (const spec of ordered.filter(candidate => candidate.synonyms.includes(name) || candidate.synonyms.includes(whole))) {
       if (reading.unit === null || reading.unit === '') return { spec, unit: null, unknownUnit: null }
       const unit = spec.dimension === 'text' ? null : findUnit(reading.unit, spec.dimension)
       if (unit) return { spec, unit, unknownUnit: null }

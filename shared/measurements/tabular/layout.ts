@@ -1,6 +1,6 @@
 import type { ColumnSpec, MeasurementKind } from '../types'
 import { findUnit, matchHeader, plainWords, type HeaderMatch } from './headerText'
-import { looksMeasured } from './cellUnit'
+import { readWithUnit } from './cellUnit'
 import { parseNumberCell, type DecimalMark } from './numberCell'
 import { filledCells, isBlank, type TableRecord } from './records'
 import type { Unit } from '../../science/units'
@@ -72,7 +72,7 @@ export function guessLayout(input: { kind: MeasurementKind, header: TableRecord 
   const names = count('tube') + count('agent') + count('batch') + count('conc')
   if (body.length === 0) return count('y') > 0 ? 'long' : 'columnPerTube'
   const xAt = matches.findIndex(match => match?.spec.role === 'x')
-  const isNumeric = (column: number) => numericShare(body, column, decimal) > 0.5
+  const isNumeric = (column: number) => numericShare(body, { column, decimal, specs: xSpecs }) > 0.5
   if (xAt >= 0 && count('y') > 0 && (names > 0 || count('y') === 1)) return 'long'
   if (xAt >= 0) return isNumeric(xAt) ? 'columnPerTube' : 'rowPerTube'
   const times = (input.header?.cells ?? []).filter(cell => xSpecs.some(spec => readHeadNumber(cell, spec, decimal) !== null)).length
@@ -89,7 +89,8 @@ function isTransposed({ kind, matches, header, body }: { kind: MeasurementKind, 
   return down.some(match => match.spec.role === 'y') && stems(down) >= 2 && stems(down) > stems(matches)
 }
 
-export function numericShare(body: readonly TableRecord[], column: number, decimal: DecimalMark): number {
+/** Share of cells that are numbers, alone or with a unit of one of these columns. */
+function numericShare(body: readonly TableRecord[], { column, decimal, specs }: { column: number, decimal: DecimalMark, specs: readonly ColumnSpec[] }): number {
   const cells = body.slice(0, 50).map(record => record.cells[column] ?? '').filter(cell => cell !== '')
-  return cells.length === 0 ? 0 : cells.filter(cell => parseNumberCell(cell, decimal).ok || looksMeasured(cell, decimal)).length / cells.length
+  return cells.length === 0 ? 0 : cells.filter(cell => parseNumberCell(cell, decimal).ok || specs.some(spec => readWithUnit(cell, spec, decimal) !== null)).length / cells.length
 }

@@ -73,11 +73,23 @@ function pickHeader({ records, kind, decimal, draft }: StructureInput): number |
 /** A head over two rows: 'TI (ms)' once, and the times themselves beneath it and to its right. Joined into one row; null where the head is no such one. */
 function spreadHead(head: TableRecord, next: TableRecord | undefined, { kind, decimal }: StructureInput): TableRecord | null {
   const at = matchHeaders(head.cells, kind.columns).findIndex(match => match?.spec.role === 'x')
+  const stacked = next === undefined || at < 0 ? null : stackedHead({ head, next, at }, decimal)
+  if (stacked !== null) return stacked
   if (next === undefined || at < 1 || head.cells.slice(at + 1).some(cell => cell !== '') || next.cells.slice(0, at).some(cell => cell !== '')) return null
   const times = next.cells.slice(at)
   if (filledCells({ ...next, cells: times }) < 3 || !times.every(cell => cell === '' || parseNumberCell(cell, decimal).ok)) return null
   const unit = matchHeader(head.cells[at] ?? '', kind.columns)?.unit?.symbol ?? ''
   return { row: next.row, raw: next.raw, cells: [...head.cells.slice(0, at), ...times.map(time => `${time} ${unit}`.trim())] }
+}
+
+/** A head over two rows: one word over all tubes, and their names beneath it; the column of times is headed in the first row or in both. */
+function stackedHead({ head, next, at }: { head: TableRecord, next: TableRecord, at: number }, decimal: DecimalMark): TableRecord | null {
+  const x = head.cells[at] ?? ''
+  const beneath = next.cells[at] ?? ''
+  const names = next.cells.filter((cell, index) => index !== at && cell !== '')
+  const titles = head.cells.filter((cell, index) => index !== at && cell !== '')
+  const areNames = names.length >= 2 && names.length > titles.length && names.every(cell => !parseNumberCell(cell, decimal).ok)
+  return areNames && (beneath === '' || beneath === x) ? { ...next, cells: Array.from({ length: Math.max(head.cells.length, next.cells.length) }, (_, index) => index === at ? x : next.cells[index] ?? '') } : null
 }
 
 /** Without a head the table begins at the first line with at least two cells, one of them a number. */
