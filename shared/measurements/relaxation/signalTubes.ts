@@ -43,9 +43,10 @@ interface Parts { one: Prepared, recovery: RecoveryFit, pool: PooledNoise | null
 
 /**
  * Fits every tube of a series of signals. Reference tubes and tubes that are left out are fitted on their own, so that they can be shown at their place and change nothing elsewhere.
+ * @param secondOpinion whether another program is asked about each tube; off only where its time is measured apart
  * @throws Error for a model that is not registered
  */
-export function fitSignalTubes(input: AnalysisInput, kind: SignalKind): TubeResult[] {
+export function fitSignalTubes(input: AnalysisInput, kind: SignalKind, { secondOpinion = true }: { secondOpinion?: boolean } = {}): TubeResult[] {
   const model = findModel(input.modelId)
   if (model === null) throw new Error(`No model is called ${input.modelId}.`)
   const prepared = input.tubes.map(tube => prepare(tube, model, kind, input))
@@ -53,7 +54,7 @@ export function fitSignalTubes(input: AnalysisInput, kind: SignalKind): TubeResu
   const ranges = kind.knowsBlank ? findBlankRanges(BLANK_RANGES, blankConditions(input.conditions)) : []
   const isApart = (one: Prepared) => one.left.tube !== null || one.tube.role === 'reference'
   for (const group of [prepared.filter(one => !isApart(one)), ...prepared.filter(isApart).map(one => [one])]) {
-    const fits = fitTubes(model, group.map(one => one.data), kind.signal(model, input.conditions), { secondOpinion: true }, k => group[k]?.options ?? {})
+    const fits = fitTubes(model, group.map(one => one.data), kind.signal(model, input.conditions), { secondOpinion }, k => group[k]?.options ?? {})
     group.forEach((one, k) => {
       const recovery = fits.tubes[k]
       if (recovery) results.set(one.tube.tubeNo, tubeResult({ one, recovery, pool: fits.pools[k] ?? null, model, kind, input, ranges }))

@@ -158,16 +158,19 @@ function judgePoints({ x, y }: LineData, sums: Sums, residuals: readonly number[
   const s2 = n > 2 ? weighted.reduce((sum, e) => sum + e * e, 0) / (n - 2) : 0
   return x.map((_, i) => {
     const open = 1 - leverage[i]!
-    const keep = (values: readonly number[]) => values.filter((_, k) => k !== i)
-    const rest = keep(x)
-    const isLine = rest.some(value => value !== rest[0])
-    const others = isLine ? sumUp(rest, keep(y), keep(sums.weights)) : null
     return {
       fitted: y[i]! - residuals[i]!, residual: residuals[i]!, leverage: leverage[i]!, studentised: studentised[i]!,
       cook: open > 1e-10 && s2 > 0 ? (weighted[i]! ** 2 * leverage[i]!) / (2 * s2 * open * open) : null,
-      without: others && { slope: others.slope, intercept: others.meanY - others.slope * others.meanX },
+      without: open > 1e-10 ? withoutPoint(sums, { at: x[i]!, weight: sums.weights[i]!, residual: residuals[i]!, open }) : null,
     }
   })
+}
+
+/** Line through the other points, from this one's residual and leverage: leaving a point out shifts value and slope at the mean by known amounts. */
+function withoutPoint({ total, meanX, meanY, sxx, slope }: Sums, { at, weight, residual, open }: { at: number, weight: number, residual: number, open: number }): { slope: number, intercept: number } {
+  const pull = (weight * residual) / open
+  const other = slope - (pull * (at - meanX)) / sxx
+  return { slope: other, intercept: meanY - pull / total - other * meanX }
 }
 
 /**
