@@ -3,7 +3,7 @@ import { derivedOf, parameterVector } from '../../science/least-squares/derived'
 import { fitModel, type FitData, type FitOptions } from '../../science/least-squares/fitModel'
 import type { FitDone } from '../../science/least-squares/outcome'
 import { findModel } from '../../science/models'
-import type { Model, Settings } from '../../science/models/define'
+import { withStandards, type Model, type Settings } from '../../science/models/define'
 import { BLANK_RANGES, findBlankRanges, type BlankRange } from '../../science/relaxometry/blankRanges'
 import { reportFlags, type Flag, type TubeContext } from '../../science/relaxometry/flags'
 import type { RecoveryFit } from '../../science/relaxometry/polarity'
@@ -113,8 +113,9 @@ function correlationOf({ parameters, correlation }: FitDone): CorrelationTable |
 
 function curveOf(fit: FitDone, { model, one }: Parts): TubeResult['curve'] {
   const p = parameterVector(model, fit)
-  const values = Object.fromEntries(model.names.map((name, j) => [name, p[j] ?? Number.NaN]))
-  return curveOver(one.data.x, x => model.evaluate(x, values, one.options.settings))
+  const settings = withStandards(model.settings, one.options.settings ?? {})
+  const gradient = new Float64Array(model.names.length)
+  return curveOver(one.data.x, x => model.valueAndGradient(x, p, settings, gradient))
 }
 
 function flagsOf(fit: FitDone, signal_au: readonly number[], time: NamedQuantity | null, { one, recovery, pool, ranges, kind, model, input }: Parts): Pick<TubeResult, 'flags' | 'passed'> {

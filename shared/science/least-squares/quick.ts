@@ -118,9 +118,11 @@ function accumulate(model: Model, { x, y, weights, settings }: QuickData, p: Flo
 
 /** The same for three parameters, in variables that stay in registers: most relaxation fits are these. */
 function accumulateThree(model: Model, { x, y, weights, settings }: QuickData, p: Float64Array, matrix: Float64Array, vector: Float64Array): number {
+  const evaluate = model.valueAndGradient
+  const n = x.length
   let sum = 0, v0 = 0, v1 = 0, v2 = 0, m00 = 0, m10 = 0, m11 = 0, m20 = 0, m21 = 0, m22 = 0
-  for (let i = 0; i < x.length; i++) {
-    const value = model.valueAndGradient(x[i]!, p, settings, gradient)
+  for (let i = 0; i < n; i++) {
+    const value = evaluate(x[i]!, p, settings, gradient)
     const w = weights === null ? 1 : weights[i]!
     const residual = w * (y[i]! - value)
     const g0 = w * gradient[0]!
@@ -151,9 +153,11 @@ function accumulateThree(model: Model, { x, y, weights, settings }: QuickData, p
 
 /** The same for two parameters. */
 function accumulateTwo(model: Model, { x, y, weights, settings }: QuickData, p: Float64Array, matrix: Float64Array, vector: Float64Array): number {
+  const evaluate = model.valueAndGradient
+  const n = x.length
   let sum = 0, v0 = 0, v1 = 0, m00 = 0, m10 = 0, m11 = 0
-  for (let i = 0; i < x.length; i++) {
-    const value = model.valueAndGradient(x[i]!, p, settings, gradient)
+  for (let i = 0; i < n; i++) {
+    const value = evaluate(x[i]!, p, settings, gradient)
     const w = weights === null ? 1 : weights[i]!
     const residual = w * (y[i]! - value)
     const g0 = w * gradient[0]!
