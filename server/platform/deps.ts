@@ -1,5 +1,6 @@
 import type { Knex } from 'knex'
 import type { MeasurementKind } from '../../shared/measurements/types'
+import type { Bell } from './bell'
 import type { Clock } from './clock'
 import type { Ids } from './ids'
 import type { Passwords } from './passwords'
@@ -13,6 +14,8 @@ export interface Deps {
   ids: Ids
   storage: FileStorage
   passwords: Passwords
+  /** Rung after a command has put jobs into the queue. */
+  bell: Bell
   tables: TableReader
   /** Registered measurement kinds; tests add a toy kind. */
   kinds: Readonly<Record<string, MeasurementKind>>

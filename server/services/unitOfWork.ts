@@ -48,7 +48,9 @@ const ATTEMPTS = 4
 export async function unitOfWork<T>(deps: Deps, command: Command, fn: (work: Work) => Promise<Done<T>>): Promise<T> {
   for (let attempt = 1; ; attempt++) {
     try {
-      return await deps.db.transaction(trx => runOnce(deps, command, trx, fn))
+      const { result, queued } = await deps.db.transaction(trx => runOnce(deps, command, trx, fn))
+      if (queued > 0) deps.bell.ring()
+      return result
     }
     catch (error) {
       const raced = isDuplicate(error, 'PRIMARY') || isDuplicate(error, 'link')
@@ -57,16 +59,17 @@ export async function unitOfWork<T>(deps: Deps, command: Command, fn: (work: Wor
   }
 }
 
-async function runOnce<T>(deps: Deps, command: Command, trx: Knex.Transaction, fn: (work: Work) => Promise<Done<T>>): Promise<T> {
+async function runOnce<T>(deps: Deps, command: Command, trx: Knex.Transaction, fn: (work: Work) => Promise<Done<T>>): Promise<{ result: T, queued: number }> {
   const before = await answeredBefore(command, trx)
-  if (before) return before.response as T
+  if (before) return { result: before.response as T, queued: 0 }
   const now = deps.clock.now()
-  const { result, subject, payload } = await fn(makeWork(deps, command, trx, now))
+  let queued = 0
+  const { result, subject, payload } = await fn(makeWork(deps, command, trx, { now, count: () => { queued++ } }))
   if (command.actor && command.idempotency) {
     await remember(trx, { personId: command.actor.personId, key: command.idempotency.key, command: command.name, requestHash: requestHash(command), response: result, at: now })
   }
   await appendLink(deps, command, trx, { now, subject, payload })
-  return result
+  return { result, queued }
 }
 
 async function answeredBefore(command: Command, trx: Knex.Transaction) {
@@ -80,9 +83,12 @@ async function answeredBefore(command: Command, trx: Knex.Transaction) {
 
 const requestHash = (command: Command): Buffer => sha256(JSON.stringify(command.idempotency?.request ?? null))
 
-function makeWork(deps: Deps, command: Command, trx: Knex.Transaction, now: Date): Work {
+function makeWork(deps: Deps, command: Command, trx: Knex.Transaction, { now, count }: { now: Date, count: () => void }): Work {
   const { programmeId } = command
-  const enqueue: Work['enqueue'] = job => insertJob(trx, { ...job, id: deps.ids.next(), at: now, programmeId })
+  const enqueue: Work['enqueue'] = (job) => {
+    count()
+    return insertJob(trx, { ...job, id: deps.ids.next(), at: now, programmeId })
+  }
   return {
     trx,
     now,

@@ -1,4 +1,5 @@
 import { MEASUREMENTS } from '../../shared/measurements/index'
+import { loopbackBell } from '../platform/bell'
 import { systemClock } from '../platform/clock'
 import { openDatabase } from '../platform/database'
 import type { Deps } from '../platform/deps'
@@ -11,8 +12,11 @@ let deps: Deps | undefined
 
 /** The one set of dependencies of this process, from the environment. @throws Error naming the variable that is missing */
 export function useDeps(): Deps {
-  deps ??= {
-    db: openDatabase(setting('DATABASE_URL')),
+  if (deps) return deps
+  const db = openDatabase(setting('DATABASE_URL'))
+  deps = {
+    db,
+    bell: loopbackBell(db, error => console.error(JSON.stringify({ bell: String(error) }))),
     clock: systemClock,
     ids: randomIds,
     storage: folderStorage(setting('LANTHORN_STORAGE')),

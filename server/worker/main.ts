@@ -1,6 +1,7 @@
 import { availableParallelism, hostname } from 'node:os'
 import { fileURLToPath } from 'node:url'
 import Piscina from 'piscina'
+import { listenForBell } from '../platform/bell'
 import { JOBS } from '../jobs/index'
 import { runNextJob } from '../jobs/runJobs'
 import type { WorkerDeps } from '../jobs/define'
@@ -22,13 +23,16 @@ let stopping = false
 const stopped: Promise<void>[] = []
 const name = `worker ${hostname()} ${process.pid}`
 const startedAt = new Date()
-const heart = setInterval(() => { beat(deps.db, { name, role: 'worker', startedAt, engine: engineOf() }).catch(report) }, BEAT_MS)
+const ear = await listenForBell()
+const sayAlive = (): void => { beat(deps.db, { name, role: 'worker', startedAt, engine: engineOf(), wakePort: ear.port }).catch(report) }
+sayAlive()
+const heart = setInterval(sayAlive, BEAT_MS)
 
 /** Each lane takes one job at a time; lanes run side by side, so that a mail does not wait for a long fit. */
 async function lane(): Promise<void> {
   while (!stopping) {
     try {
-      if (!await runNextJob(deps, JOBS)) await new Promise(resolve => setTimeout(resolve, IDLE_MS))
+      if (!await runNextJob(deps, JOBS)) await ear.wait(IDLE_MS)
     }
     catch (error) {
       // The database is away or restarting: say so and try again, for jobs wait there safely.
@@ -48,6 +52,7 @@ async function stop(): Promise<void> {
   clearInterval(heart)
   await Promise.all(stopped)
   mailer.close()
+  ear.close()
   await pool.destroy()
   await closeDeps()
 }

@@ -48,6 +48,6 @@ describe('named media', () => {
   it('say that they were edited, and take no negative amount', () => {
     const [plasma] = NAMED_MEDIA
     expect(editMedium(plasma!, { Zn: 1e-5 })).toMatchObject({ title: 'Plasma model (edited)', amounts_M: { Zn: 1e-5, Ca: 2.5e-3 } })
-    for (const bad of [{ Zn: -1 }, { Zn: NaN }, { Fe: 1e-6 }]) expect(editMedium(plasma!, bad)).toBeNull()
+    for (const bad of [{ Zn: -1 }, { Zn: NaN }, { Fe: 1e-6 }] as Record<string, number>[]) expect(editMedium(plasma!, bad)).toBeNull()
   })
 })
