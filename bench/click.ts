@@ -48,9 +48,9 @@ async function storeAndFit(page: Page, round: number): Promise<number> {
   await page.waitForFunction(() => [...document.querySelectorAll('button')].some(one => one.textContent?.includes('Store and fit') && !one.disabled))
   await page.waitForTimeout(400)
   return await page.evaluate(async ({ tubes }) => {
-    const find = () => [...document.querySelectorAll('button')].find(one => one.textContent?.includes('Store and fit'))
+    const button = [...document.querySelectorAll('button')].find(one => one.textContent?.includes('Store and fit'))
     const begin = performance.now()
-    find()?.click()
+    button?.click()
     for (;;) {
       await new Promise(resolve => requestAnimationFrame(resolve))
       if (document.querySelectorAll('button.small-figure svg path[d^="M"]').length >= tubes && document.querySelectorAll('button.small-figure').length >= tubes) break
