@@ -1,5 +1,4 @@
-import { secondOpinionCost } from './seriesInput'
-import { makeSeries, tubeData } from './seriesInput'
+import { secondOpinionCost, makeSeries, tubeData } from './seriesInput'
 import { INVERSION_SIGNALS, relaxT1Ir } from '../shared/measurements/relaxT1Ir'
 import { seriesOutcome } from '../shared/measurements/relaxation/seriesOutcome'
 import { fitSignalTubes } from '../shared/measurements/relaxation/signalTubes'

@@ -1,6 +1,6 @@
 import type { Knex } from 'knex'
 import type { MeasurementKind } from '../../shared/measurements/types'
-import type { Bell } from './bell'
+import type { Bell, Ear } from './bell'
 import type { Clock } from './clock'
 import type { Ids } from './ids'
 import type { Passwords } from './passwords'
@@ -16,6 +16,8 @@ export interface Deps {
   passwords: Passwords
   /** Rung after a command has put jobs into the queue. */
   bell: Bell
+  /** Waits for the bell, for whoever would ask the database again and again. */
+  ear: Ear
   tables: TableReader
   /** Registered measurement kinds; tests add a toy kind. */
   kinds: Readonly<Record<string, MeasurementKind>>

@@ -33,8 +33,10 @@ export async function insertFit(trx: Knex, fit: NewFit): Promise<void> {
   })
 }
 
-export async function insertFitInput(trx: Knex, row: { programmeId: string, fitId: string, tubeId: string, pointsHash: Buffer }): Promise<void> {
-  await trx('fit_input').insert({ programme_id: toBinary(row.programmeId), fit_id: toBinary(row.fitId), tube_id: toBinary(row.tubeId), points_hash: row.pointsHash })
+/** What a fit rests on: every tube with the hash of its points, in one statement. */
+export async function insertFitInputs(trx: Knex, { programmeId, fitId, tubes }: { programmeId: string, fitId: string, tubes: readonly { id: string, pointsHash: Buffer }[] }): Promise<void> {
+  if (tubes.length === 0) return
+  await trx('fit_input').insert(tubes.map(tube => ({ programme_id: toBinary(programmeId), fit_id: toBinary(fitId), tube_id: toBinary(tube.id), points_hash: tube.pointsHash })))
 }
 
 /** A point or tube left out, with who said so and when. */

@@ -1,10 +1,10 @@
 import type { Knex } from 'knex'
 
-export interface Beat { name: string, role: 'web' | 'worker', startedAt: Date, engine: unknown, wakePort?: number }
+export interface Beat { name: string, role: 'web' | 'worker', startedAt: Date, engine: unknown, wakePort?: number | null }
 
 /** Says that a process is alive, by the database's clock. */
 export async function beat(db: Knex, one: Beat): Promise<void> {
-  const changed = await db('process_beat').where({ name: one.name }).update({ seen_at: db.raw('NOW(6)') })
+  const changed = await db('process_beat').where({ name: one.name }).update({ seen_at: db.raw('NOW(6)'), wake_port: one.wakePort ?? null })
   if (changed === 0) await db('process_beat').insert({ name: one.name, role: one.role, started_at: one.startedAt, seen_at: db.raw('NOW(6)'), engine: JSON.stringify(one.engine), wake_port: one.wakePort ?? null })
   await db('process_beat').whereRaw('seen_at < DATE_SUB(NOW(6), INTERVAL 1 DAY)').delete()
 }
@@ -17,8 +17,8 @@ export async function listProcesses(db: Knex) {
 
 const LISTENING_s = 20
 
-/** Loopback ports of the workers on this machine that were alive a moment ago; the name of a process begins with its role and its host. */
+/** Loopback ports of the processes on this machine that were alive a moment ago; the name of a process is its role, its host and its number. */
 export async function wakePorts(db: Knex, host: string): Promise<number[]> {
-  const rows = await db('process_beat').where({ role: 'worker' }).whereNotNull('wake_port').whereRaw('seen_at > DATE_SUB(NOW(6), INTERVAL ? SECOND)', [LISTENING_s]).select('name', 'wake_port') as { name: string, wake_port: number }[]
-  return rows.filter(row => row.name.startsWith(`worker ${host} `)).map(row => row.wake_port)
+  const rows = await db('process_beat').whereNotNull('wake_port').whereRaw('seen_at > DATE_SUB(NOW(6), INTERVAL ? SECOND)', [LISTENING_s]).select('name', 'wake_port') as { name: string, wake_port: number }[]
+  return rows.filter(row => row.name.split(' ')[1] === host).map(row => row.wake_port)
 }

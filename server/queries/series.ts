@@ -43,16 +43,19 @@ export interface StoredTube extends SeriesTube {
 export const sealedTube = (tube: Pick<SeriesTube, 'points' | 'conc_mM' | 'concSe_mM'>) =>
   sealed({ columns: tube.points.columns, rows: tube.points.rows, conc_mM: tube.conc_mM, concSe_mM: tube.concSe_mM })
 
-export async function insertTube(trx: Knex, row: { id: string, programmeId: string, seriesId: string, tube: SeriesTube, place: string }): Promise<void> {
-  const { tube } = row
-  const { text, hash } = sealedTube(tube)
-  await trx('tube').insert({
-    id: toBinary(row.id), programme_id: toBinary(row.programmeId), series_id: toBinary(row.seriesId), tube_no: tube.tubeNo, label: tube.label, role: tube.role,
-    conc_mM: tube.conc_mM, conc_se_mM: tube.concSe_mM, place: row.place.slice(0, 200), n_points: tube.points.rows.length, points: text, points_hash: hash,
-  })
+/** All tubes of a series in one statement: a phantom can have a hundred. */
+export async function insertTubes(trx: Knex, { programmeId, seriesId, tubes }: { programmeId: string, seriesId: string, tubes: readonly { id: string, tube: SeriesTube, place: string }[] }): Promise<void> {
+  if (tubes.length === 0) return
+  await trx('tube').insert(tubes.map(({ id, tube, place }) => {
+    const { text, hash } = sealedTube(tube)
+    return {
+      id: toBinary(id), programme_id: toBinary(programmeId), series_id: toBinary(seriesId), tube_no: tube.tubeNo, label: tube.label, role: tube.role,
+      conc_mM: tube.conc_mM, conc_se_mM: tube.concSe_mM, place: place.slice(0, 200), n_points: tube.points.rows.length, points: text, points_hash: hash,
+    }
+  }))
 }
 
-interface RawTube { id: Buffer, tube_no: number, label: string, role: 'sample' | 'blank', place: string, points: string, points_hash: Buffer }
+interface RawTube { id: Buffer, tube_no: number, label: string, role: SeriesTube['role'], place: string, points: string, points_hash: Buffer }
 
 /** Tubes of a series with their points, exactly as they were stored. */
 export async function seriesTubes(db: Knex, programmeId: string, seriesId: string): Promise<StoredTube[]> {

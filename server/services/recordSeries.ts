@@ -1,7 +1,7 @@
 import type { Conditions, MeasurementKind, SeriesTube } from '../../shared/measurements/types'
 import type { Actor } from '../../shared/permissions'
 import { canonicalJson } from '../../shared/science/canonical'
-import { insertSeries, insertSeriesEvent, insertTube } from '../queries/series'
+import { insertSeries, insertSeriesEvent, insertTubes } from '../queries/series'
 import type { UploadTarget } from '../queries/uploadTargets'
 import { inputHash } from './fitInput'
 import { type FitOrder, orderFit } from './orderFit'
@@ -33,7 +33,7 @@ export async function recordSeries(work: Work, input: SeriesToRecord): Promise<{
     conditions: canonicalJson(conditions), mapping: input.mapping, inputHash: inputHash({ kind: kind.kind, kindVersion: kind.version, conditions, tubes }),
     replaces: input.replaces, createdBy: actor.personId, at: work.now,
   })
-  for (const tube of tubes) await insertTube(work.trx, { id: work.id(), programmeId, seriesId, tube, place: tube.place })
+  await insertTubes(work.trx, { programmeId, seriesId, tubes: tubes.map(tube => ({ id: work.id(), tube, place: tube.place })) })
   await insertSeriesEvent(work.trx, { id: work.id(), programmeId, seriesId, seq: 1, event: 'recorded', reason: input.reason, personId: actor.personId, at: work.now })
   const jobId = await orderFit(work, { ...input.request, seriesId, requestedBy: actor.personId })
   return { seriesId, title, jobId }

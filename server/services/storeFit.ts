@@ -5,7 +5,7 @@ import { isDuplicate } from '../platform/database'
 import type { Deps } from '../platform/deps'
 import { hex, sealed } from '../platform/hashes'
 import { insertEvidence } from '../queries/evidence'
-import { insertExclusion, insertFit, insertFitInput, nextVersionNo, type StoredExclusion } from '../queries/fits'
+import { insertExclusion, insertFit, insertFitInputs, nextVersionNo, type StoredExclusion } from '../queries/fits'
 import { insertReading } from '../queries/instruments'
 import { finishJob, type JobRow } from '../queries/jobs'
 import { engineOf } from './engine'
@@ -36,11 +36,14 @@ const TRIES = 5
 export async function storeFit(deps: Deps, fit: FitToStore): Promise<{ fitId: string, versionNo: number }> {
   for (let attempt = 1; ; attempt++) {
     try {
-      return await unitOfWork(deps, { actor: null, name: 'storeFit', programmeId: fit.programmeId }, async (work) => {
+      const done = await unitOfWork(deps, { actor: null, name: 'storeFit', programmeId: fit.programmeId }, async (work) => {
         const stored = await write(deps, work, fit)
         if (!await finishJob(work.trx, fit.job, work.now)) throw new Error('Somebody else holds this job by now; this fit is not stored.')
         return { result: stored, subject: `fit ${stored.fitId}`, payload: { seriesId: fit.loaded.series.id, versionNo: stored.versionNo, outcome: stored.outcome, resultHash: stored.resultHash, requestedBy: fit.payload.requestedBy } }
       })
+      // Whoever watches hears of it at once.
+      deps.bell.ring()
+      return done
     }
     catch (error) {
       // Two fits of one series finished at once: the later one takes the next number.
@@ -60,7 +63,7 @@ async function write(deps: Deps, work: Work, { job, programmeId, payload, loaded
     exclusionsHash: sealed(orderedExclusions(payload.exclusions)).hash, seed: seedOf(series), inputHash: series.inputHash, engine: canonicalJson(engineOf()),
     outcome: outcome.ok ? 'ok' : 'refused', result: result.text, resultHash: result.hash, requestedBy: payload.requestedBy, at: work.now,
   })
-  for (const tube of tubes) await insertFitInput(work.trx, { programmeId, fitId, tubeId: tube.id, pointsHash: tube.pointsHash })
+  await insertFitInputs(work.trx, { programmeId, fitId, tubes })
   for (const one of payload.exclusions) await insertExclusion(work.trx, { ...one, at: new Date(one.at), id: work.id(), programmeId, fitId })
   await writeReadings(work, { programmeId, fitId, loaded, outcome })
   if (outcome.ok) {

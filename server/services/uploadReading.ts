@@ -77,7 +77,7 @@ async function withReferences({ db }: Pick<Deps, 'db'>, { conditions, tubes }: U
 }
 
 /** Up to this size a text is read at once: it takes a few milliseconds, and a thread would take longer to begin. */
-const SMALL_BYTES = 16 * 1024
+const SMALL_BYTES = 96 * 1024
 
 /** A thread knows the registered kinds; one that only a test knows is read here. */
 function readBytes({ tables }: Pick<Deps, 'tables'>, bytes: Uint8Array, { kind, draft, sheet }: { kind: MeasurementKind, draft: UploadDraft, sheet: SheetFacts | null }): Promise<Understood> {

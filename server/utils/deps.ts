@@ -1,5 +1,5 @@
 import { MEASUREMENTS } from '../../shared/measurements/index'
-import { loopbackBell } from '../platform/bell'
+import { loopbackBell, openEar } from '../platform/bell'
 import { systemClock } from '../platform/clock'
 import { openDatabase } from '../platform/database'
 import type { Deps } from '../platform/deps'
@@ -16,7 +16,8 @@ export function useDeps(): Deps {
   const db = openDatabase(setting('DATABASE_URL'))
   deps = {
     db,
-    bell: loopbackBell(db, error => console.error(JSON.stringify({ bell: String(error) }))),
+    bell: loopbackBell(db, reportBell),
+    ear: openEar(reportBell),
     clock: systemClock,
     ids: randomIds,
     storage: folderStorage(setting('LANTHORN_STORAGE')),
@@ -28,7 +29,10 @@ export function useDeps(): Deps {
   return deps
 }
 
+const reportBell = (error: unknown): void => console.error(JSON.stringify({ bell: String(error) }))
+
 export async function closeDeps(): Promise<void> {
+  deps?.ear.close()
   await deps?.db.destroy()
   deps = undefined
 }

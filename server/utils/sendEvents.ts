@@ -5,10 +5,10 @@ const LONGEST_MS = 15 * 60_000
 /** Something is sent at least this often, so that proxies keep the connection. */
 const QUIET_MS = 15_000
 
-interface Events { name: string, everyMs: number, read: () => Promise<unknown> }
+interface Events { name: string, everyMs: number, read: () => Promise<unknown>, wait: (ms: number) => Promise<void> }
 
 /** Server-sent events: asks `read` again and again and sends its answer when it changed. Ends when the browser goes, when `read` fails, or when its time is over. */
-export async function sendEvents(event: H3Event, { name, everyMs, read }: Events): Promise<void> {
+export async function sendEvents(event: H3Event, { name, everyMs, read, wait }: Events): Promise<void> {
   const stream = createEventStream(event)
   const started = Date.now()
   let last = ''
@@ -27,7 +27,7 @@ export async function sendEvents(event: H3Event, { name, everyMs, read }: Events
   const run = async (): Promise<void> => {
     while (open && Date.now() - started < LONGEST_MS) {
       await tick()
-      await new Promise(resolve => setTimeout(resolve, everyMs))
+      await wait(everyMs)
     }
   }
   run().catch(error => console.error(JSON.stringify({ at: new Date().toISOString(), stream: name, error: error instanceof Error ? error.message : String(error) })))

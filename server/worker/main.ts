@@ -1,7 +1,6 @@
 import { availableParallelism, hostname } from 'node:os'
 import { fileURLToPath } from 'node:url'
 import Piscina from 'piscina'
-import { listenForBell } from '../platform/bell'
 import { JOBS } from '../jobs/index'
 import { runNextJob } from '../jobs/runJobs'
 import type { WorkerDeps } from '../jobs/define'
@@ -15,7 +14,7 @@ const BEAT_MS = 5_000
 const threads = Number(process.env.LANTHORN_WORKER_THREADS ?? Math.min(2, availableParallelism()))
 
 const threadFile = fileURLToPath(new URL(import.meta.url.endsWith('.ts') ? './analyseThread.ts' : './analyseThread.mjs', import.meta.url))
-const pool = new Piscina({ filename: threadFile, maxThreads: threads, idleTimeout: 30_000, execArgv: threadFile.endsWith('.ts') ? ['--import', 'tsx'] : [] })
+const pool = new Piscina({ filename: threadFile, minThreads: 1, maxThreads: threads, idleTimeout: 30_000, execArgv: threadFile.endsWith('.ts') ? ['--import', 'tsx'] : [] })
 const mailer = smtpMailer(process.env.SMTP_URL ?? 'smtp://127.0.0.1:1025', process.env.LANTHORN_MAIL_FROM ?? 'Lanthorn <lanthorn@localhost>')
 const deps: WorkerDeps = { ...useDeps(), mailer, analyse: (input, signal) => pool.run(input, { signal }) }
 
@@ -23,8 +22,7 @@ let stopping = false
 const stopped: Promise<void>[] = []
 const name = `worker ${hostname()} ${process.pid}`
 const startedAt = new Date()
-const ear = await listenForBell()
-const sayAlive = (): void => { beat(deps.db, { name, role: 'worker', startedAt, engine: engineOf(), wakePort: ear.port }).catch(report) }
+const sayAlive = (): void => { beat(deps.db, { name, role: 'worker', startedAt, engine: engineOf(), wakePort: deps.ear.port() }).catch(report) }
 sayAlive()
 const heart = setInterval(sayAlive, BEAT_MS)
 
@@ -32,7 +30,7 @@ const heart = setInterval(sayAlive, BEAT_MS)
 async function lane(): Promise<void> {
   while (!stopping) {
     try {
-      if (!await runNextJob(deps, JOBS)) await ear.wait(IDLE_MS)
+      if (!await runNextJob(deps, JOBS)) await deps.ear.wait(IDLE_MS)
     }
     catch (error) {
       // The database is away or restarting: say so and try again, for jobs wait there safely.
@@ -52,7 +50,6 @@ async function stop(): Promise<void> {
   clearInterval(heart)
   await Promise.all(stopped)
   mailer.close()
-  ear.close()
   await pool.destroy()
   await closeDeps()
 }

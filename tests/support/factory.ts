@@ -6,7 +6,7 @@ import { fixedClock } from '../../server/platform/clock'
 import { openDatabase } from '../../server/platform/database'
 import { randomIds, toBinary } from '../../server/platform/ids'
 import type { OutgoingMail } from '../../server/platform/mailer'
-import { silentBell } from '../../server/platform/bell'
+import { deafEar, silentBell } from '../../server/platform/bell'
 import { scryptPasswords } from '../../server/platform/passwords'
 import { threadReader } from '../../server/platform/tableReader'
 import { memoryStorage } from '../../server/platform/storage'
@@ -27,7 +27,7 @@ export function makeDeps(overrides: Partial<WorkerDeps> = {}): TestDeps {
   const sent: OutgoingMail[] = []
   const kinds = overrides.kinds ?? MEASUREMENTS
   return {
-    db, clock: fixedClock(TEST_START), ids: randomIds, storage: memoryStorage(), passwords: scryptPasswords(1024), bell: silentBell, tables: threadReader(), kinds, origin: 'http://127.0.0.1:3000',
+    db, clock: fixedClock(TEST_START), ids: randomIds, storage: memoryStorage(), passwords: scryptPasswords(1024), bell: silentBell, ear: deafEar, tables: threadReader(), kinds, origin: 'http://127.0.0.1:3000',
     mailer: { send: async (mail) => { sent.push(mail); return `<${mail.id}@test>` }, close: () => undefined },
     analyse: async (input) => {
       const kind = kinds[input.kind]

@@ -11,6 +11,6 @@ export default defineRoute({
   output: z.unknown(),
   async run({ event, query, actor, programmeId }) {
     const read = () => followProgress(useDeps(), { sessionId: actor.sessionId, programmeId })
-    return query.poll ? read() : sendEvents(event, { name: 'progress', everyMs: 1000, read })
+    return query.poll ? read() : sendEvents(event, { name: 'progress', everyMs: 1000, read, wait: useDeps().ear.wait })
   },
 })
