@@ -12,6 +12,8 @@ const at = (path: string): string => fileURLToPath(new URL(`../${path}`, import.
 interface Picture { name: string, by: string, path: string, then?: (page: Page) => Promise<void> }
 
 const PICTURES: readonly Picture[] = [
+  { name: 'sheet', by: 'chemist', path: '/skerry/sheets/new', then: planStock },
+  { name: 'instrument', by: 'physicist', path: '/skerry/instruments', then: openBay },
   { name: 'upload', by: 'chemist', path: '/skerry/series/new', then: dropFile },
   { name: 'series', by: 'chemist', path: '/skerry/series?agent=SK-09', then: openFirstSeries },
   { name: 'checks', by: 'physicist', path: '/skerry/checks', then: openWaitingFit },
@@ -23,6 +25,19 @@ async function dropFile(page: Page): Promise<void> {
   const name = 'try-me_SK-08_A1.csv'
   await page.locator('input[type=file]').setInputFiles({ name, mimeType: 'text/csv', buffer: await readFile(at(`fixtures/demo/${name}`)) })
   await page.getByRole('button', { name: 'Store and fit' }).waitFor()
+}
+
+async function planStock(page: Page): Promise<void> {
+  await page.getByLabel('Agent').fill('SK-08')
+  await page.getByLabel('Batch').fill('A1')
+  await page.getByRole('textbox', { name: 'Stock', exact: true }).fill('10.2')
+  await page.getByRole('textbox', { name: 'standard error', exact: true }).fill('0.15')
+  await page.getByLabel('Title').fill('SK-08 A1, T1 in plasma')
+}
+
+async function openBay(page: Page): Promise<void> {
+  await page.getByRole('link', { name: 'Bay 3', exact: true }).click()
+  await page.getByText('sessions', { exact: true }).first().waitFor()
 }
 
 async function openFirstSeries(page: Page): Promise<void> {

@@ -36,11 +36,12 @@ export function informationOf(jacobian: Float64Array, n: number, held: readonly 
   if (rank < k) return { ...nothing, rank }
   const inverseR = invertTriangle(r, k)
   const singular = singularValues(r, k)
+  const condition = singular[0]! / singular[k - 1]!
   const leverage = new Float64Array(n)
   for (let c = 0; c < k; c++) {
     for (let i = 0; i < n; i++) leverage[i]! += q[c * n + i]! ** 2
   }
-  return { inverse: spread(inverseR, free, lengths, held.length), condition: singular[0]! / singular[k - 1]!, rank, freeCount: k, leverage }
+  return { inverse: spread(inverseR, free, lengths, held.length), condition: condition < Infinity ? condition : null, rank, freeCount: k, leverage }
 }
 
 function normOf(values: Float64Array, from: number, count: number): number {

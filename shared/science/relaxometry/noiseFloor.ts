@@ -32,10 +32,12 @@ function spreadOfSquares(model: Model, { x }: FitData, fit: FitDone, { settings 
 }
 
 /**
- * A noise that is not seen ends on its bound, and a fit on a bound states no interval for anything. The decay then stands well above the floor: it is fitted again
+ * A noise that is not seen ends on its bound or where the signal no longer depends on it, and such a fit states no interval for anything. The decay then stands well above the floor: it is fitted again
  * with the noise held at 0, which is the plain decay.
  */
 export function withSeenFloor(model: Model, data: FitData, fit: FitOutcome, options: FitOptions): FitOutcome {
-  if (!fit.ok || !fit.parameters.some(one => one.name === SIGMA && one.atBound)) return fit
+  if (!fit.ok || !fit.parameters.some(one => one.name === SIGMA)) return fit
+  const isUnseen = fit.parameters.some(one => one.name === SIGMA && one.atBound) || fit.noInterval?.reason === 'rankDeficient'
+  if (!isUnseen) return fit
   return fitModel(model, data, { ...options, fixed: { ...options.fixed, [SIGMA]: 0 } })
 }
