@@ -110,7 +110,7 @@ describe('confirming', () => {
     const input = analysisInput(loaded, payload)
     const fit = { job, programmeId: programme.id, payload, loaded, input, outcome: toyKind.analyse(input) }
     const { failed } = await failEachQuery({ deps, stored: () => stored(programme), attempt: () => storeFit(deps, fit) })
-    expect(failed).toBeGreaterThan(10)
+    expect(failed).toBeGreaterThan(8)
     expect(await stored(programme)).toEqual({ ...before, fit: 1, fit_input: 4, evidence: 1 })
     expect(await findJob(deps.db, job.id)).toMatchObject({ state: 'done', error: null })
   })

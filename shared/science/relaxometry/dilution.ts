@@ -47,7 +47,8 @@ export interface DilutionSeries {
  * Tubes diluted one by one from a stock: c = c_s·v/(v + d), v and d by two pipettes (which may be the same).
  *
  * With q = d/(v + d): ∂ln c/∂ln v = q, ∂ln c/∂ln d = −q. Repeatability gives each tube q·√(u_v² + u_d²) of its own. Calibration moves tube i by q_i·(s_v − s_d), one and the
- * same s in all tubes, and nothing where one pipette delivers both: the part common to all (the smallest q) joins the scale, the rest stays with the tube.
+ * same s in all tubes, and nothing where one pipette delivers both: the part common to all (the smallest q) joins the scale, and the tube keeps what its own
+ * variance has beyond that, √(q² − q_min²), so that each tube's whole error is right; that the two parts move together is left out.
  * @param samePipette one pipette for stock and diluent
  * @source JCGM 100:2008 (GUM), 5.1.2 and 5.2.2 for the correlated part
  */
@@ -61,7 +62,7 @@ export function diluteEach(stock: Known, dilutions: readonly Dilution[], { forSt
     scale_frac: Math.hypot(stock.se / stock.value, common * calibration),
     tubes: shares.map(({ q, share }) => {
       const conc_mM = stock.value * share
-      return { conc_mM, ownSe_mM: share > 0 ? conc_mM * Math.hypot(q * repeat, (q - common) * calibration) : 0 }
+      return { conc_mM, ownSe_mM: share > 0 ? conc_mM * Math.hypot(q * repeat, Math.sqrt(q * q - common * common) * calibration) : 0 }
     }),
   }
 }
