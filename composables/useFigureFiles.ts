@@ -50,8 +50,7 @@ function onPaper(drawing: SVGSVGElement, figure: FigureSpec): Paper {
 function writeStyle(element: SVGElement): void {
   const style = getComputedStyle(element)
   const painted = PAINTED.map(name => `${name}:${style.getPropertyValue(name)}`).join(';')
-  element.removeAttribute('class')
-  element.removeAttribute('style')
+  for (const name of ['class', 'style', 'fill', 'stroke', 'opacity', 'fill-opacity']) element.removeAttribute(name)
   element.setAttribute('style', painted)
 }
 

@@ -28,11 +28,11 @@ async function dropFile(page: Page): Promise<void> {
 }
 
 async function planStock(page: Page): Promise<void> {
-  await page.getByLabel('Agent').fill('SK-08')
-  await page.getByLabel('Batch').fill('A1')
+  await page.getByLabel('Agent', { exact: true }).fill('SK-08')
+  await page.getByLabel('Batch', { exact: true }).fill('A1')
   await page.getByRole('textbox', { name: 'Stock', exact: true }).fill('10.2')
   await page.getByRole('textbox', { name: 'standard error', exact: true }).fill('0.15')
-  await page.getByLabel('Title').fill('SK-08 A1, T1 in plasma')
+  await page.getByLabel('Title', { exact: true }).fill('SK-08 A1, T1 in plasma')
 }
 
 async function openBay(page: Page): Promise<void> {
