@@ -6,6 +6,7 @@ import { RecordRowDto } from './record'
 export const VerdictDto = z.object({
   equilibrium: z.enum(['holds', 'condemns', 'not known']), kinetics: z.enum(['holds', 'letsGo', 'not known']),
   equilibriumSentence: z.string(), kineticsSentence: z.string(), disagree: z.boolean(), summary: z.string(),
+  inWords: z.string(), mapUses: z.enum(['kinetics', 'neither']), why: z.string(),
 })
 
 /** What equilibrium and kinetics say of one agent under the profile. */

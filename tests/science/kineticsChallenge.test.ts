@@ -4,7 +4,6 @@ import { fitChallenge, type ChallengePoint } from '#shared/science/kinetics/chal
 import { arrheniusRatio, eyringRate_per_s } from '#shared/science/kinetics/eyring'
 import { halfLife_s, rateOfHalfLife_per_s } from '#shared/science/kinetics/firstOrder'
 import { fitFormation, hydroxide_M, timeToYield_s } from '#shared/science/kinetics/formation'
-import { stabilityWords, timeWords, type StabilityFacts } from '#shared/science/kinetics/verdictWords'
 import { zincPhosphate, type ZincAnswer } from '#shared/science/kinetics/zincPhosphate'
 import { createRandom } from '#shared/science/random'
 
@@ -114,27 +113,4 @@ describe('published figures', () => {
     expect(hours[1]).toBeGreaterThan(hours[2]!)
     expect(hours[2]! / (halfLife_s(0.1 * published.rates.k1_GdDTPA!.value) / 3600)).toBeGreaterThan(1000)
   })
-})
-
-describe('two verdicts in words', () => {
-  const facts = (pM: number, halfLife: number, more: Partial<StabilityFacts> = {}): StabilityFacts => ({
-    pM: { value: pM, kind: '=', asked: 16 }, halfLife_s: { value: halfLife, kind: '=', se: null, interval: null }, decadesExtrapolated: 6.1, needed_s: 5760, ...more,
-  })
-
-  it('put a tetraamide of log K near 12 below on equilibrium and above in acid, and say so [common practice, no source]', () => {
-    const words = stabilityWords(facts(9, 1e10))
-    expect(words.together).toBe('Holds weakly at equilibrium, lets go very slowly.')
-    expect(words.disagree).toBe(true)
-    expect(words.mapUses).toBe('kinetics')
-    expect(words.kinetics).toContain('extrapolated over 6.1 decades')
-  })
-
-  it('see no disagreement where both hold or both let go, and decide nothing from a bound on the wrong side', () => {
-    expect(stabilityWords(facts(20, 1e10)).disagree).toBe(false)
-    expect(stabilityWords(facts(9, 100))).toMatchObject({ disagree: false, together: 'Holds weakly at equilibrium, lets go quickly.' })
-    expect(stabilityWords(facts(9, 0, { halfLife_s: { value: 1e5, kind: '>', se: null, interval: null } })).kinetics).toContain('not decided')
-    expect(stabilityWords(facts(9, 0, { halfLife_s: null }))).toMatchObject({ mapUses: 'neither', disagree: false })
-  })
-
-  it('name a time in the unit that suits it', () => expect([3, 300, 14040, 1.2e6, 1e10].map(timeWords)).toEqual(['3 s', '5 min', '3.9 h', '14 d', '320 y']))
 })

@@ -72,10 +72,24 @@ describe('verdict', () => {
     const { verdict } = one(tetraamide)
     expect(verdict).toMatchObject({ equilibrium: 'condemns', kinetics: 'holds', disagree: true })
     expect(verdict.summary).toMatch(/Inertness counts first/)
+    expect(verdict).toMatchObject({ inWords: 'Holds weakly at equilibrium, lets go very slowly.', mapUses: 'kinetics' })
+    expect(verdict.why).toMatch(/^The map uses kinetics/)
+  })
+
+  it('says in one line how firmly each holds, and of what is not known that it is not', () => {
+    const inWords = (rate_per_s: number | null, logK: number | null) => one(agent('a', [
+      relaxivity(4), ...(rate_per_s === null ? [] : [rateItem('k0_per_s', rate_per_s)]),
+      ...(logK === null ? [] : [item('logK', logK, { parameters: { metal: 'Gd', protonation: [9.56, 5.95] } })]),
+    ])).verdict.inWords
+    expect(inWords(1e-10, 26)).toBe('Holds strongly at equilibrium, lets go very slowly.')
+    expect(inWords(1e-4, 12)).toBe('Holds weakly at equilibrium, lets go too quickly.')
+    expect(inWords(null, 12)).toBe('Holds weakly at equilibrium, kinetics not known.')
+    expect(inWords(1e-4, null)).toBe('Equilibrium not known, lets go too quickly.')
+    expect(inWords(null, null)).toBe('Neither equilibrium nor kinetics is known.')
   })
 
   it('compares nothing when one side is not known', () => {
-    expect(one(agent('x', [relaxivity(4)])).verdict).toMatchObject({ equilibrium: 'not known', kinetics: 'not known', disagree: false, kineticsSentence: 'Kinetics: not known, no rate constants.' })
+    expect(one(agent('x', [relaxivity(4)])).verdict).toMatchObject({ equilibrium: 'not known', kinetics: 'not known', disagree: false, kineticsSentence: 'Kinetics: not known, no rate constants.', mapUses: 'neither' })
   })
 
   it('writes fractions as percentages that a person can read', () => {

@@ -149,6 +149,11 @@ export interface Verdict {
   readonly kineticsSentence: string
   readonly disagree: boolean
   readonly summary: string
+  /** Both in one line: "Holds weakly at equilibrium, lets go very slowly." */
+  readonly inWords: string
+  readonly mapUses: 'kinetics' | 'neither'
+  /** Which of the two the map uses, and why. */
+  readonly why: string
 }
 
 /** Where one agent stands under one profile. */

@@ -39,6 +39,30 @@ const SUMMARIES: Readonly<Record<string, string>> = {
   'condemns/letsGo': 'Equilibrium and kinetics both let the metal go.',
 }
 
+/** A pM this far from the one asked is firm. Screening choice (common practice, no source). */
+const FIRM_PM = 2
+/** A loss this far below its limit is very slow. Screening choice (common practice, no source). */
+const FIRM_LOSS = 100
+
+function holdWords(equilibrium: Verdict['equilibrium'], facts: VerdictFacts): string | null {
+  if (equilibrium === 'not known') return null
+  if (equilibrium === 'condemns') return 'weakly'
+  const asked = facts.limits.find(limit => limit.key === 'pM')?.limit ?? Infinity
+  return facts.pM !== null && facts.pM.kind !== '<' && facts.pM.value - asked >= FIRM_PM ? 'strongly' : 'just enough'
+}
+
+function paceWords(kinetics: Verdict['kinetics'], { loss_frac, limits }: VerdictFacts): string | null {
+  if (kinetics === 'not known' || loss_frac === null) return null
+  if (kinetics === 'letsGo') return 'too quickly'
+  const limit = limits.find(one => one.key === 'loss')?.limit ?? 0
+  return (loss_frac.interval?.[1] ?? loss_frac.value) * FIRM_LOSS <= limit ? 'very slowly' : 'slowly'
+}
+
+const WHY = {
+  kinetics: 'The map uses kinetics: what is lost before elimination depends on how fast the complex lets go. Equilibrium stands beside it as a tick and a limit, for a long stay and for what rates alone do not show.',
+  neither: 'Without a rate law the map has no fraction lost: the agent stands in a lane at its edge, and equilibrium alone is no measure of what is lost in the time it has.',
+} as const
+
 /** Verdicts from the judged limits: pM and the bound fraction for equilibrium, the loss for kinetics. */
 export function verdictOf(facts: VerdictFacts): Verdict {
   const outcome = (key: string): string => facts.limits.find(limit => limit.key === key)?.outcome ?? 'not known'
@@ -46,10 +70,17 @@ export function verdictOf(facts: VerdictFacts): Verdict {
   const equilibrium = thermodynamic.includes('over') ? 'condemns' : thermodynamic.includes('within') ? 'holds' : 'not known'
   const loss = outcome('loss')
   const kinetics = loss === 'over' ? 'letsGo' : loss === 'within' ? 'holds' : 'not known'
+  const mapUses = facts.loss_frac ? 'kinetics' : 'neither'
   return {
     equilibrium, kinetics,
     equilibriumSentence: equilibriumSentence(facts), kineticsSentence: kineticsSentence(facts),
     disagree: (equilibrium === 'holds' && kinetics === 'letsGo') || (equilibrium === 'condemns' && kinetics === 'holds'),
     summary: SUMMARIES[`${equilibrium}/${kinetics}`] ?? 'One of the two is not known, so they cannot be compared.',
+    inWords: inWords(holdWords(equilibrium, facts), paceWords(kinetics, facts)), mapUses, why: WHY[mapUses],
   }
+}
+
+function inWords(hold: string | null, pace: string | null): string {
+  if (hold === null && pace === null) return 'Neither equilibrium nor kinetics is known.'
+  return `${hold === null ? 'Equilibrium not known' : `Holds ${hold} at equilibrium`}, ${pace === null ? 'kinetics not known' : `lets go ${pace}`}.`
 }
