@@ -9,11 +9,13 @@ import type { ScreeningProfile } from '../../shared/science/placement/profile'
 import type { Placement } from '../../shared/science/placement/types'
 import type { Deps } from '../platform/deps'
 import { listRecordRows } from '../queries/records'
+import { acidHalfLives } from './acidHalfLives'
 import { readAgents, stated, type AgentView } from './agentView'
 import { isAllSigned } from './listAgents'
 import { noSuchAgent } from './registryWords'
 import { screeningProfile, type ProfileInUse } from './screeningProfile'
 import { toRecordRow } from './showRecord'
+import { speciationSystem } from './speciationSystem'
 import { conditionalFigure, rateFigure } from './stabilityFigures'
 
 interface StabilityInput { programmeId: string, scope: Scope }
@@ -21,7 +23,7 @@ interface StabilityInput { programmeId: string, scope: Scope }
 /** What equilibrium and kinetics say of every agent under the programme's profile. */
 export async function showStability(deps: Pick<Deps, 'db'>, { programmeId, scope }: StabilityInput): Promise<StabilityDto> {
   const [agents, inUse] = await Promise.all([readAgents(deps.db, programmeId, scope), screeningProfile(deps.db, programmeId)])
-  return { conditions: conditionsOf(inUse), agents: rowsOf(agents, inUse.profile, scope) }
+  return { conditions: conditionsOf(inUse), agents: rowsOf(agents, inUse.profile, scope), inAcid: acidHalfLives(agents) }
 }
 
 /** The same for one agent, with its records and the two figures. */
@@ -32,7 +34,8 @@ export async function showAgentStability(deps: Pick<Deps, 'db'>, { programmeId, 
   const records = await listRecordRows(deps.db, programmeId, scope, agent.row.id)
   return {
     conditions: conditionsOf(inUse), agent: rowsOf([agent], inUse.profile, scope)[0]!, records: records.map(toRecordRow),
-    conditionalFigure: conditionalFigure(agent), rateFigure: rateFigure(agent, inUse.profile, scope !== 'signed'), assumptions: [...PLASMA_ASSUMPTIONS],
+    halfLives: rowsOf(agents, inUse.profile, scope).flatMap(({ id, code: of, mechanism, topology, halfLife }) => halfLife ? [{ id, code: of, mechanism, topology, halfLife }] : []),
+    speciation: speciationSystem(agent), conditionalFigure: conditionalFigure(agent), rateFigure: rateFigure(agent, inUse.profile, scope !== 'signed'), assumptions: [...PLASMA_ASSUMPTIONS],
   }
 }
 

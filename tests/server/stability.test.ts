@@ -91,6 +91,37 @@ describe('stability of agents under the profile', () => {
   })
 })
 
+describe('half-lives in acid', () => {
+  const acid = (hours: number, acid_M: number, kind: '=' | '>' | '<' = '=') => ({
+    halfLife: { type: 'quantity' as const, kind, value: hours, se: null, unit: 'h' }, acid_M: { type: 'number' as const, value: acid_M, unit: 'M' }, acid: { type: 'choice' as const, choice: 'HCl' }, temperature_K: { type: 'number' as const, value: 25, unit: '°C' },
+  })
+  const logK = (value: number) => thermoEntry(PUBLISHED.dota, { logK: { type: 'quantity', kind: '=', value, se: 0.1, unit: '' } })
+  async function enterBoth(code: string, value: number, hours: number, kind: '=' | '>' | '<' = '=') {
+    await register(deps, programme, { code, smiles: RING, topology: 'ring' })
+    await enter(deps, programme, { agent: code, kind: 'thermo', entry: logK(value) })
+    await enter(deps, programme, { agent: code, kind: 'acidHalfLife', entry: acid(hours, 2.5, kind) })
+  }
+
+  it('put the tetraamide above its tetraacetate parent in the same acid and below it on log K, and say so [common practice, no source]', async () => {
+    await enterBoth('ACETATE', 26, 50)
+    await enterBoth('AMIDE', 12, 250)
+    const { inAcid } = await overview()
+    expect(inAcid).toHaveLength(1)
+    expect(inAcid[0]!.condition).toMatch(/2\.5.M HCl/)
+    expect(inAcid[0]!.rows.map(row => [row.code, row.logK!.value.value, row.halfLife.value.value])).toEqual([['AMIDE', 12, 250 * 3600], ['ACETATE', 26, 50 * 3600]])
+    expect(inAcid[0]!.remarks).toEqual([expect.stringMatching(/^AMIDE holds its metal less strongly at equilibrium than ACETATE \(log K 12\.0 against 26\.0\) and lets go 5\.0 times more slowly in this acid/)])
+  })
+
+  it('are never laid together from different acids, and a bound on the wrong side proves nothing', async () => {
+    await enterBoth('ACETATE', 26, 50, '>')
+    await enterBoth('AMIDE', 12, 250)
+    await enter(deps, programme, { agent: 'AMIDE', kind: 'acidHalfLife', entry: acid(2000, 0.1) })
+    const { inAcid } = await overview()
+    expect(inAcid.map(table => table.rows.length)).toEqual([2, 1])
+    expect(inAcid.flatMap(table => table.remarks)).toEqual([])
+  })
+})
+
 describe('stability of one agent', () => {
   const detail = async (code: string) => AgentStabilityDto.parse(await showAgentStability(deps, { programmeId: programme.id, scope: 'programme', code }))
 
@@ -105,10 +136,22 @@ describe('stability of one agent', () => {
     expect(records.map(one => one.kind).sort()).toEqual(['rateLaw', 'thermo'])
   })
 
+  it('gives the species diagram its constants, each with the evidence it comes from, and the half-lives of all agents', async () => {
+    await enterAgent('GD-DTPA', PUBLISHED.dtpa, { k1_per_M_s: { value: 0.58 } }, false)
+    await enterAgent('GD-DOTA', PUBLISHED.dota, { k0_per_s: { value: 1e-9 } }, true)
+    const { speciation, halfLives } = await detail('GD-DTPA')
+    expect(speciation).toMatchObject({ metal: 'Gd', logK: 22.46, ligandProtonation: PUBLISHED.dtpa.protonation, competitors: ['Ca', 'Zn', 'Cu'] })
+    const own = speciation!.species.find(one => one.name === 'LnL')!
+    expect(own).toMatchObject({ logBeta: 22.46, stoichiometry: { Ln: 1, L: 1 } })
+    expect(own.evidenceId).toMatch(/^[0-9a-f-]{36}$/)
+    expect(speciation!.species.filter(one => one.evidenceId === null).map(one => one.name)).toEqual(['Ln(OH)'])
+    expect(halfLives.map(one => one.code).sort()).toEqual(['GD-DOTA', 'GD-DTPA'])
+  })
+
   it('has no figure where there is nothing to draw', async () => {
     await register(deps, programme, { code: 'EMPTY' })
-    const { conditionalFigure, rateFigure } = await detail('EMPTY')
-    expect([conditionalFigure, rateFigure]).toEqual([null, null])
+    const { conditionalFigure, rateFigure, speciation } = await detail('EMPTY')
+    expect([conditionalFigure, rateFigure, speciation]).toEqual([null, null, null])
   })
 
   it('is not found from another programme', async () => {

@@ -4,7 +4,7 @@ import { conditionWords } from '../../shared/evidence/conditionWords'
 import { asDuration, asPercent } from '../../shared/evidence/display'
 import type { Quantity } from '../../shared/evidence/quantity'
 import { unitOnOneLine } from '../../shared/evidence/records/unitOnOneLine'
-import type { StabilityRowDto } from '../../shared/schemas/stability'
+import type { HalfLifeDto } from '../../shared/schemas/stability'
 import type { StructureDrawing } from '../../shared/schemas/structure'
 import { halfLifeLine } from '../../shared/stability/halfLifeLine'
 
@@ -29,10 +29,10 @@ describe('numbers on the registry\'s screens', () => {
 })
 
 describe('the line of half-lives', () => {
-  const row = (code: string, seconds: number | null, kind: Quantity['kind'] = '=') => ({ id: code, code, halfLife: seconds === null ? null : { value: quantity(seconds, { kind }), state: 'signed', note: null } }) as unknown as StabilityRowDto
+  const row = (code: string, seconds: number, kind: Quantity['kind'] = '=') => ({ id: code, code, halfLife: { value: quantity(seconds, { kind }), state: 'signed', note: null } }) as unknown as HalfLifeDto
 
-  it('orders agents from short to long and leaves out those without a rate law', () => {
-    const { marks } = halfLifeLine([row('B', 1e8), row('A', 1e4), row('C', null)], 5760)
+  it('orders agents from short to long', () => {
+    const { marks } = halfLifeLine([row('B', 1e8), row('A', 1e4)], 5760)
     expect(marks.map(mark => mark.agent.code)).toEqual(['A', 'B'])
     expect(marks[0]!.at).toBeLessThan(marks[1]!.at)
   })
