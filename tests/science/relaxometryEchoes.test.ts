@@ -1,13 +1,16 @@
 import { describe, expect, it } from 'vitest'
 import { scaledBessel } from '../../shared/science/bessel'
-import { fitModel } from '../../shared/science/least-squares/fitModel'
+import { bootstrapFit } from '../../shared/science/least-squares/bootstrap'
+import { fitModel, type FitData, type FitOptions } from '../../shared/science/least-squares/fitModel'
 import type { FitDone } from '../../shared/science/least-squares/outcome'
+import { profileFit } from '../../shared/science/least-squares/profileFit'
 import type { Model } from '../../shared/science/models/define'
 import { MODELS } from '../../shared/science/models/index'
 import { meanMagnitude, RAYLEIGH_MEAN } from '../../shared/science/models/multiEchoNoise'
 import { createRandom } from '../../shared/science/random'
 import { reportFlags } from '../../shared/science/relaxometry/flags'
 import { fitMeanSquares } from '../../shared/science/relaxometry/noiseFloor'
+import { fitTubes } from '../../shared/science/relaxometry/tubes'
 import { ECHO_FLAGS } from '../../shared/science/relaxometry/tubeFlags'
 
 const [plain, floor, squares, offset] = [MODELS.multiEcho, MODELS.multiEchoNoiseFloor, MODELS.multiEchoMeanSquares, MODELS.multiEchoOffset] as unknown as Model[]
@@ -79,10 +82,10 @@ describe('echoes that sink into the noise', () => {
     for (const { name, value, se } of fit.parameters) expect(Math.abs(value - TRUTH[name as keyof typeof TRUTH])).toBeLessThan(3.2 * se!)
   })
   it('give T2 by mean squares; squares of the means read T2 low [Miller & Joseph 1993; methods: 3 to 6 %]', () => {
-    const fit = fitMeanSquares(squares!, { x: TE_S, y: meanSquares }, {})
+    const { fit } = fitMeanSquares(squares!, { x: TE_S, y: meanSquares }, {})
     if (!fit.ok) throw new Error(fit.message)
     expect(Math.abs(t2Of(fit).value - TRUTH.t2_s)).toBeLessThan(3.2 * t2Of(fit).se!)
-    const wrong = fitMeanSquares(squares!, { x: TE_S, y: means.map(value => value * value) }, {})
+    const { fit: wrong } = fitMeanSquares(squares!, { x: TE_S, y: means.map(value => value * value) }, {})
     if (!wrong.ok) throw new Error(wrong.message)
     const ratio = t2Of(wrong).value / TRUTH.t2_s
     expect(ratio).toBeLessThan(0.985)
@@ -90,10 +93,52 @@ describe('echoes that sink into the noise', () => {
   })
   it('far above the noise leave the floor unseen: the plain decay, with an interval', () => {
     const clean = TE_S.map((te, i) => 1000 * Math.exp(-te / 0.4) + (i % 3) - 1)
-    const fit = fitMeanSquares(squares!, { x: TE_S, y: clean.map(value => value * value - 500) }, {})
+    const { fit } = fitMeanSquares(squares!, { x: TE_S, y: clean.map(value => value * value - 500) }, {})
     if (!fit.ok) throw new Error(fit.message)
     expect(t2Of(fit).interval).not.toBeNull()
     expect(fit.fixed).toEqual({ sigma_au: 0 })
+  })
+})
+
+describe('intervals asked for besides Student\'s', () => {
+  const bootstrap = (model: Model, data: FitData, fit: FitDone, options: FitOptions = {}) => bootstrapFit(model, data, fit, { ...options, seed: 'draws', samples: 199 })
+
+  it('keep a noise at 0 where it was not seen, in every draw', () => {
+    let held = 0
+    for (let k = 0; k < 12; k++) {
+      const random = createRandom(`unseen ${k}`)
+      const data = { x: TE_S, y: TE_S.map(te => 1000 * Math.exp(-te / 0.3) + 3 * random.normal()) }
+      const { fit } = fitTubes(floor!, [data], 'signed').tubes[0]!
+      if (!fit.ok || fit.noInterval || fit.fixed.sigma_au !== 0) continue
+      held++
+      const found = bootstrap(floor!, data, fit)
+      if (!found.ok) throw new Error(found.message)
+      expect(found.failed).toBe(0)
+      expect(found.intervals.map(one => one.name)).toEqual(['a_au', 't2_s'])
+    }
+    expect(held).toBeGreaterThan(2)
+  })
+
+  it('hold the estimate of mean squares: they are worked out with the weights of the fit', () => {
+    for (let k = 0; k < 12; k++) {
+      const data = { x: TE_S, y: region(`profile ${k}`).meanSquares }
+      const { fit, relativeSigma = null } = fitTubes(squares!, [data], 'meanSquares').tubes[0]!
+      if (!fit.ok || fit.noInterval) throw new Error('no interval')
+      const weighted = { ...data, sigma: relativeSigma }
+      const options = { relativeSigma: true }
+      const t2 = t2Of(fit)
+      const profile = profileFit(squares!, weighted, fit, options).find(one => one.name === 't2_s')!.interval
+      const draws = bootstrap(squares!, weighted, fit, options)
+      if (!draws.ok) throw new Error(draws.message)
+      const drawn = draws.intervals.find(one => one.name === 't2_s')!
+      for (const [low, high] of [[profile.low!, profile.high!], [drawn.low, drawn.high]]) {
+        expect(low).toBeLessThan(t2.value)
+        expect(high).toBeGreaterThan(t2.value)
+        // A decay that is well seen has intervals of much the same width by all three ways.
+        expect((high! - low!) / (t2.interval![1] - t2.interval![0])).toBeGreaterThan(0.6)
+        expect((high! - low!) / (t2.interval![1] - t2.interval![0])).toBeLessThan(1.4)
+      }
+    }
   })
 })
 

@@ -86,7 +86,7 @@ function blankConditions({ medium, aeration, temperature_K, b0_T }: Conditions) 
 }
 
 function tubeResult(parts: Parts): TubeResult {
-  const { one: { tube, left, data, options }, recovery: { fit, polarity }, model, kind, input } = parts
+  const { one: { tube, left, data, options }, recovery: { fit, polarity, relativeSigma = null }, model, kind, input } = parts
   const base = { tubeNo: tube.tubeNo, label: tube.label, role: tube.role, conc_mM: tube.conc_mM, excluded: left.tube }
   const signal = polarity?.signal ?? data.y
   if (!fit.ok) {
@@ -97,7 +97,7 @@ function tubeResult(parts: Parts): TubeResult {
   }
   const fitted = [...derivedOf(model, fit), ...fit.parameters]
   const { parameters, words } = withIntervals(fitted.map(namedParameter), {
-    model, data: { ...data, y: signal }, fit, options, choice: String(optionOf(input, INTERVAL_OPTION)), seed: `${input.seed}/${tube.tubeNo}`,
+    model, data: { ...data, y: signal, sigma: relativeSigma ?? data.sigma }, fit, options: relativeSigma ? { ...options, relativeSigma: true } : options, choice: String(optionOf(input, INTERVAL_OPTION)), seed: `${input.seed}/${tube.tubeNo}`,
   })
   const time = parameters.find(parameter => parameter.name === kind.time) ?? null
   return {

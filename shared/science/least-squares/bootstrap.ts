@@ -35,10 +35,12 @@ export function bootstrapFit(
   const residuals = modifiedResiduals(model, fit, { x, units, settings, values, used })
   const random = createRandom(options.seed)
   const found: number[][] = fit.parameters.map(() => [])
+  // What the fit held, whoever decided it: a refit must not let it go.
+  const held = Object.keys(fit.fixed).length > 0 ? { fixed: fit.fixed } : {}
   let failed = 0
   for (let k = 0; k < options.samples; k++) {
     const y = used.map((point, i) => fit.fitted[point]! + units[i]! * residuals[Math.floor(random.uniform() * residuals.length)]!)
-    const again = fitModel(model, { x, y, sigma }, { ...options, start: values, secondOpinion: false })
+    const again = fitModel(model, { x, y, sigma }, { ...options, ...held, start: values, secondOpinion: false })
     if (again.ok && again.converged) again.parameters.forEach((p, j) => found[j]!.push(p.value))
     else failed++
   }

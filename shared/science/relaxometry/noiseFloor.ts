@@ -4,6 +4,12 @@ import type { FitDone, FitOutcome } from '../least-squares/outcome'
 import type { Model } from '../models/define'
 
 const REWEIGHTINGS = 3
+
+export interface MeanSquaresFit {
+  readonly fit: FitOutcome
+  /** Relative standard deviations that the fit was weighted with, for whoever goes on with it (profile, bootstrap); null where it was unweighted. */
+  readonly relativeSigma: readonly number[] | null
+}
 const SIGMA = 'sigma_au'
 
 /**
@@ -11,15 +17,17 @@ const SIGMA = 'sigma_au'
  * pixels were averaged is not known. Where no noise is seen the fit is unweighted.
  * @source Miller & Joseph, Magn. Reson. Imaging 11, 1051 (1993)
  */
-export function fitMeanSquares(model: Model, data: FitData, options: FitOptions): FitOutcome {
+export function fitMeanSquares(model: Model, data: FitData, options: FitOptions): MeanSquaresFit {
   let fit = withSeenFloor(model, data, fitModel(model, data, options), options)
+  let relativeSigma: readonly number[] | null = null
   for (let turn = 0; turn < REWEIGHTINGS && fit.ok; turn++) {
     const sigma = spreadOfSquares(model, data, fit, options)
-    if (sigma === null) return fit
+    if (sigma === null) break
+    relativeSigma = sigma
     const weighted: FitData = { ...data, sigma }
     fit = withSeenFloor(model, weighted, fitModel(model, weighted, { ...options, relativeSigma: true }), { ...options, relativeSigma: true })
   }
-  return fit
+  return { fit, relativeSigma }
 }
 
 function spreadOfSquares(model: Model, { x }: FitData, fit: FitDone, { settings }: FitOptions): number[] | null {

@@ -28,6 +28,8 @@ export interface RecoveryFit {
   readonly polarity: Polarity | null
   /** The fit with the runner-up's signs where the polarity is ambiguous. */
   readonly alternative: FitOutcome | null
+  /** Relative standard deviations that the fit found for itself and was weighted with. Left out: none. */
+  readonly relativeSigma?: readonly number[] | null
 }
 
 /**

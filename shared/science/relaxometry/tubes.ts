@@ -56,7 +56,7 @@ export function fitTubes(model: Model, tubes: readonly FitData[], signal: Signal
 }
 
 function fitOne(model: Model, data: FitData, signal: SignalForm, options: FitOptions): RecoveryFit {
-  if (signal === 'meanSquares') return { fit: fitMeanSquares(model, data, options), polarity: null, alternative: null }
+  if (signal === 'meanSquares') return { ...fitMeanSquares(model, data, options), polarity: null, alternative: null }
   const found = fitRecovery(model, data, signal, options)
   return { ...found, fit: withSeenFloor(model, data, found.fit, options) }
 }
