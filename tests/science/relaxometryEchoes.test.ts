@@ -6,10 +6,10 @@ import type { FitDone } from '../../shared/science/least-squares/outcome'
 import { profileFit } from '../../shared/science/least-squares/profileFit'
 import type { Model } from '../../shared/science/models/define'
 import { MODELS } from '../../shared/science/models/index'
-import { meanMagnitude, RAYLEIGH_MEAN } from '../../shared/science/models/multiEchoNoise'
+import { meanMagnitude, RAYLEIGH_MEAN, spreadOfMagnitude } from '../../shared/science/models/multiEchoNoise'
 import { createRandom } from '../../shared/science/random'
 import { reportFlags } from '../../shared/science/relaxometry/flags'
-import { fitMeanSquares } from '../../shared/science/relaxometry/noiseFloor'
+import { fitInNoise } from '../../shared/science/relaxometry/noiseFloor'
 import { fitTubes } from '../../shared/science/relaxometry/tubes'
 import { ECHO_FLAGS } from '../../shared/science/relaxometry/tubeFlags'
 
@@ -69,6 +69,17 @@ describe('the mean of a magnitude in noise', () => {
   })
 })
 
+describe('the spread of a magnitude', () => {
+  it('is 0.655 σ for no signal and σ where it is strong, and what simulated pixels scatter by [Koay & Basser 2006; simulation]', () => {
+    expect(spreadOfMagnitude(0, 2)).toBeCloseTo(2 * Math.sqrt(2 - Math.PI / 2), 12)
+    expect(spreadOfMagnitude(59, 1) / spreadOfMagnitude(61, 1)).toBeCloseTo(1, 3)
+    const random = createRandom('spread')
+    const values = Array.from({ length: 40_000 }, () => Math.hypot(1.5 + random.normal(), random.normal()))
+    const mean = values.reduce((sum, value) => sum + value, 0) / values.length
+    expect(spreadOfMagnitude(1.5, 1)).toBeCloseTo(Math.sqrt(values.reduce((sum, value) => sum + (value - mean) ** 2, 0) / values.length), 2)
+  })
+})
+
 describe('echoes that sink into the noise', () => {
   const { means, meanSquares } = region('sinking')
   it('read too long by the plain decay, which is flagged with what to do', () => {
@@ -82,10 +93,10 @@ describe('echoes that sink into the noise', () => {
     for (const { name, value, se } of fit.parameters) expect(Math.abs(value - TRUTH[name as keyof typeof TRUTH])).toBeLessThan(3.2 * se!)
   })
   it('give T2 by mean squares; squares of the means read T2 low [Miller & Joseph 1993; methods: 3 to 6 %]', () => {
-    const { fit } = fitMeanSquares(squares!, { x: TE_S, y: meanSquares }, {})
+    const { fit } = fitInNoise(squares!, { x: TE_S, y: meanSquares }, 'meanSquares', {})
     if (!fit.ok) throw new Error(fit.message)
     expect(Math.abs(t2Of(fit).value - TRUTH.t2_s)).toBeLessThan(3.2 * t2Of(fit).se!)
-    const { fit: wrong } = fitMeanSquares(squares!, { x: TE_S, y: means.map(value => value * value) }, {})
+    const { fit: wrong } = fitInNoise(squares!, { x: TE_S, y: means.map(value => value * value) }, 'meanSquares', {})
     if (!wrong.ok) throw new Error(wrong.message)
     const ratio = t2Of(wrong).value / TRUTH.t2_s
     expect(ratio).toBeLessThan(0.985)
@@ -93,7 +104,7 @@ describe('echoes that sink into the noise', () => {
   })
   it('far above the noise leave the floor unseen: the plain decay, with an interval', () => {
     const clean = TE_S.map((te, i) => 1000 * Math.exp(-te / 0.4) + (i % 3) - 1)
-    const { fit } = fitMeanSquares(squares!, { x: TE_S, y: clean.map(value => value * value - 500) }, {})
+    const { fit } = fitInNoise(squares!, { x: TE_S, y: clean.map(value => value * value - 500) }, 'meanSquares', {})
     if (!fit.ok) throw new Error(fit.message)
     expect(t2Of(fit).interval).not.toBeNull()
     expect(fit.fixed).toEqual({ sigma_au: 0 })

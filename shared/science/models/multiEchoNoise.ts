@@ -25,6 +25,17 @@ export function meanMagnitude(amplitude: number, sigma: number): { mean: number,
 }
 
 /**
+ * Standard deviation of a magnitude: √(A² + 2σ² − S̄²), which falls from σ to 0.655 σ where the signal sinks into the noise.
+ * @source second moment of Rice's distribution; Koay & Basser, J. Magn. Reson. 179, 317 (2006)
+ */
+export function spreadOfMagnitude(amplitude: number, sigma: number): number {
+  // From about 60 σ on the difference of squares is all rounding, and the spread is σ to four digits.
+  if (amplitude > 60 * sigma) return sigma
+  const { mean } = meanMagnitude(amplitude, sigma)
+  return Math.sqrt(amplitude * amplitude + 2 * sigma * sigma - mean * mean)
+}
+
+/**
  * Mean magnitude over a region, noise floor included:
  *     S̄(TE) = σ·√(π/2)·L½(−A²/2σ²),   A = a·exp(−TE/T2)
  * σ is that of one pixel in one channel: measured beside the tubes (SD of background magnitudes over 0.655) or fitted.
@@ -32,7 +43,7 @@ export function meanMagnitude(amplitude: number, sigma: number): { mean: number,
  */
 export const multiEchoNoiseFloor = defineModel({
   id: 'multiEchoNoiseFloor',
-  version: 1,
+  version: 2,
   title: 'Multi-echo decay with noise floor, region means',
   equation: 'S = σ·√(π/2)·L½(−A²/2σ²); A = a·exp(−TE/T2)',
   source: 'Koay & Basser, J. Magn. Reson. 179, 317 (2006)',

@@ -4,7 +4,7 @@ import { withPooledSigma } from '../least-squares/pooled'
 import { createSearches } from '../least-squares/varpro'
 import type { Model } from '../models/define'
 import { chi2UpperP } from '../statistics'
-import { fitMeanSquares, withSeenFloor } from './noiseFloor'
+import { fitInNoise, SIGMA } from './noiseFloor'
 import { fitRecovery, type RecoveryFit } from './polarity'
 
 /** p of equal variances below which the noise is not taken to be the same in all tubes. */
@@ -56,9 +56,8 @@ export function fitTubes(model: Model, tubes: readonly FitData[], signal: Signal
 }
 
 function fitOne(model: Model, data: FitData, signal: SignalForm, options: FitOptions): RecoveryFit {
-  if (signal === 'meanSquares') return { ...fitMeanSquares(model, data, options), polarity: null, alternative: null }
-  const found = fitRecovery(model, data, signal, options)
-  return { ...found, fit: withSeenFloor(model, data, found.fit, options) }
+  if (!model.names.includes(SIGMA)) return fitRecovery(model, data, signal === 'magnitude' ? 'magnitude' : 'signed', options)
+  return { ...fitInNoise(model, data, signal === 'meanSquares' ? 'meanSquares' : 'magnitudes', options), polarity: null, alternative: null }
 }
 
 /**
