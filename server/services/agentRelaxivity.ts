@@ -2,6 +2,7 @@ import { AppError } from '../../shared/errors'
 import { describeConditions } from '../../shared/measurements/relaxation/conditions'
 import type { AnalysisOutcome, Conditions } from '../../shared/measurements/types'
 import type { Scope } from '../../shared/permissions'
+import { testAgreement, type SlopeWithErrors } from '../../shared/science/relaxometry/agreement'
 import { testEqualSlopes, type BatchLine } from '../../shared/science/relaxometry/ancova'
 import { poolReplicates } from '../../shared/science/relaxometry/pool'
 import { bootstrapRatio, type PairedTube } from '../../shared/science/relaxometry/ratioBootstrap'
@@ -15,6 +16,7 @@ type Fitted = ComparableFit & { outcome: Extract<AnalysisOutcome, { ok: true }> 
 
 const SAME = ['b0_T', 'medium', 'echoSpacing_s'] as const
 const SAME_TEMPERATURE_K = 0.5
+const SAME_PH = 0.2
 
 /** Relaxivities of an agent, laid together where they were measured alike: do batches and days agree, what do they give together, and r2/r1. Partners see signed ones. */
 export async function agentRelaxivity(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId, scope, code }: { programmeId: string, scope: Scope, code: string }): Promise<AgentRelaxivityDto> {
@@ -41,6 +43,19 @@ const nameOf = (fit: Fitted): string => fit.outcome.series.headline.name
 
 function isAlike(one: Conditions, other: Conditions, keys: readonly string[] = SAME): boolean {
   return keys.every(key => (one[key] ?? null) === (other[key] ?? null)) && !(Math.abs(Number(one.temperature_K) - Number(other.temperature_K)) > SAME_TEMPERATURE_K)
+    // A pH that one of them does not state tells nothing against the other.
+    && !(typeof one.pH === 'number' && typeof other.pH === 'number' && Math.abs(one.pH - other.pH) > SAME_PH)
+}
+
+/** Series of one batch whose stock is not named are taken to come from stocks of their own. */
+const stockOf = (fit: Fitted): string => `${fit.lot}/${String(fit.conditions.stock ?? fit.seriesId)}`
+const scaleOf = ({ conditions }: Fitted): number => typeof conditions.concScaleError_frac === 'number' ? conditions.concScaleError_frac : 0
+
+/** Headline with the error of its line and that of its stock apart; null where it has none. */
+function partsOf(fit: Fitted): SlopeWithErrors | null {
+  const { value, se } = fit.outcome.series.headline
+  const own = se === null ? Number.NaN : Math.sqrt(se ** 2 - (value * scaleOf(fit)) ** 2)
+  return own > 0 ? { value, fitSe: own, scale_frac: scaleOf(fit), stock: stockOf(fit), dof: usedPoints(fit).length - 2 } : null
 }
 
 const usedPoints = (fit: Fitted) => fit.outcome.series.points.filter(point => point.excluded === null)
@@ -48,8 +63,10 @@ const usedPoints = (fit: Fitted) => fit.outcome.series.points.filter(point => po
 function groupDto({ kinds }: Pick<Deps, 'kinds'>, fits: readonly Fitted[]): RelaxivityGroup {
   const first = fits[0]!
   const headline = first.outcome.series.headline
-  const replicates = fits.flatMap(fit => (fit.outcome.series.headline.se ?? 0) > 0 ? [{ value: fit.outcome.series.headline.value, se: fit.outcome.series.headline.se!, preparation: `${fit.lot}/${String(fit.conditions.stock ?? fit.seriesId)}` }] : [])
+  const parts = fits.flatMap(fit => partsOf(fit) ?? [])
+  const replicates = parts.map(one => ({ value: one.value, se: Math.hypot(one.fitSe, one.value * one.scale_frac), commonSe: Math.abs(one.value) * one.scale_frac, preparation: one.stock }))
   const pooled = replicates.length === fits.length && fits.length > 1 ? poolReplicates(replicates) : null
+  const agreement = parts.length === fits.length ? testAgreement(parts) : null
   const test = fits.length > 1 ? testEqualSlopes(fits.map(lineOf)) : null
   return {
     quantity: headline.name, label: headline.label, conditions: describeConditions(headline.label, first.conditions),
@@ -62,7 +79,8 @@ function groupDto({ kinds }: Pick<Deps, 'kinds'>, fits: readonly Fitted[]): Rela
       }
     }),
     pooled: pooled?.ok ? { value: pooled.value, se: pooled.se, interval: pooled.interval && [pooled.interval[0], pooled.interval[1]], preparations: pooled.preparations, betweenSd: pooled.betweenSd, homogeneityP: pooled.homogeneityP } : null,
-    equal: test?.ok ? { f: test.f, df1: test.dof1, df2: test.dof2, p: test.p } : null,
+    agree: agreement && { f: agreement.f, df1: agreement.dof1, df2: agreement.dof2, p: agreement.p, stocks: new Set(parts.map(one => one.stock)).size },
+    parallel: test?.ok ? { f: test.f, df1: test.dof1, df2: test.dof2, p: test.p } : null,
   }
 }
 
@@ -87,10 +105,13 @@ function ratioOf(r1: Fitted, r2: Fitted): Pick<RelaxivityRatio, 'value' | 'se' |
   if (found) return { value: found.value, se: found.se, interval: found.interval && [found.interval[0], found.interval[1]], tubes: pairs.length, correlation: found.correlation, method: 'bootstrap' }
   const [a, b] = [r1.outcome.series.headline, r2.outcome.series.headline]
   if (!(a.value > 0)) return null
-  const se = a.se === null || b.se === null ? null : Math.abs(b.value / a.value) * Math.hypot(a.se / a.value, b.se / b.value)
+  const isOneStock = typeof r1.conditions.stock === 'string' && stockOf(r1) === stockOf(r2)
+  const [own1, own2] = [partsOf(r1), partsOf(r2)]
+  const relative = (own: SlopeWithErrors) => isOneStock ? own.fitSe / own.value : Math.hypot(own.fitSe / own.value, own.scale_frac)
+  const se = own1 === null || own2 === null ? null : Math.abs(b.value / a.value) * Math.hypot(relative(own1), relative(own2))
   const half = se === null ? null : normalQuantile(0.975) * se
   const value = b.value / a.value
-  return { value, se, interval: half === null ? null : [value - half, value + half], tubes: 0, correlation: null, method: 'propagation' }
+  return { value, se, interval: half === null ? null : [value - half, value + half], tubes: 0, correlation: null, method: isOneStock ? 'oneStock' : 'apart' }
 }
 
 /** Tubes of both series with one concentration; the same name settles which, where several share it. */

@@ -14,14 +14,17 @@ export const RelaxivityGroup = z.object({
   })),
   /** Pooled over preparations with the variance between them; null with one series. */
   pooled: Estimate.extend({ preparations: z.number(), betweenSd: z.number().nullable(), homogeneityP: z.number().nullable() }).nullable(),
-  equal: z.object({ f: z.number(), df1: z.number(), df2: z.number(), p: z.number() }).nullable(),
+  /** Whether the relaxivities are one, errors of the stocks counted. */
+  agree: z.object({ f: z.number(), df1: z.number(), df2: z.number().nullable(), p: z.number(), stocks: z.number() }).nullable(),
+  /** Whether the lines as measured are parallel: analysis of covariance, which knows nothing of the stocks. */
+  parallel: z.object({ f: z.number(), df1: z.number(), df2: z.number(), p: z.number() }).nullable(),
 })
 export type RelaxivityGroup = z.output<typeof RelaxivityGroup>
 
 export const RelaxivityRatio = Estimate.extend({
   lot: z.string(), conditions: z.string(), r1SeriesId: z.string(), r2SeriesId: z.string(), tubes: z.number(), correlation: z.number().nullable(),
-  /** bootstrap: residuals of the same tubes drawn in pairs; propagation: the two slopes taken as independent. */
-  method: z.enum(['bootstrap', 'propagation']),
+  /** bootstrap: residuals of the same tubes drawn in pairs; oneStock: other tubes of one stock, whose error cancels; apart: nothing is shared, all errors count. */
+  method: z.enum(['bootstrap', 'oneStock', 'apart']),
 })
 export type RelaxivityRatio = z.output<typeof RelaxivityRatio>
 

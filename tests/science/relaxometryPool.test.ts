@@ -1,10 +1,12 @@
 import { describe, expect, it } from 'vitest'
 import reference from '../../fixtures/reference/line/ancova.json'
+import { testAgreement, type SlopeWithErrors } from '../../shared/science/relaxometry/agreement'
 import { testEqualSlopes } from '../../shared/science/relaxometry/ancova'
 import { concentrationFromIcp, concentrationFromShift, susceptibilityShift_ppm } from '../../shared/science/relaxometry/concentration'
 import { poolReplicates } from '../../shared/science/relaxometry/pool'
 import { GD_MU_EFF } from '../../shared/science/constants'
 import { createRandom } from '../../shared/science/random'
+import { fitRelaxivity, type RelaxivityTube } from '../../shared/science/relaxometry/relaxivity'
 import { tQuantile } from '../../shared/science/statistics'
 
 describe('equal slopes', () => {
@@ -26,7 +28,57 @@ describe('equal slopes', () => {
   })
 })
 
+describe('one relaxivity, all errors counted', () => {
+  const slope = (value: number, more: Partial<SlopeWithErrors> = {}): SlopeWithErrors => ({ value, fitSe: 0.03, scale_frac: 0, stock: 'a', dof: null, ...more })
+
+  it('is the inverse-variance mean and its χ² where nothing is shared [closed form]', () => {
+    const found = testAgreement([slope(4, { fitSe: 0.1 }), slope(4.3, { fitSe: 0.2, stock: 'b' })])!
+    expect(found.common).toBeCloseTo((4 / 0.01 + 4.3 / 0.04) / (1 / 0.01 + 1 / 0.04), 12)
+    expect(found.f).toBeCloseTo(0.3 ** 2 / (0.01 + 0.04), 12)
+    expect(found.p).toBeCloseTo(0.1797, 3)
+  })
+  it('does not excuse a difference between two series of one stock, whose error moves both [closed form]', () => {
+    const one = testAgreement([slope(4, { scale_frac: 0.05 }), slope(4.2, { scale_frac: 0.05 })])!
+    const two = testAgreement([slope(4, { scale_frac: 0.05 }), slope(4.2, { scale_frac: 0.05, stock: 'b' })])!
+    expect(one.f).toBeCloseTo(0.2 ** 2 / (2 * 0.03 ** 2), 9)
+    expect(one.p).toBeLessThan(1e-5)
+    expect(two.p).toBeGreaterThan(0.4)
+    expect(two.commonSe).toBeCloseTo(Math.sqrt((0.03 ** 2 + (4.1 * 0.05) ** 2) / 2), 9)
+  })
+  it('is doubted at p below 0.01 about once in a hundred where two stocks of one relaxivity are 2 % apart, and the lines alone in a third of the cases [simulation]', () => {
+    const random = createRandom('stocks')
+    const tries = 400
+    let [doubted, notParallel] = [0, 0]
+    for (let k = 0; k < tries; k++) {
+      const lines = ['a', 'b'].map((stock) => {
+        const factor = 1 + 0.02 * random.normal()
+        const conc_mM = [0, 0.25, 0.5, 1, 2]
+        const rates = conc_mM.map(c => 0.4 + 4 * c * factor * (1 + 0.01 * random.normal()))
+        const tubes = rates.map((rate, i): RelaxivityTube => ({ conc_mM: conc_mM[i]!, concSe_mM: 0.01 * conc_mM[i]!, time_s: 1 / (rate * (1 + 0.004 * random.normal())), timeSe_s: 0.004 / rate, isBlank: i === 0 }))
+        const line = fitRelaxivity(tubes, { scale_frac: 0.02 })
+        if (!line.ok) throw new Error(line.message)
+        return { stock, tubes, line }
+      })
+      const found = testAgreement(lines.map(({ stock, line }) => slope(line.relaxivity_per_mM_s.value, { fitSe: line.fitSe_per_mM_s!, scale_frac: 0.02, stock, dof: 3 })))!
+      if (found.p < 0.01) doubted++
+      const parallel = testEqualSlopes(lines.map(({ stock, tubes }) => ({ label: stock, conc_mM: tubes.map(tube => tube.conc_mM), rate_per_s: tubes.map(tube => 1 / tube.time_s), rateSe_per_s: tubes.map(tube => tube.timeSe_s! / tube.time_s ** 2) })))
+      if (parallel.ok && parallel.p < 0.01) notParallel++
+    }
+    expect(doubted / tries).toBeLessThan(0.02)
+    expect(notParallel / tries).toBeGreaterThan(0.25)
+  }, 60_000)
+  it('is not judged from one slope or without errors', () => {
+    expect(testAgreement([slope(4)])).toBeNull()
+    expect(testAgreement([slope(4), slope(4.1, { fitSe: 0 })])).toBeNull()
+  })
+})
+
 describe('replicates', () => {
+  it('keep the error of their stock however often one is measured [closed form]', () => {
+    const pooled = poolReplicates([1, 2, 3, 4].map(k => ({ value: 4 + k / 100, se: Math.hypot(0.04, 0.08), commonSe: 0.08, preparation: 'one stock' })))
+    expect(pooled.ok && pooled.se).toBeCloseTo(Math.hypot(0.04 / 2, 0.08), 12)
+    expect(poolReplicates([{ value: 4, se: 0.1, commonSe: 0.1, preparation: 'a' }])).toMatchObject({ ok: false, reason: 'badError' })
+  })
   it('are the inverse-variance mean while they agree, interval by t with preparations − 1 [closed form]', () => {
     const pooled = poolReplicates([{ value: 4.2, se: 0.1, preparation: 'a' }, { value: 4.3, se: 0.1, preparation: 'b' }, { value: 4.25, se: 0.1, preparation: 'c' }])
     if (!pooled.ok) throw new Error(pooled.message)

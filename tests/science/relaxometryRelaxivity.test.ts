@@ -3,7 +3,6 @@ import { describe, expect, it } from 'vitest'
 import { fitLine } from '../../shared/science/least-squares/line'
 import { createRandom } from '../../shared/science/random'
 import { reportFlags } from '../../shared/science/relaxometry/flags'
-import { relaxivityRatio } from '../../shared/science/relaxometry/ratio'
 import { fitRelaxivity, relaxivityBand, type RelaxivityOptions, type RelaxivityTube } from '../../shared/science/relaxometry/relaxivity'
 import { SERIES_FLAGS } from '../../shared/science/relaxometry/seriesFlags'
 
@@ -116,37 +115,5 @@ describe('flags of a series', () => {
     expect(raised(tubes.map(tube => ({ ...tube, time_s: 1 / (1 / tube.time_s - 0.4 * tube.conc_mM ** 2) })))).toContain('bent')
     expect(raised(tubes.with(5, { ...tubes[5]!, time_s: tubes[5]!.time_s * 1.25, timeSe_s: 0.0003 }))).toContain('influence')
     expect(raised(tubes.map(tube => ({ ...tube, conc_mM: tube.conc_mM / 100, time_s: 1 / (0.35 + 0.042 * tube.conc_mM) })))).toContain('smallSpan')
-  })
-})
-
-describe('r2/r1', () => {
-  it('is free of the common scale error [it is the same factor in both]', () => {
-    const [one, two] = [tubesOf(), tubesOf({ r: 5.1, dia: 0.6, seed: 'r2' })]
-    const ratio = (scale_frac: number | null) => relaxivityRatio(done(one, { scale_frac }), done(two, { scale_frac }), one)!
-    expect(ratio(0.05)).toEqual(ratio(null))
-    expect(ratio(null).value).toBeCloseTo(done(two).relaxivity_per_mM_s.value / done(one).relaxivity_per_mM_s.value, 14)
-  })
-  it('has the error that 600 simulated pairs scatter by, to 12 % [simulation with 3 % pipetting errors common to both]', () => {
-    const random = createRandom('ratio')
-    const ratios: number[] = []
-    const errors: number[] = []
-    for (let k = 0; k < 600; k++) {
-      const actual = CONC_MM.map(c => c * (1 + 0.03 * random.normal()))
-      const measure = (r: number, dia: number): RelaxivityTube[] => CONC_MM.map((conc_mM, i) => {
-        const time_s = (1 + 0.01 * random.normal()) / (dia + r * actual[i]!)
-        return { conc_mM, concSe_mM: 0.03 * conc_mM, time_s, timeSe_s: 0.01 * time_s, isBlank: conc_mM === 0 }
-      })
-      const [one, two] = [measure(4.2, 0.35), measure(5.1, 0.6)]
-      const ratio = relaxivityRatio(done(one), done(two), one)!
-      ratios.push(ratio.value)
-      errors.push(ratio.se!)
-    }
-    const mean = ratios.reduce((sum, r) => sum + r, 0) / ratios.length
-    const sd = Math.sqrt(ratios.reduce((sum, r) => sum + (r - mean) ** 2, 0) / ratios.length)
-    const typical = errors.sort((a, b) => a - b)[300]!
-    expect(Math.abs(typical / sd - 1)).toBeLessThan(0.12)
-  }, 60_000)
-  it('is not stated for lines on different tubes', () => {
-    expect(relaxivityRatio(done(tubesOf()), done(tubesOf().slice(1)), tubesOf())).toBeNull()
   })
 })

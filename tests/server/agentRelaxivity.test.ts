@@ -31,13 +31,15 @@ describe('relaxivities of an agent, laid together', () => {
     const [r1, r2] = groups
     expect(r1!.pooled).toMatchObject({ preparations: 2 })
     expect(Math.abs(r1!.pooled!.value - 4.2)).toBeLessThan(3 * r1!.pooled!.se!)
-    expect(r1!.equal!.p).toBeGreaterThan(0.01)
+    expect(r1!.agree).toMatchObject({ df1: 1, stocks: 2 })
+    expect(r1!.agree!.p).toBeGreaterThan(0.01)
+    expect(r1!.parallel!.p).toBeGreaterThan(0.001)
     expect(r1!.series[0]).toMatchObject({ tubes: 5, range_mM: [0, 2] })
-    expect([r2!.pooled, r2!.equal]).toEqual([null, null])
+    expect([r2!.pooled, r2!.agree, r2!.parallel]).toEqual([null, null, null])
   })
   it('are said to differ where they do', async () => {
     const { programme } = await twoBatches(4.6)
-    expect((await read(programme.id)).groups[0]!.equal!.p).toBeLessThan(0.01)
+    expect((await read(programme.id)).groups[0]!.agree!.p).toBeLessThan(0.01)
   })
   it('give r2/r1 of one batch by a paired bootstrap, the same each time and near the truth', async () => {
     const { programme } = await twoBatches()

@@ -4,6 +4,8 @@ import { chi2UpperP, inverseVarianceMean, tQuantile } from '../statistics'
 export interface Replicate {
   readonly value: number
   readonly se: number
+  /** The part of `se` that all repeats of one preparation share (assay of the stock): averaging does not lessen it. Left out: none. */
+  readonly commonSe?: number
   /** Independent preparation or day it belongs to. */
   readonly preparation: string
 }
@@ -23,7 +25,7 @@ export interface Pooled {
 }
 
 /**
- * Pools replicates. Repeats within one preparation are averaged by inverse variance (error scaled up where they disagree); the preparations are then
+ * Pools replicates. Repeats within one preparation are averaged by the inverse variance of their own errors (scaled up where they disagree), what they share is added; the preparations are then
  * weighted by 1/(SE² + τ²) with the between-preparation variance τ² of Paule and Mandel, and the interval is Hartung and Knapp's with preparations − 1 degrees
  * of freedom, never narrower than the plain one.
  * @returns a refusal for no replicate or an error that is not above 0
@@ -31,8 +33,8 @@ export interface Pooled {
  */
 export function poolReplicates(replicates: readonly Replicate[], level = 0.95): Pooled | { readonly ok: false, readonly reason: 'none' | 'badError', readonly message: string } {
   if (replicates.length === 0) return { ok: false, reason: 'none', message: 'There is nothing to pool.' }
-  const bad = replicates.findIndex(({ value, se }) => !Number.isFinite(value) || !(se > 0 && se < Infinity))
-  if (bad >= 0) return { ok: false, reason: 'badError', message: `Replicate ${bad + 1} has no value with an error above 0.` }
+  const bad = replicates.findIndex(({ value, se, commonSe = 0 }) => !Number.isFinite(value) || !(se > 0 && se < Infinity) || !(commonSe >= 0 && commonSe < se))
+  if (bad >= 0) return { ok: false, reason: 'badError', message: `Replicate ${bad + 1} has no value with an error above 0, of which the common part is less.` }
   const groups = [...new Set(replicates.map(r => r.preparation))].map(name => poolWithin(replicates.filter(r => r.preparation === name)))
   const k = groups.length
   if (k === 1) return { ok: true, value: groups[0]!.value, se: groups[0]!.se, interval: null, preparations: 1, betweenSd: null, homogeneityP: null, level }
@@ -50,8 +52,10 @@ export function poolReplicates(replicates: readonly Replicate[], level = 0.95): 
 }
 
 function poolWithin(replicates: readonly Replicate[]): { value: number, se: number } {
-  const { mean, se, chi2 } = inverseVarianceMean(replicates.map(r => r.value), replicates.map(r => r.se))
-  return { value: mean, se: se * Math.sqrt(Math.max(1, replicates.length > 1 ? chi2 / (replicates.length - 1) : 1)) }
+  const own = replicates.map(({ se, commonSe = 0 }) => Math.sqrt(se ** 2 - commonSe ** 2))
+  const { mean, se, chi2 } = inverseVarianceMean(replicates.map(r => r.value), own)
+  const common = replicates.reduce((sum, r, i) => sum + (se / own[i]!) ** 2 * (r.commonSe ?? 0), 0)
+  return { value: mean, se: Math.hypot(se * Math.sqrt(Math.max(1, replicates.length > 1 ? chi2 / (replicates.length - 1) : 1)), common) }
 }
 
 /** τ² ≥ 0 at which the weighted scatter equals its expectation k − 1; 0 where it is below that already. */

@@ -1,4 +1,5 @@
 import { createRandom } from '../random'
+import { tQuantile } from '../statistics'
 import type { LineEstimate } from './relaxivity'
 
 /** One tube measured both ways. */
@@ -27,7 +28,9 @@ interface Line { readonly slope: number, readonly intercept: number, readonly we
  * of one tube are drawn together. An error common to all concentrations moves neither line's shape and cancels in the ratio.
  *
  * Residuals are taken in units of the rates' errors, divided by √(1 − leverage) and centred; new rates are the lines plus drawn residuals, refitted with the same weights.
- * @param level coverage of the percentile interval
+ * The interval is Student's about the value, with the standard deviation of the draws and tubes − 2 degrees of freedom: percentiles of so few residuals cover 87 % at
+ * five tubes and 91 % at seven (simulated).
+ * @param level coverage of the interval
  * @returns null with fewer than four tubes, equal concentrations, or a slope r1 that is not above 0
  * @source Davison & Hinkley, Bootstrap Methods and Their Application (1997), section 6.2.3, residuals drawn in pairs
  */
@@ -53,8 +56,11 @@ export function bootstrapRatio(tubes: readonly PairedTube[], { seed, draws = 200
     ratios.push(b / a)
   }
   if (ratios.length < 0.9 * draws) return null
+  const value = line2.slope / line1.slope
+  const se = spread(ratios)
+  const half = tQuantile((1 + level) / 2, tubes.length - 2) * se
   return {
-    value: line2.slope / line1.slope, se: spread(ratios), interval: [quantile(ratios, (1 - level) / 2), quantile(ratios, (1 + level) / 2)], slope1_per_mM_s: line1.slope, slope2_per_mM_s: line2.slope,
+    value, se, interval: [value - half, value + half], slope1_per_mM_s: line1.slope, slope2_per_mM_s: line2.slope,
     correlation: correlation(slopes1, slopes2), draws: ratios.length,
   }
 }
@@ -84,13 +90,6 @@ function modified(x: readonly number[], y: readonly number[], { slope, intercept
 function spread(values: readonly number[]): number {
   const mean = values.reduce((sum, value) => sum + value, 0) / values.length
   return Math.sqrt(values.reduce((sum, value) => sum + (value - mean) ** 2, 0) / (values.length - 1))
-}
-
-function quantile(values: readonly number[], p: number): number {
-  const sorted = [...values].sort((a, b) => a - b)
-  const at = p * (sorted.length - 1)
-  const below = Math.floor(at)
-  return sorted[below]! + (at - below) * (sorted[Math.min(below + 1, sorted.length - 1)]! - sorted[below]!)
 }
 
 function correlation(a: readonly number[], b: readonly number[]): number {
