@@ -23,6 +23,10 @@ export interface ColumnSpec {
   max?: number
   /** Stem of the column whose error this one holds: it settles headers such as 'SD', and gives the unit where the header has none. */
   follows?: string
+  /** Numbers without a unit are in the stored one: for rates of relaxation, which the trade gives in no other. */
+  bare?: boolean
+  /** For aux columns: where no name tells tubes apart, rows that differ here are different tubes. */
+  parts?: boolean
   /** A header word that settles a condition: 'T2 (ms)' says that T2 was measured. */
   implies?: { key: string, words: Readonly<Record<string, string>> }
 }
@@ -184,6 +188,8 @@ export interface SeriesResult {
   points: { tubeNo: number, label: string, x: number, y: number, ySe: number | null, fitted: number, studentised: number | null, cook: number | null, leaveOneOut: number | null, excluded: string | null }[]
   line: { x: number, y: number }[]
   band: { x: number, low: number, high: number }[]
+  /** What the points stand at and show, where that is not a rate over the concentration of the agent. */
+  axes?: { x: FigureSpec['x'], y: FigureSpec['y'] }
   /** A second curve through the rates, such as a binding isotherm. Absent where there is none. */
   curve?: { name: string, points: { x: number, y: number }[] }
   statistics: { label: string, value: number | null, text: string }[]
@@ -220,6 +226,12 @@ export interface MeasurementKind {
   /** A line for the person who chooses what to upload. */
   purpose: string
   columns: readonly ColumnSpec[]
+  /** What a tube's name may tell. 'course': it names a flask ('0.1 M HCl') and says nothing of the agent or its concentration, nor is a blank expected. Left out: 'agent'. */
+  labelsName?: 'agent' | 'course'
+  /** Condition that gives the concentration of every tube for which the table has none. */
+  concFrom?: string
+  /** Heading of the series on screens, with a note. Left out: the slope of a relaxivity. */
+  seriesWords?: { title: string, note: string }
   conditions: readonly ConditionSpec[]
   layouts: readonly ('long' | 'columnPerTube' | 'rowPerTube')[]
   /** Template files that people download: name and text. */

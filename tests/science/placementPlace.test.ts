@@ -66,6 +66,18 @@ describe('records that meet', () => {
   })
 })
 
+describe('a working concentration outside what was measured', () => {
+  const placed = (parameters: Record<string, number>) => one(agent('a', [{ ...relaxivity(4), parameters }])).flags.find(flag => flag.id === 'outsideMeasured')
+  it('is flagged where the line is bent, and only there [methods: relaxivity]', () => {
+    // ΔR1 of 1 per s and r1 of 4 ask for 0.25 mM.
+    expect(placed({ lowestConc_mM: 0.5, highestConc_mM: 2, quadraticP: 0.001 })!.sentence).toMatch(/^The working concentration, 0\.25 mM, lies outside the 0\.5 to 2 mM/)
+    expect(placed({ lowestConc_mM: 0, highestConc_mM: 0.2, quadraticP: 0.001 })).toBeDefined()
+    expect(placed({ lowestConc_mM: 0, highestConc_mM: 2, quadraticP: 0.001 })).toBeUndefined()
+    expect(placed({ lowestConc_mM: 0.5, highestConc_mM: 2, quadraticP: 0.6 })).toBeUndefined()
+    expect(placed({})).toBeUndefined()
+  })
+})
+
 describe('verdict', () => {
   it('shows a low log K that does not let go for what it is: equilibrium against it, kinetics for it', () => {
     const tetraamide = agent('amide', [relaxivity(2.5), rateItem('k0_per_s', 1e-10), item('logK', 12.8, { parameters: { metal: 'Gd', protonation: [9.56, 5.95] } })])

@@ -87,6 +87,17 @@ describe('options of a fit', () => {
     expect(series.curve!.points).toHaveLength(61)
     expect(method).toContain('binding isotherm')
   })
+
+  it('counts the error of each tube\'s own concentration in the isotherm, by the slope of the curve there', () => {
+    const input = inputOf('SK-02_A1_T2_echoes.csv', { options: { line: 'binding' } })
+    const known = { ...input, conditions: { ...input.conditions, protein_mM: 0.6 } }
+    const gainOf = (concSe_frac: number | null) => {
+      const outcome = analysed({ ...known, tubes: known.tubes.map(tube => ({ ...tube, concSe_mM: concSe_frac === null ? null : concSe_frac * tube.conc_mM })) })
+      return outcome.series.curve === undefined ? null : outcome.series.statistics.find(one => one.label === 'Isotherm against line')!.value
+    }
+    expect(gainOf(null)).not.toBe(gainOf(0.2))
+    expect(gainOf(0)).toBe(gainOf(null))
+  })
 })
 
 describe('the reference tube', () => {

@@ -1,4 +1,5 @@
 import { fitModel } from '../../science/least-squares/fitModel'
+import type { FitDone } from '../../science/least-squares/outcome'
 import { bindingIsotherm } from '../../science/models/bindingIsotherm'
 import type { Model } from '../../science/models/define'
 import { fUpperP } from '../../science/statistics'
@@ -24,11 +25,13 @@ export function fitBinding(rates: readonly TubeRate[], { protein_mM }: Condition
   if (typeof protein_mM !== 'number') return { ...nothing, flags: [flagOf('noProtein', 'No binding isotherm', 'It needs the concentration of the protein: add it to the conditions, and fit again.')] }
   const model = bindingIsotherm as Model
   const [x, y] = [rates.map(rate => rate.conc_mM), rates.map(rate => rate.rate_per_s)]
-  const sigma = rates.every(rate => (rate.se_per_s ?? 0) > 0) ? rates.map(rate => rate.se_per_s ?? 0) : null
+  const own = rates.every(rate => (rate.se_per_s ?? 0) > 0) ? rates.map(rate => rate.se_per_s ?? 0) : null
   const settings = { protein_mM }
-  const fit = fitModel(model, { x, y, sigma }, { settings })
+  const plain = fitModel(model, { x, y, sigma: own }, { settings })
+  const sigma = own && plain.ok ? effectiveSigma(rates, own, at => model.evaluate(at, valuesOf(plain), settings)) : own
+  const fit = sigma === own ? plain : fitModel(model, { x, y, sigma }, { settings })
   if (!fit.ok) return { ...nothing, flags: [flagOf('noBinding', 'No binding isotherm', `${fit.message} Accepted: ${fit.accepted}`)] }
-  const values = Object.fromEntries(fit.parameters.map(one => [one.name, one.value]))
+  const values = valuesOf(fit)
   const [low, high] = [Math.min(...x), Math.max(...x)]
   const flags = fit.noInterval ? [flagOf('bindingOpen', 'Binding not settled by these tubes', `${fit.noInterval.message} Measure more concentrations around that of the protein, ${protein_mM} mM.`)] : []
   return {
@@ -37,6 +40,18 @@ export function fitBinding(rates: readonly TubeRate[], { protein_mM }: Condition
     statistics: [{ label: 'Isotherm against line', value: gainP(fit, x, y, sigma), text: gainText(gainP(fit, x, y, sigma)) }],
     method: ` A binding isotherm with one kind of site and ${protein_mM} mM of protein was fitted beside the line (${bindingIsotherm.equation}).`,
   }
+}
+
+const valuesOf = (fit: FitDone): Record<string, number> => Object.fromEntries(fit.parameters.map(one => [one.name, one.value]))
+
+/**
+ * Errors of the rates with those of each tube's own concentration, by the slope of the curve there: √(σ_R² + (dR/dc·σ_c)²).
+ * @source Orear, Am. J. Phys. 50, 912 (1982), effective variance; from memory
+ */
+function effectiveSigma(rates: readonly TubeRate[], own: readonly number[], curve: (conc_mM: number) => number): readonly number[] {
+  if (rates.every(rate => !rate.concSe_mM)) return own
+  const step = 1e-4 * Math.max(...rates.map(rate => rate.conc_mM))
+  return rates.map(({ conc_mM, concSe_mM }, i) => Math.hypot(own[i] ?? 0, (curve(conc_mM + step) - curve(conc_mM)) / step * (concSe_mM ?? 0)))
 }
 
 /** F-test of the two parameters that the isotherm has more than the line, which is its special case. */

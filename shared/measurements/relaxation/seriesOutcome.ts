@@ -4,7 +4,7 @@ import { optionOf } from '../fitOptions'
 import { fitBinding, withBinding } from './binding'
 import { evidenceConditions } from './conditions'
 import { LINE_OPTION } from './options'
-import { fitSlope, lineSeLabel } from './slope'
+import { fitSlope, lineSeLabel, QUADRATIC_LABEL } from './slope'
 import { ratesFrom } from './tubeRate'
 
 interface Parts {
@@ -35,12 +35,13 @@ export function relaxivityEvidence(outcome: Extract<AnalysisOutcome, { ok: true 
   const used = points.filter(point => point.excluded === null)
   const dia = parameters.find(parameter => parameter.name.endsWith('Dia_per_s'))
   const fitSe = statistics.find(({ label }) => label === lineSeLabel(name.charAt(1)))?.value ?? null
+  const quadraticP = statistics.find(({ label }) => label === QUADRATIC_LABEL)?.value ?? null
   return [{
     quantity: name, value: { value, kind, se, interval, unit }, conditions: evidenceConditions(conditions), covarianceGroup: stockGroup(conditions),
     detail: {
       nTubes: used.length, nTubesLeftOut: points.length - used.length, nPoints: outcome.tubes.reduce((sum, tube) => sum + tube.points.filter(point => point.excluded === null).length, 0),
       preparations: typeof conditions.preparations === 'number' ? conditions.preparations : 1, hasBlank: tubes.some(tube => tube.role === 'blank'),
-      fitSe, lowestConc_mM: Math.min(...used.map(point => point.x)), highestConc_mM: Math.max(...used.map(point => point.x)),
+      fitSe, quadraticP, lowestConc_mM: Math.min(...used.map(point => point.x)), highestConc_mM: Math.max(...used.map(point => point.x)),
       diamagneticRate_per_s: dia?.value ?? null, diamagneticRateSe_per_s: dia?.se ?? null,
     },
   }]

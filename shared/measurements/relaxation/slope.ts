@@ -11,6 +11,8 @@ export interface SlopeDone { ok: true, series: SeriesResult, line: RelaxivityDon
 export interface SlopeRefused { ok: false, reason: string, message: string, accepted: string }
 
 const LINE_POINTS = 41
+/** The statistic that says whether the line is bent. */
+export const QUADRATIC_LABEL = 'Quadratic term'
 
 /** The statistic that holds the part of the error which the line itself gives. */
 export const lineSeLabel = (digit: string): string => `SE of r_${digit} from the line`
@@ -95,7 +97,7 @@ function statisticsOf(line: RelaxivityDone, digit: '1' | '2'): SeriesResult['sta
     { label: lineSeLabel(digit), value: line.fitSe_per_mM_s, text: `${shown(line.fitSe_per_mM_s)} mM^-1 s^-1` },
     { label: `SE of r_${digit} from the common concentration error`, value: line.scaleSe_per_mM_s, text: line.scaleSe_per_mM_s === null ? 'not given' : `${shown(line.scaleSe_per_mM_s)} mM^-1 s^-1` },
     { label: 'Reduced χ²', value: line.reducedChi2, text: line.reducedChi2 === null ? 'not available: no errors of the rates' : `${shown(line.reducedChi2)}${line.chi2P === null ? '' : `, ${pWords(line.chi2P)}`}` },
-    { label: 'Quadratic term', value: line.quadraticP, text: line.quadraticP === null ? 'not available' : pWords(line.quadraticP) },
+    { label: QUADRATIC_LABEL, value: line.quadraticP, text: line.quadraticP === null ? 'not available' : pWords(line.quadraticP) },
     { label: 'Lack of fit', value: line.lackOfFit?.p ?? null, text: line.lackOfFit === null ? 'no two tubes share a concentration' : `F(${line.lackOfFit.dof1}, ${line.lackOfFit.dof2}) = ${shown(line.lackOfFit.f)}, ${pWords(line.lackOfFit.p)}` },
     { label: 'R²', value: line.r2, text: shown(line.r2, 6) },
     { label: 'Intercept without the blank, less the blank', value: blank?.difference_per_s ?? null, text: blank === null ? 'no blank to compare' : `${shown(blank.difference_per_s, 2)} s^-1${blank.p === null ? '' : `, ${pWords(blank.p)}`}` },

@@ -101,6 +101,7 @@ function followedUnit(spec: ColumnSpec, columns: readonly ReadColumn[]): Unit | 
 
 /** Signals, fractions and pure numbers need no unit; times and concentrations do. */
 export function unitlessUnit(spec: ColumnSpec): Unit | null {
+  if (spec.bare && spec.dimension !== 'text') return storedUnit(spec.dimension)
   return spec.dimension === 'signal' || spec.dimension === 'none' || spec.dimension === 'fraction' ? storedUnit(spec.dimension) : null
 }
 

@@ -1,5 +1,5 @@
 import type { TubeDraft, UploadDraft } from '../draft'
-import type { ColumnSpec, MeasurementKind, PointTable, UploadProblem } from '../types'
+import type { ColumnSpec, Conditions, MeasurementKind, PointTable, UploadProblem } from '../types'
 import { readCell, type ValueCell } from './cells'
 import type { How } from './columns'
 import { specsOf } from './layout'
@@ -13,6 +13,7 @@ import type { UnderstoodTube } from './understood'
 
 export interface FinishInput {
   kind: MeasurementKind
+  conditions: Conditions
   draft: UploadDraft
   decimal: DecimalMark
   /** Agent and batch that a line above the table names for all tubes. */
@@ -37,9 +38,9 @@ function finishTube(raw: RawTube, index: number, bare: ReadonlyMap<string, numbe
   const choice = draft.tubes?.find(candidate => candidate.key === raw.key)
   const label = choice?.label || raw.label || nameFor(raw, index)
   checkLabel(label, raw, problems)
-  const guess = readTubeLabel(raw.label)
+  const guess = input.kind.labelsName === 'course' ? SAYS_NOTHING : readTubeLabel(raw.label)
   const planned = onSheet(raw.label, input.sheet)
-  const conc = settleConcentration(raw, choice, guess.conc_mM ?? planned?.conc_mM ?? bare.get(raw.key) ?? null, input)
+  const conc = settleConcentration(raw, choice, guess.conc_mM ?? planned?.conc_mM ?? bare.get(raw.key) ?? ofAllTubes(input), input)
   const role = choice?.role ?? guessRole(raw, guess, { conc_mM: conc.value, planned })
   const agent = settleAgent(raw, { role, guess, choice, planned }, input)
   const { table, places } = readPoints(raw, input)
@@ -50,8 +51,15 @@ function finishTube(raw: RawTube, index: number, bare: ReadonlyMap<string, numbe
     how: { role: choice?.role === undefined ? 'guessed' : 'chosen', agent: agent.how, conc: conc.how },
     place: raw.place, points: table, pointPlaces: places,
   }
-  note(problems, ...tubeProblems(tube, raw))
+  note(problems, ...tubeProblems(tube, raw, input.kind))
   return tube
+}
+
+const SAYS_NOTHING: LabelGuess = { role: 'sample', conc_mM: null, concSe_mM: null, agent: null, batch: null }
+
+function ofAllTubes({ kind, conditions }: FinishInput): number | null {
+  const value = kind.concFrom === undefined ? null : conditions[kind.concFrom]
+  return typeof value === 'number' ? value : null
 }
 
 function nameFor(raw: RawTube, index: number): string {
@@ -65,7 +73,8 @@ function checkLabel(label: string, raw: RawTube, problems: UploadProblem[]): voi
 }
 
 /** Heads that are bare numbers: concentrations, unless they only count the tubes. */
-function bareConcentrations(raw: readonly RawTube[], { draft, problems }: FinishInput): Map<string, number> {
+function bareConcentrations(raw: readonly RawTube[], { kind, draft, problems }: FinishInput): Map<string, number> {
+  if (kind.labelsName === 'course') return new Map()
   const open = raw.filter(tube => tube.conc === null && tube.key.startsWith('column'))
   const values = open.map(tube => parseLooseNumber(tube.label))
   const numbers = values.flatMap(value => value.ok ? [value.value] : [])
@@ -100,10 +109,10 @@ type Owner = { agent: string | null, batch: string | null, how: How }
 interface Known { role: UnderstoodTube['role'], guess: LabelGuess, choice: TubeDraft | undefined, planned: SheetTube | null }
 
 /** A blank belongs to one agent only where the file or the person says so; otherwise all agents share it. */
-function settleAgent(raw: RawTube, { role, guess, choice, planned }: Known, { draft, named }: FinishInput): Owner {
+function settleAgent(raw: RawTube, { role, guess, choice, planned }: Known, { kind, draft, named }: FinishInput): Owner {
   const inFile = { agent: raw.agent && !isBlankName(raw.agent.text) && /\w/.test(raw.agent.text) ? raw.agent.text : null, batch: raw.batch && /\w/.test(raw.batch.text) ? raw.batch.text : null }
   const isShared = role === 'blank' || role === 'reference'
-  const fromLabel = isShared ? { agent: null, batch: null } : guess.agent !== null ? guess : planned !== null ? { agent: planned.agent, batch: planned.lot } : sampleName(raw)
+  const fromLabel = isShared || kind.labelsName === 'course' ? { agent: null, batch: null } : guess.agent !== null ? guess : planned !== null ? { agent: planned.agent, batch: planned.lot } : sampleName(raw)
   const standard = isShared ? { agent: null, batch: null } : { agent: draft.complexCode ?? null, batch: draft.lot ?? null }
   const lines = isShared ? { agent: null, batch: null } : named
   const agent = choice?.complexCode !== undefined ? choice.complexCode : inFile.agent ?? standard.agent ?? lines.agent ?? fromLabel.agent
@@ -167,14 +176,14 @@ function readAux(point: RawPoint, spec: ColumnSpec, { decimal, problems }: Finis
   return cell === undefined || cell.text === '' ? null : readCell(cell, decimal, problems)
 }
 
-function tubeProblems(tube: UnderstoodTube, raw: RawTube): UploadProblem[] {
+function tubeProblems(tube: UnderstoodTube, raw: RawTube, { concFrom }: MeasurementKind): UploadProblem[] {
   if (tube.role === 'aside') return []
   const where = { row: raw.row, column: raw.column }
   const problems: UploadProblem[] = raw.conflicts.map(cell => blocks('concentrationVaries', `Tube ${quoted(tube.label)} has concentration ${quoted(raw.conc?.text ?? '')} in row ${raw.conc?.row} and ${quoted(cell.text)} here.`,
     'one concentration per tube, or another tube name', { row: cell.row, column: cell.column }))
   const field = (name: string) => ({ ...where, field: `tubes.${tube.tubeNo}.${name}` })
   if (tube.role === 'sample' && tube.conc_mM === null && (raw.conc === null || raw.conc.text === '')) {
-    problems.push(blocks('noConcentration', `Tube ${quoted(tube.label)} has no concentration.`, 'a concentration in mM, or the role blank', field('conc_mM')))
+    problems.push(blocks('noConcentration', `Tube ${quoted(tube.label)} has no concentration.`, 'a concentration in mM, or the role blank', concFrom === undefined ? field('conc_mM') : { field: `conditions.${concFrom}` }))
   }
   if (tube.conc_mM !== null && tube.conc_mM < 0) problems.push(blocks('outOfDomain', `The concentration of tube ${quoted(tube.label)} is negative.`, 'a concentration of 0 or more', field('conc_mM')))
   if (tube.concSe_mM !== null && tube.concSe_mM < 0) problems.push(blocks('outOfDomain', `The concentration error of tube ${quoted(tube.label)} is negative.`, 'an error of 0 or more, or none', field('concSe_mM')))

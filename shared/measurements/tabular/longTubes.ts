@@ -9,6 +9,14 @@ type Role = ColumnSpec['role']
 
 interface Line { record: TableRecord, tube: string, agent: string, batch: string, conc: string }
 
+/** What stands in for a name where a row has none: 'acid 0.1 M, temperature 25 °C'. */
+function partsText(record: TableRecord, parting: readonly ReadColumn[]): string {
+  return parting.flatMap(({ index, spec, unit }) => {
+    const cell = record.cells[index] ?? ''
+    return cell === '' ? [] : [`${spec?.synonyms[0] ?? ''} ${cell} ${unit?.symbol ?? ''}`.trim()]
+  }).join(', ')
+}
+
 /**
  * Tubes of a table with a row per point (or per result): rows that belong together are found by the tube's name, and where one name stands
  * for several agents, batches or concentrations, by these as well.
@@ -16,10 +24,11 @@ interface Line { record: TableRecord, tube: string, agent: string, batch: string
 export function longTubes(body: readonly TableRecord[], columns: readonly ReadColumn[], splitAlways: boolean): RawTube[] {
   const at = (role: Role) => columns.find(column => column.spec?.role === role) ?? null
   const text = (record: TableRecord, role: Role) => { const column = at(role); return column === null ? '' : record.cells[column.index] ?? '' }
-  const lines = body.map(record => ({
-    record, tube: text(record, 'tube'), agent: text(record, 'agent'), batch: text(record, 'batch'), conc: text(record, 'conc'),
-  }))
   const aux = columns.filter(column => column.spec?.role === 'aux')
+  const parting = aux.filter(column => column.spec?.parts)
+  const lines = body.map(record => ({
+    record, tube: text(record, 'tube') || partsText(record, parting), agent: text(record, 'agent'), batch: text(record, 'batch'), conc: text(record, 'conc'),
+  }))
   return [...groupLines(lines, splitAlways)].map(([key, group]) => makeTube(key, group, at, aux))
 }
 

@@ -8,13 +8,13 @@ interface Input { kind: MeasurementKind, series: readonly SeriesPart[], tubes: r
 /** Problems of whole series: tubes without an agent, no blank, and what the kind itself has to say of them, set at the tube's place in the file. */
 export function seriesProblems({ kind, series, tubes, conditions, raw }: Input): UploadProblem[] {
   if (tubes.length === 0) return []
-  if (series.length === 0) return [blocks('noSample', 'No tube is a sample with a concentration.', 'at least three tubes with different concentrations, a blank among them')]
+  if (series.length === 0) return [blocks('noSample', 'No tube is a sample with a concentration.', kind.labelsName === 'course' ? 'at least one tube with complex in it' : 'at least three tubes with different concentrations, a blank among them')]
   return series.flatMap((part) => {
     const samples = tubes.filter(tube => tube.role === 'sample' && tube.agent === part.complexCode && tube.batch === part.lot)
     const owner = ownerProblems(part, samples.map(tube => tube.tubeNo))
     // A concentration still open blocks by itself; what a series lacks can be said only when its tubes are complete.
     if (samples.some(tube => tube.conc_mM === null)) return owner
-    return [...owner, ...blankProblems(part), ...kind.checkTubes(part.tubes, conditions).map(problem => placed(problem, part, raw))]
+    return [...owner, ...(kind.labelsName === 'course' ? [] : blankProblems(part)), ...kind.checkTubes(part.tubes, conditions).map(problem => placed(problem, part, raw))]
   })
 }
 

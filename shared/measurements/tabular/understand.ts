@@ -67,7 +67,7 @@ export function understandSource(source: SourceTable, { kind, draft = {}, sheet 
   note(problems, ...loose.filter(unit => unit.unit === null).map(unit => looseProblem(unit, kind)))
   const named = { agent: findNamed(metadata, 'agent', kind.columns), batch: findNamed(metadata, 'batch', kind.columns) }
   const raw = !hasTable || (structure.body.length === 0 && !structure.isTransposed) ? [] : rawTubes({ structure, columns, kind, draft, decimal })
-  const tubes = finishTubes(raw, { kind, draft, decimal, named, problems, sheet })
+  const tubes = finishTubes(raw, { kind, conditions, draft, decimal, named, problems, sheet })
   const series = splitSeries({ tubes })
   note(problems, ...checkConditions(kind, conditions), ...seriesProblems({ kind, series, tubes, conditions, raw }), ...sheetProblems(sheet, tubes, new Map(raw.map(tube => [tube.key, tube.label]))))
   const listed = listProblems(problems).map(problem => placedIn(problem, source))

@@ -9,7 +9,7 @@ import { agentFacts, type AgentFacts, type PlaceOptions } from './facts'
 import { residenceOf } from './kinetic'
 import { judgeLimits, withinAll } from './limits'
 import { lossLogSpread } from './loss'
-import { logSpreadOf, placedFrom, preparationsOf } from './read'
+import { factOf, logSpreadOf, placedFrom, preparationsOf } from './read'
 import { timesConcentration, unboundFraction, unboundTotal } from './unbound'
 import { verdictOf } from './verdict'
 import type { ScreeningProfile } from './profile'
@@ -93,6 +93,21 @@ function flagsOf({ working, kinetic, equilibrium, used }: AgentFacts, profile: S
   if (working && !working.pHStated) flags.push({ id: 'noConditions', sentence: 'The pH of a series is not stated.' })
   const preparations = preparationsOf(working?.pooled.items ?? [])
   if (working && preparations < profile.batchesToAdvance) flags.push({ id: 'onePreparation', sentence: `${preparations} of ${profile.batchesToAdvance} independent batches measured.` })
+  flags.push(...outsideMeasured(working))
   if (used.some(item => !item.signed)) flags.push({ id: 'unsignedUsed', sentence: 'Rests on values that are not signed.' })
   return flags
+}
+
+/** p of the quadratic term below which a line counts as bent: then a slope holds only where it was measured. */
+const BENT_P = 0.05
+
+function outsideMeasured(working: AgentFacts['working']): PlacementFlag[] {
+  if (!working) return []
+  const conc = working.quantity.value
+  const outside = working.pooled.items.find((item) => {
+    const [low, high, bent] = ['lowestConc_mM', 'highestConc_mM', 'quadraticP'].map(key => factOf(item, key))
+    return bent !== null && bent! < BENT_P && low !== null && high !== null && !(conc >= low! && conc <= high!)
+  })
+  if (!outside) return []
+  return [{ id: 'outsideMeasured', sentence: `The working concentration, ${Number(conc.toPrecision(3))} mM, lies outside the ${factOf(outside, 'lowestConc_mM')} to ${factOf(outside, 'highestConc_mM')} mM that were measured, and that line is bent: measure there.` }]
 }

@@ -128,7 +128,7 @@ export interface EllipseParams {
 
 export type PlacementFlagId =
   | 'extrapolatedPh' | 'temperatureNotCarried' | 'temperatureCarried' | 'seriesDisagree' | 'onePreparation'
-  | 'missingRateTerm' | 'boundOnly' | 'mediumAssumed' | 'unsignedUsed' | 'noConditions' | 'competitorsLeftOut'
+  | 'missingRateTerm' | 'boundOnly' | 'mediumAssumed' | 'unsignedUsed' | 'noConditions' | 'competitorsLeftOut' | 'outsideMeasured'
 
 export interface PlacementFlag {
   readonly id: PlacementFlagId
