@@ -30,8 +30,7 @@ export function useCheckFit(subject: Ref<CheckedSubject | null | undefined>) {
     if (asked.value) places.value = []
   }
   async function requestAll(bodies: Partial<FitRequest>[]): Promise<void> {
-    for (const body of bodies) if (!await commands.requestFit(body)) return
-    asked.value = true
+    asked.value = await commands.requestFits(bodies)
   }
   const isOut = (place: FitRequest['putBack'][number]): boolean => own.value?.fit.exclusions.some(one => one.tubeNo === place.tubeNo && one.pointIndex === place.pointIndex) ?? false
   function toggle(place: FitRequest['putBack'][number]): void {
@@ -62,5 +61,5 @@ export function useCheckFit(subject: Ref<CheckedSubject | null | undefined>) {
   }
   const compared: Ref<CompareDto | null> = commands.compared
   onMounted(() => { if (Number(route.query.beside) > 0 && own.value) void compare() })
-  return { chosen, places, mayFit, request, requestAll, toggle, step, nextFlagged, compare, compared, job: computed(() => own.value ? progress.jobOf(own.value.series.id) : null), isFitting: commands.fitting.isPending, fitError: computed(() => commands.fitting.errorBeside()) }
+  return { chosen, places, mayFit, request, requestAll, toggle, step, nextFlagged, compare, compared, job: computed(() => own.value ? progress.jobOf(own.value.series.id) : null), isFitting: commands.fitting.isPending, fitError: commands.fitError, fitFieldError: commands.fitFieldError }
 }

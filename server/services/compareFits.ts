@@ -86,9 +86,8 @@ function pairTubes(kind: MeasurementKind, a: Side, b: Side): CompareDto['tubes']
   })
 }
 
-/** The figure of one version with the other's curve and residuals laid over it: solid and dots for the first, dashed and open for the second. */
+/** The figure of one version with the other's curve laid over it, solid and dashed; the residuals drawn are the first's, those of the second stand in the table. */
 function overlay(figure: FigureSpec, other: TubeResult, [first, second]: readonly [string, string]): FigureSpec {
-  const residuals = other.points.flatMap(({ x, studentised }) => studentised === null ? [] : [{ x, y: studentised }])
   return {
     ...figure, id: `${figure.id}-compared`, text: `${figure.text} Two versions over the same points.`,
     layers: [
@@ -96,12 +95,13 @@ function overlay(figure: FigureSpec, other: TubeResult, [first, second]: readonl
       { type: 'line', name: second, token: 's2', dash: 'dashed', points: other.curve },
     ],
     ...(figure.strip ? { strip: { ...figure.strip, label: `Residual of ${first}, studentised` } } : {}),
-    ...(figure.table ? { table: withColumn(figure.table, residuals, second) } : {}),
+    ...(figure.table ? { table: withColumn(figure.table, other, second) } : {}),
   }
 }
 
-function withColumn(table: NonNullable<FigureSpec['table']>, residuals: readonly { x: number, y: number }[], version: string): FigureSpec['table'] {
-  return { columns: [...table.columns, { key: 'other', label: `Residual of ${version}, studentised`, unit: null, numeric: true }], rows: table.rows.map((row, i) => ({ ...row, other: residuals[i]?.x === row.x ? residuals[i]?.y ?? null : null })) }
+/** Rows of the table are the points of the tube in their order, and both versions are of one series. */
+function withColumn(table: NonNullable<FigureSpec['table']>, { points }: TubeResult, version: string): FigureSpec['table'] {
+  return { columns: [...table.columns, { key: 'other', label: `Residual of ${version}, studentised`, unit: null, numeric: true }], rows: table.rows.map((row, i) => ({ ...row, other: points[i]?.x === row.x ? points[i]?.studentised ?? null : null })) }
 }
 
 function noteOf({ a, b, samePoints, fTest }: { a: Side, b: Side, samePoints: boolean, fTest: CompareDto['fTest'] }): string {

@@ -67,4 +67,14 @@ describe('two models of one series', () => {
     expect([compared.a.options, compared.b.options]).toEqual([[], ['Interval: profile of the sum of squares']])
     expect(compared.tubes[1]!.figure!.layers.filter(layer => layer.type === 'line').map(layer => layer.name)).toEqual(['v1', 'v2'])
   })
+
+  it('have the residuals of both beside each point, also behind a point that one of them leaves out', async () => {
+    const { programme, t2SeriesId } = await twoBatches()
+    const exclusions = [{ tubeNo: 2, pointIndex: 3, reason: 'Motion during this image' }]
+    await requestFit(deps, { actor: programme.people.physicist, programmeId: programme.id, seriesId: t2SeriesId, request: FitRequest.parse({ exclusions }) })
+    await runJobs(deps, programme)
+    const compared = await compareFits(deps, { programmeId: programme.id, seriesId: t2SeriesId, versions: [1, 2] })
+    const rows = compared.tubes.find(tube => tube.tubeNo === 2)!.figure!.table!.rows
+    expect(rows.map(row => row.other === null)).toEqual(rows.map((_, i) => i === 3))
+  })
 })
