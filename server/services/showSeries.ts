@@ -27,7 +27,7 @@ export async function showSeries(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId
     seriesEvents(deps.db, programmeId, seriesId), seesFiles(deps, programmeId, scope),
   ])
   return {
-    id: series.id, kind: series.kind, kindTitle: kind.title, title: series.title, agentCode: series.agentCode, lot: series.lot, mechanism: mark?.mechanism ?? null, topology: mark?.topology ?? null,
+    id: series.id, kind: series.kind, kindTitle: kind.title, title: series.title, words: kind.seriesWords ?? { title: 'Slope', note: 'band: 95 %' }, agentCode: series.agentCode, lot: series.lot, mechanism: mark?.mechanism ?? null, topology: mark?.topology ?? null,
     conditions: kind.conditions.flatMap(spec => conditionDto(spec, series)), models: kind.models.map(({ id, version, title }) => ({ id, version, title })), defaultModel: kind.defaultModel(series.conditions), options: (kind.options ?? []).map(optionDto),
     tubes: tubes.map(tube => ({ tubeNo: tube.tubeNo, label: tube.label, role: tube.role, conc_mM: tube.conc_mM, concSe_mM: tube.concSe_mM, points: tube.points.rows.length, place: showsFile ? tube.place : '' })),
     inputHash: hex(series.inputHash), file: showsFile ? fileDto(series) : null, recordedBy: series.createdByName, recordedAt: series.createdAt.toISOString(),

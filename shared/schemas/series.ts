@@ -49,6 +49,8 @@ export const SeriesDto = z.object({
   kind: z.string(),
   kindTitle: z.string(),
   title: z.string(),
+  /** Heading and note of the series' result. */
+  words: z.object({ title: z.string(), note: z.string() }),
   agentCode: z.string(),
   lot: z.string(),
   mechanism: z.string().nullable(),

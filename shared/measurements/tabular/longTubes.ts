@@ -9,11 +9,11 @@ type Role = ColumnSpec['role']
 
 interface Line { record: TableRecord, tube: string, agent: string, batch: string, conc: string }
 
-/** What stands in for a name where a row has none: 'acid 0.1 M, temperature 25 °C'. */
+/** What stands in for a name where a row has none: 'Acid 0.1 M, Temperature 25 °C'. */
 function partsText(record: TableRecord, parting: readonly ReadColumn[]): string {
   return parting.flatMap(({ index, spec, unit }) => {
     const cell = record.cells[index] ?? ''
-    return cell === '' ? [] : [`${spec?.synonyms[0] ?? ''} ${cell} ${unit?.symbol ?? ''}`.trim()]
+    return cell === '' ? [] : [`${spec?.label ?? ''} ${cell} ${unit?.symbol ?? ''}`.trim()]
   }).join(', ')
 }
 

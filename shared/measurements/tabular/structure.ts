@@ -113,7 +113,8 @@ function partAttributes({ above, header, below, isTransposed }: Parting, { kind,
     const match = matchHeader(record.cells[0] ?? '', kind.columns, present)
     if (match === null || !roles.includes(match.spec.role)) return null
     const isResult = match.spec.role === 'y' || match.spec.role === 'sigma'
-    if (filledCells(record) < 3 && width > 2 && !isResult) return null
+    // one cell is a line about all tubes, such as 'Acid: 0.1 M'
+    if ((filledCells(record) < 2 || (filledCells(record) < 3 && width > 2)) && !isResult) return null
     const chosen = draft.units?.[match.spec.stem]
     const unit = chosen && match.spec.dimension !== 'text' ? findUnit(chosen, match.spec.dimension) : match.unit ?? (match.unknownUnit === null && match.spec.role === 'aux' ? unitlessUnit(match.spec) : null)
     return { record, spec: match.spec, unit }

@@ -28,6 +28,12 @@ export interface TimeCourse {
   readonly pRuns: number | null
   readonly pSecondExponential: number | null
   readonly flags: readonly TimeCourseFlag[]
+  /** The end was fitted with the rate. */
+  readonly freeEnd: boolean
+  /** Signal at time zero by the straight line of an initial rate; null for an exponential. */
+  readonly intercept: number | null
+  /** Sums of squares that the search for the rate looked at. */
+  readonly evaluations: number
 }
 
 /** Below this share reacted the curve is a straight line to the data. */
@@ -79,7 +85,7 @@ function initialRate(data: Data, start: number, end: number): TimeCourse | Kinet
   if (!(rate > tQuantile(0.95, dof) * se)) return still('its initial slope cannot be told from zero')
   const value = rateOf(rate, se, dof)
   const residuals = data.y.map((v, i) => v - line.values[0]! - line.values[1]! * data.t[i]!)
-  return { ok: true, form: 'initialRate', rate_per_s: value, halfLife_s: halfLifeOf(value), start, end, residuals, chi2: line.chi2, dof, pRuns: null, pSecondExponential: null, flags: ['initialRate'] }
+  return { ok: true, form: 'initialRate', rate_per_s: value, halfLife_s: halfLifeOf(value), start, end, residuals, chi2: line.chi2, dof, pRuns: null, pSecondExponential: null, flags: ['initialRate'], freeEnd: false, intercept: line.values[0]!, evaluations: 1 }
 }
 
 const target = (data: Data, end: number | null): number[] => (end === null ? data.y : data.y.map(v => v - end))
@@ -96,14 +102,17 @@ function rateGrid(data: Data, count: number): number[] {
   return Array.from({ length: count }, (_, i) => Math.exp(low + (high - low) * i / (count - 1)))
 }
 
+const GRID = 160
+const GOLDEN_STEPS = 60
+
 function bestRate(data: Data, end: number | null): number | null {
-  const grid = rateGrid(data, 160)
+  const grid = rateGrid(data, GRID)
   const chi2 = grid.map(k => chi2At(data, end, k))
   const at = chi2.indexOf(Math.min(...chi2))
   if (at <= 0 || at === grid.length - 1) return null
   let [low, high] = [Math.log(grid[at - 1]!), Math.log(grid[at + 1]!)]
   const golden = (Math.sqrt(5) - 1) / 2
-  for (let i = 0; i < 60; i++) {
+  for (let i = 0; i < GOLDEN_STEPS; i++) {
     const [a, b] = [high - golden * (high - low), low + golden * (high - low)]
     if (chi2At(data, end, Math.exp(a)) < chi2At(data, end, Math.exp(b))) high = b
     else low = a
@@ -135,7 +144,7 @@ function exponential(data: Data, known: number | null): TimeCourse | KineticsRef
   if (pRuns !== null && pRuns < 0.05) flags.push('runs')
   if (pSecondExponential !== null && pSecondExponential < 0.01) flags.push('secondExponential')
   if (known === null && rate * Math.max(...data.t) < 2) flags.push('endExtrapolated')
-  return { ok: true, form: 'exponential', rate_per_s: value, halfLife_s: halfLifeOf(value), start: end + amplitude, end, residuals, chi2: linear.chi2, dof, pRuns, pSecondExponential, flags }
+  return { ok: true, form: 'exponential', rate_per_s: value, halfLife_s: halfLifeOf(value), start: end + amplitude, end, residuals, chi2: linear.chi2, dof, pRuns, pSecondExponential, flags, freeEnd: known === null, intercept: null, evaluations: GRID + 2 * GOLDEN_STEPS }
 }
 
 /** p of two exponentials against one by the F test, the pair of rates from a grid; null with fewer than three degrees of freedom left. */
