@@ -1,4 +1,5 @@
 import type { Knex } from 'knex'
+import { constantsSideBySide } from '../../shared/evidence/constantConditions'
 import { currentEvidence, type EvidenceItemDto } from '../../shared/evidence/item'
 import { toAgentEvidence } from '../../shared/evidence/agentEvidence'
 import { AppError } from '../../shared/errors'
@@ -45,7 +46,7 @@ export async function showAgent(deps: Pick<Deps, 'db' | 'kinds'>, { programmeId,
       signed: isAllSigned(placement, evidence),
     },
     ligand: { id: row.ligandId, code: row.ligandCode, payload: ligand, ...marks(ligandVersions) },
-    ...drawn(ligand.smiles), batches, evidence, records: records.map(toRecordRow),
+    ...drawn(ligand.smiles), batches, evidence, constantsDiffer: constantsSideBySide(evidence), records: records.map(toRecordRow),
     series: series.map(one => ({
       id: one.id, title: one.title, kind: one.kind, kindTitle: deps.kinds[one.kind]?.title ?? one.kind, lot: one.lot, at: one.at.toISOString(), by: one.personName,
       versionNo: one.newestVersionNo, outcome: one.newestOutcome, checkState: one.checkState,

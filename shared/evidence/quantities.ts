@@ -51,6 +51,7 @@ const thirdOrder = (id: string, label: string, sub: string) => defineEvidence({
 const perMolar = (id: string, label: string, sub: string) => defineEvidence({
   id, label, base: 'K', sub, unit: 'M^-1', dimension: 'none', digits: significant(2), better: null, group: 'kinetics', needs: ['temperature_K'],
 })
+const constantWith = (id: string, label: string, sub: string) => defineEvidence({ id, label, base: 'log K', sub, unit: '', dimension: 'none', digits: decimals(2), better: null, group: 'equilibrium', needs: ['metal'] })
 const fraction = (id: string, label: string, better: 'higher' | 'lower', group: EvidenceGroup) => defineEvidence({
   id, label, base: label, sub: '', unit: '', dimension: 'fraction', digits: significant(2), better, group, needs: [],
 })
@@ -62,9 +63,11 @@ export const EVIDENCE_QUANTITIES: Readonly<Record<string, EvidenceQuantity>> = O
   defineEvidence({ id: 'workingConcentration_mM', label: 'Working concentration', base: 'c', sub: 'w', unit: 'mM', dimension: 'concentration', digits: significant(2), better: 'lower', group: 'exchange', needs: ['b0_T'] }),
   defineEvidence({ id: 'kex_per_s', label: 'Exchange rate', base: 'k', sub: 'ex', unit: 's^-1', dimension: 'rate', digits: significant(2), better: null, group: 'exchange', needs: ['temperature_K', 'pH'] }),
   defineEvidence({ id: 'logK', label: 'log K', base: 'log K', sub: 'ML', unit: '', dimension: 'none', digits: decimals(2), better: 'higher', group: 'equilibrium', needs: ['metal'] }),
-  ...(['Ca', 'Mg', 'Zn', 'Cu'] as const).map(metal => defineEvidence({
-    id: `logK${metal}`, label: `log K with ${metal}`, base: 'log K', sub: `${metal}L`, unit: '', dimension: 'none', digits: decimals(2), better: null, group: 'equilibrium', needs: ['metal'],
-  })),
+  ...(['Ca', 'Mg', 'Zn', 'Cu', 'Fe', 'Mn'] as const).map(metal => constantWith(`logK${metal}`, `log K with ${metal === 'Fe' ? 'Fe(III)' : metal === 'Mn' ? 'Mn(II)' : metal}`, `${metal}L`)),
+  constantWith('logKLn', 'log K with another lanthanide', 'LnL'),
+  constantWith('logKWithCitrate', 'log K of the metal with citrate', 'M,Cit'),
+  constantWith('logKWithCarbonate', 'log K of the metal with carbonate', 'M,CO_3'),
+  constantWith('logKWithHydrogenPhosphate', 'log K of the metal with hydrogen phosphate', 'M,HPO_4'),
   defineEvidence({ id: 'logKConditional', label: 'Conditional log K', base: 'log K', sub: 'cond', unit: '', dimension: 'none', digits: decimals(2), better: 'higher', group: 'equilibrium', needs: ['metal', 'pH'] }),
   defineEvidence({ id: 'pM', label: 'pM', base: 'pM', sub: '', unit: '', dimension: 'none', digits: decimals(1), better: 'higher', group: 'equilibrium', needs: ['metal', 'pH'] }),
   fraction('boundAtEquilibrium_frac', 'Still bound at equilibrium', 'higher', 'equilibrium'),
@@ -83,7 +86,6 @@ export const EVIDENCE_QUANTITIES: Readonly<Record<string, EvidenceQuantity>> = O
   defineEvidence({ id: 'halfLifeAcid_s', label: 'Half-life in acid', base: 't', sub: '1/2', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: ['temperature_K'] }),
   defineEvidence({ id: 'zincPhosphateRatio', label: 'Zinc-phosphate ratio at 72 h', base: 'R', sub: '1,72 h', unit: '', dimension: 'none', digits: decimals(2), better: 'higher', group: 'kinetics', needs: [] }),
   defineEvidence({ id: 'zincPhosphateTime080_s', label: 'Zinc-phosphate time to 0.80', base: 't', sub: '0.80', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: [] }),
-  defineEvidence({ id: 'zincPhosphateTime080_s', label: 'Time to 0.80 in zinc and phosphate', base: 't', sub: '0.80', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: [] }),
   fraction('freeMetal_frac', 'Free metal in the batch', 'lower', 'batch'),
 ].map(quantity => [quantity.id, quantity]))
 

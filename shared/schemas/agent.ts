@@ -73,7 +73,10 @@ export type AgentListDto = z.output<typeof AgentListDto>
 export const AgentDto = z.object({
   agent: Identity.extend({ payload: ComplexPayload, version: VersionMark, versions: z.array(VersionMark), registeredBy: z.string(), registeredAt: z.string(), signed: z.boolean() }),
   ligand: LigandDto, drawing: StructureDrawing.nullable(), formula: z.string().nullable(),
-  batches: z.array(BatchDto), evidence: z.array(EvidenceItemDto), records: z.array(RecordRowDto),
+  batches: z.array(BatchDto), evidence: z.array(EvidenceItemDto),
+  /** Why constants of several records may not be held against each other, or what was taken on trust; empty where all is well. */
+  constantsDiffer: z.array(z.string()),
+  records: z.array(RecordRowDto),
   series: z.array(z.object({ id: z.string(), title: z.string(), kind: z.string(), kindTitle: z.string(), lot: z.string(), at: z.string(), by: z.string(), versionNo: z.number().int().nullable(), outcome: z.enum(['ok', 'refused']).nullable(), checkState: z.enum(CHECK_STATES) })),
   decisions: z.array(z.object({ id: z.string(), outcome: z.enum(['advance', 'hold', 'stop']), reasons: z.string(), by: z.string(), at: z.string() })),
   gaps: z.array(GapDto).nullable(),

@@ -6,7 +6,11 @@ import { enterRecord } from '../../server/services/enterRecord'
 import { returnEvidence } from '../../server/services/returnEvidence'
 import { listRecords, listSources, showRecord } from '../../server/services/showRecord'
 import { signEvidence } from '../../server/services/signEvidence'
+import { showAgent } from '../../server/services/showAgent'
 import { submitForCheck } from '../../server/services/submitForCheck'
+import { sealed } from '../../server/platform/hashes'
+import { toBinary } from '../../server/platform/ids'
+import { complexProtonationIn } from '../../shared/evidence/records/thermoLists'
 import { readEvidence } from '../../server/queries/evidence'
 import { makeDeps, makeProgramme, type TestDeps, type TestProgramme } from '../support/factory'
 import { PUBLISHED, rateLawEntry, thermoEntry } from '../support/publishedRecords'
@@ -58,6 +62,28 @@ describe('published constants typed as records', () => {
     await enter(deps, programme, { agent: 'GD-1', kind: 'thermo', entry: thermoEntry(PUBLISHED.dtpa) })
     await enter(deps, programme, { agent: 'GD-1', kind: 'rateLaw', entry: rateLawEntry({ k1_per_M_s: { value: 0.58 } }) })
     expect((await listSources(deps, { programmeId: programme.id })).sources).toEqual([expect.objectContaining({ citation: SOURCE.citation, origin: 'own' })])
+  })
+})
+
+describe('two records of one agent', () => {
+  it('with constants of zinc at I = 0 and at 0.1 M are not held against each other, on the agent\'s own page [NIST SRD 46: 18.0 and 16.5 for EDTA]', async () => {
+    const zinc = (value: number, strength_M: number) => thermoEntry({ ...PUBLISHED.dtpa, competitors: { Zn: value } }, { ionicStrength_M: { type: 'number', value: strength_M, unit: 'M' } })
+    await enter(deps, programme, { agent: 'GD-1', kind: 'thermo', entry: zinc(18, 0) })
+    const shown = async () => (await showAgent(deps, { programmeId: programme.id, scope: 'programme', code: 'GD-1' })).constantsDiffer
+    expect(await shown()).toEqual([])
+    await enter(deps, programme, { agent: 'GD-1', kind: 'thermo', entry: zinc(16.5, 0.1) })
+    expect(await shown()).toEqual([expect.stringMatching(/is for I = 0 M, .* for 0.1 M\. Accepted: Constants at one ionic strength/)])
+  })
+
+  it('of version 1 of their kind still read as they were typed', async () => {
+    const { id } = await enter(deps, programme, { agent: 'GD-1', kind: 'thermo', entry: thermoEntry(PUBLISHED.dtpa) })
+    // an entry as version 1 kept it: the protonated complex without a form, which meant stepwise
+    const old = { kindVersion: 1, metal: 'Gd', entry: thermoEntry(PUBLISHED.dtpa, { complexProtonation: { type: 'steps', steps: [{ value: 2.39, se: null }] } }), reason: null }
+    const newId = deps.ids.next()
+    const [row] = await deps.db('record').where('id', toBinary(id))
+    await deps.db('record').insert({ id: toBinary(newId), programme_id: row.programme_id, root_id: toBinary(newId), version_no: 1, kind: 'thermo', complex_id: row.complex_id, payload: sealed(old).text, payload_hash: sealed(old).hash, conditions: row.conditions, source_id: row.source_id, created_by: row.created_by, created_at: row.created_at })
+    expect(await show(newId)).toMatchObject({ summary: expect.stringContaining('22.46'), entry: old.entry })
+    expect(complexProtonationIn(old.entry, 22.46)).toEqual([2.39])
   })
 })
 

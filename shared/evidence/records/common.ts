@@ -22,7 +22,7 @@ export const pHField: NumberField = {
 
 const MEDIA = [
   ['KCl', 'KCl'], ['KNO3', 'KNO_3'], ['NaCl', 'NaCl'], ['NaClO4', 'NaClO_4'], ['NMe4Cl', 'tetramethylammonium chloride'], ['NMe4NO3', 'tetramethylammonium nitrate'],
-  ['NEt4ClO4', 'tetraethylammonium perchlorate'], ['water', 'water, nothing added'], ['other', 'another, named in the note'],
+  ['NEt4ClO4', 'tetraethylammonium perchlorate'], ['water', 'water, nothing added'], ['other', 'another, named in the note'], ['notStated', 'not stated'],
 ] as const
 export const mediumField: ChoiceField = {
   type: 'choice', key: 'medium', label: 'Electrolyte', required: true, group: 'Conditions', options: MEDIA.map(([value, label]) => ({ value, label })),
@@ -32,6 +32,7 @@ export const noteField: TextField = { type: 'text', key: 'note', label: 'Note', 
 
 /** Short form of an electrolyte, notation. */
 export function mediumWords(medium: string): string {
+  if (medium === 'notStated') return 'electrolyte not stated'
   return MEDIA.some(([value]) => value === medium) ? medium.replace(/\d+/g, '_$&') : medium
 }
 

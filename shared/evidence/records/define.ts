@@ -16,6 +16,8 @@ interface FieldBase {
   readonly group: string
   /** Asked only where a choice made before is one of these. */
   readonly onlyWhen?: { readonly key: string, readonly isOneOf: readonly string[] }
+  /** Not asked where a choice is one of these: what the source cannot say of itself. */
+  readonly unless?: { readonly key: string, readonly isOneOf: readonly string[] }
 }
 
 interface NumberBase extends FieldBase {
@@ -83,7 +85,9 @@ export const fieldsOf = (kind: RecordKind): readonly RecordField[] => [...kind.f
 
 /** Whether a field is asked, given the choices made so far. */
 export function isAsked(field: RecordField, entry: RecordEntry): boolean {
-  if (!field.onlyWhen) return true
-  const choice = entry[field.onlyWhen.key]
-  return choice?.type === 'choice' && field.onlyWhen.isOneOf.includes(choice.choice)
+  const isChosen = ({ key, isOneOf }: { readonly key: string, readonly isOneOf: readonly string[] }): boolean => {
+    const choice = entry[key]
+    return choice?.type === 'choice' && isOneOf.includes(choice.choice)
+  }
+  return (!field.onlyWhen || isChosen(field.onlyWhen)) && !(field.unless && isChosen(field.unless))
 }

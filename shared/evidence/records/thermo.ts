@@ -1,93 +1,104 @@
-import { formatCelsius, formatNumber } from '../../format'
-import { stepwiseFromAcidConstants, stepwiseFromOverall } from '../../science/equilibria/protonation'
+import { LANTHANIDES, METALS } from '../../schemas/metal'
 import type { EvidenceDraft } from '../types'
 import { describeMedium, draftOf, ionicStrengthField, mediumField, noteField, temperatureField, writeStored } from './common'
 import { conditionalAtBloodPH, type EquilibriumInput } from './conditionalValues'
-import { defineRecord, type QuantityField, type RecordContext, type RecordProblem, type StepsField } from './define'
+import { defineRecord, type NumberField, type QuantityField, type RecordContext, type RecordField, type RecordProblem } from './define'
 import type { RecordEntry } from './entry'
-import { choiceIn, conditionsOf, quantityIn, stepsIn, type Step } from './values'
+import { complexLists, complexProtonationIn, hydroxidesIn, listProblems, metalLists, protonationIn, protonationLists } from './thermoLists'
+import { choiceIn, conditionsOf, numberIn, quantityIn } from './values'
 
-/** Competing metals whose constant with the same ligand the plasma model can use. */
-export const COMPETING_METALS = ['Ca', 'Mg', 'Zn', 'Cu'] as const
-const METAL_WORDS = { Ca: 'calcium', Mg: 'magnesium', Zn: 'zinc', Cu: 'copper' } as const
+/** Competing metals whose constant with the same ligand a record can carry; the plasma model uses the first four. */
+export const COMPETING_METALS = ['Ca', 'Mg', 'Zn', 'Cu', 'Fe', 'Mn'] as const
+const METAL_WORDS = { Ca: 'calcium', Mg: 'magnesium', Zn: 'zinc', Cu: 'copper', Fe: 'iron(III)', Mn: 'manganese(II)' } as const
+/** Small ligands that compete for the metal of the agent. */
+export const COMPETING_LIGANDS = { Citrate: 'citrate', Carbonate: 'carbonate', HydrogenPhosphate: 'hydrogen phosphate' } as const
+const COMPETING_LIGAND_KEYS = Object.keys(COMPETING_LIGANDS) as (keyof typeof COMPETING_LIGANDS)[]
 
 const logConstant = (key: string, label: string, required: boolean, group: string): QuantityField =>
   ({ type: 'quantity', key, label, required, group, dimension: null, stored: '', units: [''], min: -2, max: 40, bounds: ['=', '<', '>'] })
-const steps = (key: string, label: string, help: string): StepsField => ({ type: 'steps', key, label, help, required: false, group: 'Protonation', most: 12, min: -2, max: 60 })
 
-const FORMS = [
-  { value: 'stepwise', label: 'stepwise log K, most basic first' }, { value: 'overall', label: 'overall log β, one proton first' }, { value: 'acid', label: 'pKa, most acidic first' },
-] as const
 const METHODS = [
   ['potentiometry', 'potentiometric titration'], ['competition', 'competition with another ligand or metal'], ['spectrophotometry', 'spectrophotometric titration'],
-  ['relaxometry', 'relaxometric titration'], ['calorimetry', 'calorimetry'], ['compiled', 'critically compiled'], ['other', 'another, named in the note'],
+  ['relaxometry', 'relaxometric titration'], ['calorimetry', 'calorimetry'], ['compiled', 'critically compiled'], ['practice', 'common practice, no source'], ['other', 'another, named in the note'],
 ] as const
 const PH_SCALES = [['concentration', 'minus log of the hydrogen ion concentration'], ['activity', 'electrode reading, activity buffers'], ['notStated', 'not stated']] as const
 
-/** Stepwise constants, most basic first, from whatever form the source states. Errors go with the constants as they stand only in the stepwise and pKa forms. */
-export function protonationIn(entry: RecordEntry): Step[] | null {
-  const given = stepsIn(entry, 'protonation')
-  if (!given) return null
-  const form = choiceIn(entry, 'protonationForm') ?? 'stepwise'
-  const values = given.map(step => step.value)
-  if (form === 'acid') {
-    const errors = given.map(step => step.se).reverse()
-    return stepwiseFromAcidConstants(values).map((value, j) => ({ value, se: errors[j] ?? null }))
-  }
-  if (form === 'overall') return stepwiseFromOverall(values).map((value, j) => ({ value, se: j === 0 ? given[0]!.se : null }))
-  return given
-}
+/** A figure of common practice has no conditions of its own: asking for them would invent them. */
+const statedOnly = <F extends RecordField>(field: F): F => ({ ...field, unless: { key: 'method', isOneOf: ['practice'] } })
+const pKwField: NumberField = { type: 'number', key: 'pKw', label: 'pK_w of the medium', help: 'Only for constants written with hydroxide.', required: false, group: 'Metal', dimension: null, stored: '', units: [''], min: 11, max: 16 }
 
-function check(entry: RecordEntry): RecordProblem[] {
-  const stepwise = protonationIn(entry)
-  if (!stepwise) return []
-  const field = 'protonation'
-  if (!choiceIn(entry, 'protonationForm')) return [{ field: 'protonationForm', message: 'Say in which form the protonation constants are given.', accepted: FORMS.map(form => form.label).join(', ') }]
-  if (stepwise.some(({ value }) => value < -2 || value > 15)) return [{ field, message: 'Read in this form, a stepwise constant lies outside what a ligand can have.', accepted: 'stepwise constants between −2 and 15; look at the form chosen' }]
-  const rises = stepwise.findIndex((step, j) => j > 0 && step.value > stepwise[j - 1]!.value + 0.6)
-  return rises < 0 ? [] : [{ field, message: `Read in this form, constant ${rises + 1} is larger than the one before it.`, accepted: 'stepwise constants that fall from the most basic site on; look at the form chosen' }]
+const pKwIn = (entry: RecordEntry): number | null => numberIn(thermo, entry, 'pKw')
+const logKIn = (entry: RecordEntry): number => quantityIn(thermo, entry, 'logK')!.value
+
+function check(entry: RecordEntry, { metal }: RecordContext): RecordProblem[] {
+  const lanthanide = choiceIn(entry, 'otherLanthanide')
+  if (lanthanide === metal) return [{ field: 'otherLanthanide', message: `${metal} is the metal of the agent itself.`, accepted: 'another lanthanide' }]
+  if (lanthanide && !entry.logKLn) return [{ field: 'logKLn', message: `The constant with ${lanthanide} is missing.`, accepted: 'log K, or no other lanthanide' }]
+  return listProblems(entry, logKIn(entry), pKwIn(entry))
 }
 
 function inputOf(entry: RecordEntry, context: RecordContext): EquilibriumInput {
+  const pKw = pKwIn(entry)
   return {
-    logK: quantityIn(thermo, entry, 'logK')!, own: protonationIn(entry), complexProtonation: (stepsIn(entry, 'complexProtonation') ?? []).map(step => step.value),
-    registered: context.ligandProtonation, conditions: conditionsOf(thermo, entry),
+    logK: quantityIn(thermo, entry, 'logK')!, own: protonationIn(entry), complexProtonation: complexProtonationIn(entry, logKIn(entry)),
+    complexHydroxide: hydroxidesIn(entry, 'complexHydroxide', pKw), metalHydroxide: hydroxidesIn(entry, 'metalHydroxide', pKw), registered: context.ligandProtonation, conditions: conditionsOf(thermo, entry),
   }
 }
 
 function emits(entry: RecordEntry, context: RecordContext): EvidenceDraft[] {
   const { metal } = context
   const conditions = { ...conditionsOf(thermo, entry), metal }
-  const steps = protonationIn(entry) ?? context.ligandProtonation?.steps ?? []
-  const drafts = [draftOf({ quantity: 'logK', stored: quantityIn(thermo, entry, 'logK')!, conditions, detail: { metal, protonation: steps.map(step => step.value) } })]
-  for (const competitor of COMPETING_METALS) {
-    const stored = quantityIn(thermo, entry, `logK${competitor}`)
-    if (stored) drafts.push(draftOf({ quantity: `logK${competitor}`, stored, conditions: { ...conditions, metal: competitor }, detail: { metal: competitor } }))
+  const input = inputOf(entry, context)
+  const enthalpy = quantityIn(thermo, entry, 'enthalpy')
+  const detail: EvidenceDraft['detail'] = {
+    metal, protonation: (input.own ?? context.ligandProtonation?.steps ?? []).map(step => step.value), complexProtonation: [...input.complexProtonation], complexHydroxide: [...input.complexHydroxide],
+    metalHydroxide: [...input.metalHydroxide], enthalpy_kJ_per_mol: enthalpy?.value ?? null, enthalpy_se_kJ_per_mol: enthalpy?.se ?? null,
   }
-  return [...drafts, ...conditionalAtBloodPH(inputOf(entry, context), metal)]
+  const drafts = [draftOf({ quantity: 'logK', stored: input.logK, conditions, detail })]
+  for (const [key, competitor] of competitorsIn(entry)) drafts.push(draftOf({ quantity: key, stored: quantityIn(thermo, entry, key)!, conditions: { ...conditions, metal: competitor }, detail: { metal: competitor } }))
+  for (const ligand of COMPETING_LIGAND_KEYS) {
+    const stored = quantityIn(thermo, entry, `logKWith${ligand}`)
+    if (stored) drafts.push(draftOf({ quantity: `logKWith${ligand}`, stored, conditions, detail: { metal, ligand: COMPETING_LIGANDS[ligand] } }))
+  }
+  return [...drafts, ...conditionalAtBloodPH(input, metal)]
 }
 
+/** Field of each competing metal that is given, with the metal. */
+function competitorsIn(entry: RecordEntry): [string, string][] {
+  const lanthanide = choiceIn(entry, 'otherLanthanide')
+  const all: [string, string][] = [...COMPETING_METALS.map((metal): [string, string] => [`logK${metal}`, metal]), ...(lanthanide ? [['logKLn', lanthanide] as [string, string]] : [])]
+  return all.filter(([key]) => entry[key] !== undefined)
+}
+
+/** Version 2: forms of every list, hydroxides, enthalpy, more competitors, and figures of common practice. What version 1 kept still means the same. */
 export const thermo = defineRecord({
-  kind: 'thermo', version: 1, title: 'Stability constants', subject: 'complex',
-  purpose: 'How strongly the ligand holds its metal, with protonation constants and competing metals.',
+  kind: 'thermo', version: 2, title: 'Stability constants', subject: 'complex',
+  purpose: 'How strongly the ligand holds its metal, with protonation constants and competitors.',
   fields: [
     { ...logConstant('logK', 'log K of the complex', true, 'Complex'), help: 'M + L = ML, concentration constant.' },
-    { ...steps('complexProtonation', 'Protonation of the complex, log K', 'ML + H = MLH, then MLH + H; leave empty where none was found.'), group: 'Complex', most: 3, max: 12 },
-    steps('protonation', 'Protonation constants of the ligand', 'Left empty, those registered with the ligand are used, and a difference of medium is flagged.'),
-    { type: 'choice', key: 'protonationForm', label: 'Form of the protonation constants', required: false, group: 'Protonation', options: FORMS },
+    {
+      type: 'quantity', key: 'enthalpy', label: 'ΔH of M + L = ML', help: 'Without it log K is not moved to another temperature.', required: false, group: 'Complex', dimension: 'energy', stored: 'kJ/mol', units: ['kJ/mol', 'J/mol', 'kcal/mol'],
+      min: -400, max: 400, bounds: ['='],
+    },
+    ...complexLists,
+    ...protonationLists,
+    ...metalLists, pKwField,
     ...COMPETING_METALS.map(metal => logConstant(`logK${metal}`, `log K with ${METAL_WORDS[metal]}`, false, 'Competing metals')),
+    { type: 'choice', key: 'otherLanthanide', label: 'Another lanthanide', required: false, group: 'Competing metals', options: METALS.map(value => ({ value, label: LANTHANIDES[value].name })) },
+    { ...logConstant('logKLn', 'log K with that lanthanide', false, 'Competing metals'), onlyWhen: { key: 'otherLanthanide', isOneOf: METALS } },
+    ...COMPETING_LIGAND_KEYS.map(ligand => logConstant(`logKWith${ligand}`, `log K of the metal with ${COMPETING_LIGANDS[ligand]}`, false, 'Competing ligands')),
   ],
   conditions: [
-    temperatureField, ionicStrengthField(true), mediumField,
-    { type: 'choice', key: 'method', label: 'Method', required: true, group: 'Conditions', options: METHODS.map(([value, label]) => ({ value, label })) },
-    { type: 'choice', key: 'pHScale', label: 'pH scale', required: true, group: 'Conditions', options: PH_SCALES.map(([value, label]) => ({ value, label })) },
+    {
+      type: 'choice', key: 'method', label: 'Method', required: true, group: 'Conditions', options: METHODS.map(([value, label]) => ({ value, label })),
+      help: 'A figure of common practice has no conditions: it is marked so wherever it stands beside another.',
+    },
+    statedOnly(temperatureField), statedOnly(ionicStrengthField(true)), statedOnly(mediumField),
+    statedOnly({ type: 'choice', key: 'pHScale', label: 'pH scale', required: true, group: 'Conditions', options: PH_SCALES.map(([value, label]) => ({ value, label })) }),
     noteField,
   ],
   check,
   emits,
   summarise: (entry, { metal }) => `log K(${metal}L) ${writeStored(quantityIn(thermo, entry, 'logK')!)}`,
-  describe: conditions => describeMedium(conditions) + (typeof conditions.method === 'string' ? `, ${METHODS.find(([value]) => value === conditions.method)?.[1] ?? conditions.method}` : ''),
+  describe: conditions => [describeMedium(conditions), typeof conditions.method === 'string' ? METHODS.find(([value]) => value === conditions.method)?.[1] ?? conditions.method : ''].filter(Boolean).join(', '),
 })
-
-/** "25 °C, 0.1 M" of the protonation constants registered with a ligand. */
-export const protonationWords = (one: { temperature_K: number, ionicStrength_M: number, medium: string }): string => `${formatCelsius(one.temperature_K, 0)}, ${formatNumber(one.ionicStrength_M)} M ${one.medium}`
