@@ -115,6 +115,8 @@ export interface SpeciesFigureInput { system: SpeciationSystemDto, amounts: Spec
 export function speciesFigure({ system, amounts, path, component, as, at, code }: SpeciesFigureInput): FigureSpec {
   const of = component === 'Ln' ? system.metal : component === 'L' ? 'ligand' : component
   const drawn = sharesOf(path, systemOf(system, amounts).species, component).filter(one => Math.max(...one.values) >= LEAST_SHARE).slice(0, MOST_CURVES)
+    // The complex stands first whatever else there is: at the bottom of the stack, in the first colour.
+    .sort((a, b) => Number(b.name === 'LnL') - Number(a.name === 'LnL'))
     .map((one, k) => ({ ...one, label: speciesName(one.name, system.metal), style: STYLES[k % STYLES.length]! }))
   const percent = (share: number): number => 100 * share
   const here = at.shares.find(one => drawn.some(curve => curve.label === one.name))
