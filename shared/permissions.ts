@@ -50,6 +50,7 @@ export const PERMISSIONS = {
   'check.withdraw': { ...none, physicist: 'programme' },
   'record.see': everyone,
   'record.enter': { ...none, chemist: 'programme' },
+  'library.copy': { ...none, chemist: 'programme' },
   'number.trace': everyone,
   'bench.see': staff,
   'map.see': everyone,

@@ -20,8 +20,10 @@ export function acidHalfLives(agents: readonly AgentView[]): AcidTableDto[] {
   }).sort((a, b) => b.rows.length - a.rows.length || a.condition.localeCompare(b.condition))
 }
 
-function placeOf({ conditions }: EvidenceItemDto): string {
-  const { acid, acid_M, temperature_K } = conditions
+function placeOf({ conditions, id }: EvidenceItemDto): string {
+  const { acid, acid_M, temperature_K, method } = conditions
+  // an acid that is not stated is the same as another only where both come from one statement
+  if (acid === 'notStated') return JSON.stringify([acid, method ?? id])
   return JSON.stringify([acid, acid_M, typeof temperature_K === 'number' ? Math.round(temperature_K - CELSIUS_ZERO_K) : null])
 }
 

@@ -12,7 +12,7 @@ export function conditionWords({ conditions, detail, quantity }: Pick<EvidenceIt
   const strength = written('ionicStrength_M', '', 'M')
   const totals = METAL_TOTALS.every(key => number(key) !== null) ? `${formatNumber(number('metal_M')! * 1e6)}${NBSP}µM metal, ${formatNumber(number('ligand_M')! * 1e6)}${NBSP}µM ligand` : ''
   const range = number('pHMin') !== null && number('pHMax') !== null ? `pH${NBSP}${formatNumber(number('pHMin'))} to ${formatNumber(number('pHMax'))}` : ''
-  const acid = number('acid_M') === null ? '' : `${formatNumber(number('acid_M'))}${NBSP}M ${typeof conditions.acid === 'string' && conditions.acid !== 'other' ? conditions.acid.replace(/(\d)/, '_$1') : 'acid'}`
+  const acid = conditions.acid === 'notStated' ? 'strong acid, not stated which' : number('acid_M') === null ? '' : `${formatNumber(number('acid_M'))}${NBSP}M ${typeof conditions.acid === 'string' && conditions.acid !== 'other' ? conditions.acid.replace(/(\d)/, '_$1') : 'acid'}`
   const method = quantity === 'freeMetal_frac' && typeof detail.method === 'string' ? detail.method : ''
   return [
     written('b0_T', '', 'T'), number('temperature_K') === null ? '' : formatCelsius(number('temperature_K'), 0), written('pH', `pH${NBSP}`, ''), range, acid,

@@ -1,13 +1,16 @@
 import { formatCelsius, formatDuration, formatNumber } from '../../format'
 import { draftOf, ionicStrengthField, noteField, temperatureField } from './common'
-import { defineRecord } from './define'
+import { defineRecord, type RecordField } from './define'
 import { conditionsOf, quantityIn } from './values'
 
 const WORDS = { '=': '', '<': 'less than ', '>': 'more than ' } as const
 
-/** Comparable only with itself: the same acid at the same concentration and temperature. */
+/** "Strong acid" of common practice has neither concentration nor temperature: asking for them would invent them. */
+const statedOnly = <F extends RecordField>(field: F): F => ({ ...field, unless: { key: 'acid', isOneOf: ['notStated'] } })
+
+/** Comparable only with itself: the same acid at the same concentration and temperature. Version 2: an acid that is not stated. */
 export const acidHalfLife = defineRecord({
-  kind: 'acidHalfLife', version: 1, title: 'Half-life in acid', subject: 'complex',
+  kind: 'acidHalfLife', version: 2, title: 'Half-life in acid', subject: 'complex',
   purpose: 'Time in which half of the complex lets go in a stated acid; comparable only under the same conditions.',
   fields: [
     {
@@ -16,9 +19,9 @@ export const acidHalfLife = defineRecord({
     },
   ],
   conditions: [
-    { type: 'number', key: 'acid_M', label: 'Acid concentration', required: true, group: 'Conditions', dimension: 'concentration', stored: 'M', units: ['M', 'mM'], min: 0.0001, max: 12 },
-    { type: 'choice', key: 'acid', label: 'Acid', required: true, group: 'Conditions', options: [{ value: 'HCl', label: 'hydrochloric acid' }, { value: 'HClO4', label: 'perchloric acid' }, { value: 'HNO3', label: 'nitric acid' }, { value: 'other', label: 'another, named in the note' }] },
-    temperatureField, ionicStrengthField(false),
+    { type: 'choice', key: 'acid', label: 'Acid', required: true, group: 'Conditions', options: [{ value: 'HCl', label: 'hydrochloric acid' }, { value: 'HClO4', label: 'perchloric acid' }, { value: 'HNO3', label: 'nitric acid' }, { value: 'other', label: 'another, named in the note' }, { value: 'notStated', label: 'strong acid, not stated which' }] },
+    statedOnly({ type: 'number', key: 'acid_M', label: 'Acid concentration', required: true, group: 'Conditions', dimension: 'concentration', stored: 'M', units: ['M', 'mM'], min: 0.0001, max: 12 }),
+    statedOnly(temperatureField), statedOnly(ionicStrengthField(false)),
     { type: 'text', key: 'method', label: 'Method', required: false, group: 'Conditions', most: 200 },
     noteField,
   ],
@@ -29,6 +32,7 @@ export const acidHalfLife = defineRecord({
     return `t_{1/2} ${WORDS[kind]}${formatDuration(value)}${se === null ? '' : ` ± ${formatDuration(se, 2)}`}`
   },
   describe: ({ acid_M, acid, temperature_K }) => [
+    acid === 'notStated' ? 'strong acid, not stated which' : '',
     typeof acid_M === 'number' ? `${formatNumber(acid_M)} M ${acid === 'other' || typeof acid !== 'string' ? 'acid' : acid.replace(/(\d)/, '_$1')}` : '',
     typeof temperature_K === 'number' ? formatCelsius(temperature_K, 0) : '',
   ].filter(Boolean).join(', '),

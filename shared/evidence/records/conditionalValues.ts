@@ -23,8 +23,9 @@ export interface EquilibriumInput {
 /** In what the two sets of constants differ, in words; null where they belong together. */
 export function mediumDifference(conditions: Conditions, registered: NonNullable<RecordContext['ligandProtonation']>): string | null {
   if (typeof conditions.ionicStrength_M !== 'number' || typeof conditions.medium !== 'string') return 'The medium of log K is not stated: with the protonation constants of the ligand it is taken on trust.'
-  const comparison = comparable([constantConditions('log K', conditions), constantConditions('the set of protonation constants', { ...registered })])
-  const media = conditions.medium === registered.medium ? '' : `, ${conditions.medium} and ${registered.medium}`
+  const { temperature_K, ionicStrength_M, medium } = registered
+  const comparison = comparable([constantConditions('log K', conditions), constantConditions('the set of protonation constants', { temperature_K, ionicStrength_M, medium })])
+  const media = conditions.medium === medium ? '' : `, ${conditions.medium} and ${medium}`
   if (!comparison.ok) return `log K and protonation constants come from different media${media}: ${comparison.message} Accepted: ${comparison.accepted}`
   return media ? `log K and protonation constants come from different media${media}.` : null
 }

@@ -42,10 +42,11 @@ function summarise(entry: RecordEntry): string {
 
 /**
  * Loss of paramagnetic relaxation rate in zinc and phosphate.
+ * Version 2: the rate without the complex may be missing, as in most publications.
  * @source Laurent et al., Invest. Radiol. 36, 115 (2001)
  */
 export const zincPhosphate = defineRecord({
-  kind: 'zincPhosphateRatio', version: 1, title: 'Zinc and phosphate', subject: 'complex',
+  kind: 'zincPhosphateRatio', version: 2, title: 'Zinc and phosphate', subject: 'complex',
   purpose: 'The share of the paramagnetic rate R_{1p} that is left in zinc and phosphate, after 72 h or as the time to 0.80.',
   fields: [
     { type: 'quantity', key: 'ratioAt72h', label: 'R_{1p}(72 h) / R_{1p}(0)', required: false, group: 'Value', dimension: null, stored: '', units: [''], min: 0, max: 1.2, bounds: ['=', '<', '>'] },
@@ -60,7 +61,7 @@ export const zincPhosphate = defineRecord({
   ],
   conditions: [
     { type: 'number', key: 'b0_T', label: 'Field', required: true, group: 'Conditions', dimension: 'field', stored: 'T', units: ['MHz', 'T'], min: 0.0001, max: 30 },
-    { type: 'number', key: 'rate1Dia_per_s', label: 'R_1 without the complex', required: true, group: 'Conditions', dimension: 'rate', stored: 's^-1', units: ['s^-1'], min: 0, isAbove: true, max: 50 },
+    { type: 'number', key: 'rate1Dia_per_s', label: 'R_1 without the complex', help: 'Left empty where a source does not print it.', required: false, group: 'Conditions', dimension: 'rate', stored: 's^-1', units: ['s^-1'], min: 0, isAbove: true, max: 50 },
     millimolar('complex_mM', 'Complex'), millimolar('zinc_mM', 'Zinc added'), millimolar('phosphate_mM', 'Phosphate'), pHField, temperatureField,
     { type: 'text', key: 'buffer', label: 'Buffer', required: true, group: 'Conditions', most: 120 }, noteField,
   ],

@@ -74,7 +74,7 @@ function columnTube({ column, error, aux, xColumn, header, attributes, body }: O
   const ySpec = column.spec
   const ofTube = attributes.filter(candidate => candidate.spec.role === 'aux').map(value)
   const points = xColumn === null || ySpec === null
-    ? resultPoints(attributes, value)
+    ? resultPoints(attributes, value).map(point => ({ ...point, aux: ofTube }))
     : body.flatMap(record => bodyPoint(record, { column, error, aux, xColumn, ySpec })).map(point => ({ ...point, aux: [...point.aux, ...ofTube] }))
   return {
     key: `column ${column.index}`, label: named('tube')?.text ?? column.header, agent: named('agent'), batch: named('batch'), conc: valueOf('conc'), concSe: valueOf('concError'),
