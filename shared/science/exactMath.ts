@@ -10,22 +10,20 @@ const LN2_LOW = 1.90821492927058770002e-10
 const INVERSE_LN2 = 1.44269504088896338700
 const EXP_OVERFLOW = 7.09782712893383973096e2
 const EXP_UNDERFLOW = -7.45133219101941108420e2
-const TINY = 2 ** -28
 
 const bits = new DataView(new ArrayBuffer(8))
 
-/** 2^k as a double, for −1022 ≤ k ≤ 1023. */
-function powerOfTwo(k: number): number {
-  bits.setUint32(0, (k + 1023) << 20)
-  bits.setUint32(4, 0)
-  return bits.getFloat64(0)
-}
+const SMALLEST_POWER = -1074
+/** 2^k from the smallest to the largest double, by doubling, which is exact. */
+const powers = new Float64Array(1023 - SMALLEST_POWER + 1)
+powers[0] = 5e-324
+for (let k = 1; k < powers.length; k++) powers[k] = 2 * powers[k - 1]!
 
 /** x·2^k, in two steps where 2^k itself is no normal double. */
 function scale(x: number, k: number): number {
-  if (k > 1023) return x * 2 * powerOfTwo(k - 1)
-  if (k < -1021) return x * powerOfTwo(k + 1000) * powerOfTwo(-1000)
-  return x * powerOfTwo(k)
+  if (k > 1023) return x * 2 * powers[k - 1 - SMALLEST_POWER]!
+  if (k < -1021) return x * powers[k + 1000 - SMALLEST_POWER]! * powers[-1000 - SMALLEST_POWER]!
+  return x * powers[k - SMALLEST_POWER]!
 }
 
 /**
@@ -33,19 +31,35 @@ function scale(x: number, k: number): number {
  * @param x any number; NaN gives NaN, above 709.78 gives +∞, below −745.13 gives 0
  */
 export function exactExp(x: number): number {
-  if (Number.isNaN(x)) return x
-  if (x > EXP_OVERFLOW) return Infinity
-  if (x < EXP_UNDERFLOW) return 0
-  if (Math.abs(x) < TINY) return 1 + x
-  const k = Math.abs(x) > 0.5 * Math.LN2 ? Math.trunc(INVERSE_LN2 * x + (x < 0 ? -0.5 : 0.5)) : 0
+  if (!(x > -700 && x < 700)) return atTheEnds(x)
+  // Zero for the smallest arguments, which the formula then leaves as they are.
+  const k = (INVERSE_LN2 * x + (x < 0 ? -0.5 : 0.5)) | 0
   const high = x - k * LN2_HIGH
   const low = k * LN2_LOW
   const r = high - low
   const t = r * r
   const c = r - t * (1.66666666666666019037e-1 + t * (-2.77777777770155933842e-3 + t * (6.61375632143793436117e-5
     + t * (-1.65339022054652515390e-6 + t * 4.13813679705723846039e-8))))
-  if (k === 0) return 1 - ((r * c) / (c - 2) - r)
-  return scale(1 - ((low - (r * c) / (2 - c)) - high), k)
+  return (1 - ((low - (r * c) / (2 - c)) - high)) * powers[k - SMALLEST_POWER]!
+}
+
+/** e^x over 2^k, for k next to x/ln 2. */
+function reduced(x: number, k: number): number {
+  const high = x - k * LN2_HIGH
+  const low = k * LN2_LOW
+  const r = high - low
+  const t = r * r
+  const c = r - t * (1.66666666666666019037e-1 + t * (-2.77777777770155933842e-3 + t * (6.61375632143793436117e-5
+    + t * (-1.65339022054652515390e-6 + t * 4.13813679705723846039e-8))))
+  return 1 - ((low - (r * c) / (2 - c)) - high)
+}
+
+function atTheEnds(x: number): number {
+  if (Number.isNaN(x)) return x
+  if (x > EXP_OVERFLOW) return Infinity
+  if (x < EXP_UNDERFLOW) return 0
+  const k = Math.trunc(INVERSE_LN2 * x + (x < 0 ? -0.5 : 0.5))
+  return scale(reduced(x, k), k)
 }
 
 /**

@@ -1,4 +1,5 @@
 import type { Model, Settings } from '../models/define'
+import { invertNormal, QUICK_PARAMETERS, solveNormal } from './normalEquations'
 import type { SeparableSearch } from './varpro'
 
 /** Points as the fit uses them; weights are 1/σ, null for equal ones. */
@@ -19,28 +20,29 @@ export interface QuickFit {
   readonly evaluations: number
 }
 
-/** Most parameters; more gain nothing from small loops. */
-export const QUICK_PARAMETERS = 4
+export { QUICK_PARAMETERS } from './normalEquations'
 const MOST_EVALUATIONS = 40
 const STEP = 1e-11
-/** Square of the smallest scaled pivot above which normal equations keep eleven digits. */
-const PIVOT = 1e-4
 const FIRST_DAMPING = 1e-3
+/** Relative length of a step below which the errors shrink by a steady factor. */
+const STEADY = 0.05
 
 const gradient = new Float64Array(QUICK_PARAMETERS)
 const normal = new Float64Array(QUICK_PARAMETERS ** 2)
-const factor = new Float64Array(QUICK_PARAMETERS ** 2)
 const right = new Float64Array(QUICK_PARAMETERS)
 const trialNormal = new Float64Array(QUICK_PARAMETERS ** 2)
 const trialRight = new Float64Array(QUICK_PARAMETERS)
 const step = new Float64Array(QUICK_PARAMETERS)
-const scale = new Float64Array(QUICK_PARAMETERS)
 const current = new Float64Array(QUICK_PARAMETERS)
 const trial = new Float64Array(QUICK_PARAMETERS)
+/** Undamped step at the point before, and what was taken of it. */
+const stepBefore = new Float64Array(QUICK_PARAMETERS)
+const taken = new Float64Array(QUICK_PARAMETERS)
 
 /**
  * Levenberg–Marquardt on the normal equations for few, well told apart parameters away from their bounds: nothing is stored but JᵀWJ and JᵀWr, which
- * a small fit builds while it computes the model. It ends when the undamped step no longer moves a parameter by 1e-11 of itself.
+ * a small fit builds while it computes the model. Near the minimum each step leaves a share of the error that hangs on the curvature of the residuals;
+ * two steps tell that share, and the next one is longer by it. It ends when the undamped step no longer moves a parameter by 1e-11 of itself.
  * @param start inside the bounds
  * @returns null whenever anything is not plain: ill conditioned, a bound in reach, no convergence, a value that is not finite. Then the full search decides
  * @source Levenberg, Q. Appl. Math. 2, 164 (1944); Marquardt, J. SIAM 11, 431 (1963)
@@ -52,27 +54,65 @@ export function solveQuickly(model: Model, data: QuickData, start: ArrayLike<num
   let sum = accumulate(model, data, current, normal, right)
   let damping = 0
   let evaluations = 1
+  let knowsBefore = false
   if (!(sum < Infinity)) return null
   for (;;) {
-    if (!factorise(m, damping)) return null
-    const length = solveStep(m)
+    if (!solveNormal(m, normal, right, damping, step)) return null
+    const length = relativeLength(m)
     // Near rounding of the signal a sum of squares says nothing of the parameters any more.
     if (damping === 0 && length <= STEP) break
-    if (evaluations >= MOST_EVALUATIONS || !moveInside(model, m)) return null
+    const stretch = damping === 0 && knowsBefore && length <= STEADY ? stretchOf(m) : 1
+    if (evaluations >= MOST_EVALUATIONS || !moveInside(model, m, stretch)) return null
     const next = accumulate(model, data, trial, trialNormal, trialRight)
     evaluations += 1
     if (next <= sum * (1 + 1e-12) || (damping === 0 && length <= 1e-7 && next <= sum * (1 + 1e-6))) {
-      for (let j = 0; j < m; j++) current[j] = trial[j]!
-      normal.set(trialNormal)
-      right.set(trialRight)
+      knowsBefore = damping === 0
+      for (let j = 0; j < m; j++) {
+        stepBefore[j] = step[j]!
+        taken[j] = trial[j]! - current[j]!
+        current[j] = trial[j]!
+      }
+      copySystem(m)
       sum = next
       damping = damping > 1e-7 ? damping * 0.1 : 0
     } else {
+      knowsBefore = false
       if (!(damping < 1e6)) return null
       damping = damping === 0 ? FIRST_DAMPING : damping * 10
     }
   }
-  return { parameters: current.slice(0, m), sumOfSquares: sum, inverse: invert(m), evaluations }
+  return { parameters: current.slice(0, m), sumOfSquares: sum, inverse: invertNormal(m), evaluations }
+}
+
+function copySystem(m: number): void {
+  for (let j = 0; j < m; j++) right[j] = trialRight[j]!
+  for (let j = 0; j < m * m; j++) normal[j] = trialNormal[j]!
+}
+
+/** Largest part of the step relative to its parameter. */
+function relativeLength(m: number): number {
+  let largest = 0
+  for (let a = 0; a < m; a++) {
+    const part = Math.abs(step[a]! / (current[a]! || 1))
+    if (!(part <= largest)) largest = part
+  }
+  return largest
+}
+
+/**
+ * 1/(1 − ρ), with ρ the share of the error that an undamped step leaves: error e gives step −(1 − ρ)·e, so the change of the step over what was taken tells
+ * 1 − ρ, in the metric of the normal matrix's diagonal. 1 where the two steps tell nothing of the kind.
+ */
+function stretchOf(m: number): number {
+  let over = 0
+  let under = 0
+  for (let a = 0; a < m; a++) {
+    const weighted = normal[a * m + a]! * taken[a]!
+    over += weighted * (stepBefore[a]! - step[a]!)
+    under += weighted * taken[a]!
+  }
+  const left = over / under
+  return left > 0.7 && left < 1.5 ? 1 / left : 1
 }
 
 const seeded = new Float64Array(QUICK_PARAMETERS)
@@ -177,78 +217,12 @@ function accumulateTwo(model: Model, { x, y, weights, settings }: QuickData, p: 
   return sum
 }
 
-/** Cholesky of the normal matrix with its columns scaled to length 1 and the damping on its diagonal; false when the columns are too nearly dependent. */
-function factorise(m: number, damping: number): boolean {
-  for (let a = 0; a < m; a++) {
-    const length = Math.sqrt(normal[a * m + a]!)
-    if (!(length > 0 && length < Infinity)) return false
-    scale[a] = length
-  }
-  for (let a = 0; a < m; a++) {
-    for (let b = 0; b <= a; b++) {
-      let entry = normal[a * m + b]! / (scale[a]! * scale[b]!)
-      if (a === b) entry += damping
-      for (let l = 0; l < b; l++) entry -= factor[a * m + l]! * factor[b * m + l]!
-      if (a > b) factor[a * m + b] = entry / factor[b * m + b]!
-      else {
-        if (!(entry > PIVOT)) return false
-        factor[a * m + a] = Math.sqrt(entry)
-      }
-    }
-  }
-  return true
-}
-
-/** Solves for the step; returns its largest part relative to the parameters. */
-function solveStep(m: number): number {
-  for (let a = 0; a < m; a++) {
-    let value = right[a]! / scale[a]!
-    for (let l = 0; l < a; l++) value -= factor[a * m + l]! * step[l]!
-    step[a] = value / factor[a * m + a]!
-  }
-  let largest = 0
-  for (let a = m - 1; a >= 0; a--) {
-    let value = step[a]!
-    for (let l = a + 1; l < m; l++) value -= factor[l * m + a]! * step[l]!
-    step[a] = value / factor[a * m + a]!
-  }
-  for (let a = 0; a < m; a++) {
-    step[a]! /= scale[a]!
-    largest = Math.max(largest, Math.abs(step[a]!) / (Math.abs(current[a]!) || 1))
-  }
-  return largest
-}
-
-function moveInside(model: Model, m: number): boolean {
+function moveInside(model: Model, m: number, stretch: number): boolean {
   const { lower, upper } = model
   for (let a = 0; a < m; a++) {
-    const next = current[a]! + step[a]!
+    const next = current[a]! + stretch * step[a]!
     if (!(next > lower[a]! && next < upper[a]!)) return false
     trial[a] = next
   }
   return true
-}
-
-/** (LLᵀ)⁻¹ with the scales put back. */
-function invert(m: number): Float64Array {
-  const inverse = new Float64Array(m * m)
-  for (let c = 0; c < m; c++) {
-    // Column c of L⁻¹ stands in `step`.
-    for (let a = c; a < m; a++) {
-      let value = a === c ? 1 : 0
-      for (let l = c; l < a; l++) value -= factor[a * m + l]! * step[l]!
-      step[a] = value / factor[a * m + a]!
-    }
-    for (let a = c; a < m; a++) trialNormal[c * m + a] = step[a]!
-  }
-  for (let a = 0; a < m; a++) {
-    for (let b = 0; b <= a; b++) {
-      let value = 0
-      for (let l = a; l < m; l++) value += trialNormal[a * m + l]! * trialNormal[b * m + l]!
-      value /= scale[a]! * scale[b]!
-      inverse[a * m + b] = value
-      inverse[b * m + a] = value
-    }
-  }
-  return inverse
 }

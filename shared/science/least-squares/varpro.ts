@@ -1,3 +1,4 @@
+import { firstVaryingColumn, mostAligned, seedReader, type ProjectionGrid } from './projectionGrid'
 import { withStandards, type Model, type ModelParameter, type Settings } from '../models/define'
 
 /** Best fit over the nonlinear parameter, the linear ones eliminated. */
@@ -17,14 +18,14 @@ export interface SeparableSearch {
    */
   search: (y: ArrayLike<number>, logTolerance?: number) => Projection
   /**
-   * A start for a descent, read off the grid alone: τ by a parabola through its best three points, the coefficients of the best one. No model value is computed.
+   * A start for a descent, read off the grid alone: τ and its coefficients by interpolation between the best five points. No model value is computed.
    */
   seed: (y: ArrayLike<number>) => { readonly tau: number, readonly linear: Float64Array }
   /** The same for one given τ. */
   projectAt: (tau: number, y: ArrayLike<number>) => Projection
 }
 
-const GRID = 64
+const GRID = 128
 
 /**
  * Variable projection: for each τ the linear coefficients have a closed form, which leaves a search in one dimension, on a logarithmic grid and then
@@ -50,20 +51,15 @@ export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: Ar
     return orthonormalise(q, n, k)
   }
   const taus = logarithmicGrid(separable.range(x), model.params[separable.nonlinear]!)
-  const triangles: Float64Array[] = []
-  const grid = taus.map((tau) => {
-    const q = new Float64Array(n * k)
-    triangles.push(fill(tau, q))
-    return q
-  })
-  const logTaus = taus.map(Math.log)
+  const bases = new Float64Array(GRID * n * k)
+  const triangles = taus.map((tau, g) => fill(tau, bases.subarray(g * n * k, (g + 1) * n * k)))
+  const shape = { n, k, count: GRID, bases }
+  const grid: ProjectionGrid = { ...shape, triangles, logTaus: taus.map(Math.log), firstVarying: firstVaryingColumn(shape) }
+  const read = seedReader(grid)
   const wySeed = new Float64Array(n)
-  const linearSeed = new Float64Array(k)
   const seed = (y: ArrayLike<number>) => {
     for (let i = 0; i < n; i++) wySeed[i] = weights ? y[i]! * weights[i]! : y[i]!
-    const best = bestOfGrid(grid, wySeed, n, k)
-    backSubstituteInto(linearSeed, triangles[best]!, grid[best]!, wySeed, n, k)
-    return { tau: Math.exp(parabolaTop(logTaus, grid, wySeed, { best, n, k })), linear: linearSeed }
+    return read(wySeed)
   }
   const scratch = new Float64Array(n * k)
   const projectAt = (tau: number, y: ArrayLike<number>): Projection => {
@@ -73,7 +69,7 @@ export function prepareSeparable(model: Model, x: ArrayLike<number>, weights: Ar
   }
   const search = (y: ArrayLike<number>, logTolerance = 1e-7): Projection => {
     const wy = weighted(y, weightAt, n)
-    const best = mostAligned(grid, wy, n, k)
+    const best = mostAligned(grid, wy)
     const objective = (logTau: number) => {
       fill(Math.exp(logTau), scratch)
       return project(scratch, wy, n, k).rest
@@ -107,82 +103,6 @@ function logarithmicGrid([low, high]: readonly [number, number], { min, max }: M
   const from = Math.max(low, min)
   const ratio = Math.min(high, max) / from
   return Array.from({ length: GRID }, (_, g) => from * ratio ** (g / (GRID - 1)))
-}
-
-/** Sum of squares of y that the basis of one grid point holds. */
-function heldBy(q: Float64Array, y: Float64Array, n: number, k: number): number {
-  let held = 0
-  for (let c = 0; c < k; c++) {
-    const at = c * n
-    let product = 0
-    for (let i = 0; i < n; i++) product += q[at + i]! * y[i]!
-    held += product * product
-  }
-  return held
-}
-
-const STRIDE = 3
-
-/** Best grid point: every third one first, then the neighbours of the best of these. Valleys of sums of exponentials are wider than three points of the grid. */
-function bestOfGrid(grid: readonly Float64Array[], y: Float64Array, n: number, k: number): number {
-  let best = 0
-  let most = -1
-  for (let g = 0; g < grid.length; g += STRIDE) {
-    const held = heldBy(grid[g]!, y, n, k)
-    if (held > most) {
-      most = held
-      best = g
-    }
-  }
-  const from = Math.max(0, best - STRIDE + 1)
-  const to = Math.min(grid.length - 1, best + STRIDE - 1)
-  const coarse = best
-  for (let g = from; g <= to; g++) {
-    if (g === coarse) continue
-    const held = heldBy(grid[g]!, y, n, k)
-    if (held > most) {
-      most = held
-      best = g
-    }
-  }
-  return best
-}
-
-/** ln τ at the top of the parabola through the best point and its neighbours; the point itself at the end of the grid. */
-function parabolaTop(logTaus: readonly number[], grid: readonly Float64Array[], y: Float64Array, { best, n, k }: { best: number, n: number, k: number }): number {
-  if (best === 0 || best === grid.length - 1) return logTaus[best]!
-  const [low, here, high] = [heldBy(grid[best - 1]!, y, n, k), heldBy(grid[best]!, y, n, k), heldBy(grid[best + 1]!, y, n, k)]
-  const bend = low - 2 * here + high
-  return bend < 0 ? logTaus[best]! + (0.5 * (low - high) / bend) * (logTaus[best + 1]! - logTaus[best]!) : logTaus[best]!
-}
-
-function backSubstituteInto(linear: Float64Array, r: Float64Array, q: Float64Array, y: Float64Array, n: number, k: number): void {
-  for (let c = k - 1; c >= 0; c--) {
-    let sum = 0
-    for (let i = 0; i < n; i++) sum += q[c * n + i]! * y[i]!
-    for (let d = c + 1; d < k; d++) sum -= r[c * k + d]! * linear[d]!
-    linear[c] = r[c * k + c] === 0 ? 0 : sum / r[c * k + c]!
-  }
-}
-
-/** Grid point whose basis holds most of y: the one that leaves least. */
-function mostAligned(grid: readonly Float64Array[], y: Float64Array, n: number, k: number): number {
-  let best = 0
-  let most = -1
-  for (let g = 0; g < grid.length; g++) {
-    const q = grid[g]!
-    let held = 0
-    for (let c = 0; c < k; c++) {
-      let product = 0
-      for (let i = 0; i < n; i++) product += q[c * n + i]! * y[i]!
-      held += product * product
-    }
-    if (held > most) {
-      most = held
-      best = g
-    }
-  }
-  return best
 }
 
 function weighted(y: ArrayLike<number>, weightAt: (i: number) => number, n: number): Float64Array {

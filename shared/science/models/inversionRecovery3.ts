@@ -10,7 +10,7 @@ import { PARAMETERS, SIGNAL_AXIS, TI_AXIS, guessRecovery, recoveryRange, refuseN
  */
 export const inversionRecovery3 = defineModel({
   id: 'inversionRecovery3',
-  version: 1,
+  version: 2,
   title: 'Inversion recovery, three parameters',
   equation: 'S = a + b·exp(−TI/T1)',
   source: 'Barral et al., Magn. Reson. Med. 64, 1057 (2010)',
@@ -19,12 +19,14 @@ export const inversionRecovery3 = defineModel({
   params: { a_au: PARAMETERS.a, b_au: PARAMETERS.b, t1_s: PARAMETERS.t1 },
   settings: {},
   valueAndGradient(ti_s, p, _settings, gradient) {
-    const t1_s = p[2]!
-    const decay = Math.exp(-ti_s / t1_s)
+    const rate1_per_s = 1 / p[2]!
+    const elapsed = ti_s * rate1_per_s
+    const decay = Math.exp(-elapsed)
+    const decaying = p[1]! * decay
     gradient[0] = 1
     gradient[1] = decay
-    gradient[2] = (p[1]! * decay * ti_s) / (t1_s * t1_s)
-    return p[0]! + p[1]! * decay
+    gradient[2] = decaying * elapsed * rate1_per_s
+    return p[0]! + decaying
   },
   guess(ti_s, signal_au) {
     const { plateau, start, t1_s } = guessRecovery(ti_s, signal_au)

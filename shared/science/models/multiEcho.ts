@@ -11,7 +11,7 @@ const SOURCE = 'Meiboom & Gill, Rev. Sci. Instrum. 29, 688 (1958)'
  */
 export const multiEcho = defineModel({
   id: 'multiEcho',
-  version: 1,
+  version: 2,
   title: 'Multi-echo decay',
   equation: 'S = a·exp(−TE/T2)',
   source: SOURCE,
@@ -20,11 +20,13 @@ export const multiEcho = defineModel({
   params: { a_au: ECHO_PARAMETERS.a, t2_s: ECHO_PARAMETERS.t2 },
   settings: {},
   valueAndGradient(te_s, p, _settings, gradient) {
-    const t2_s = p[1]!
-    const decay = Math.exp(-te_s / t2_s)
+    const rate2_per_s = 1 / p[1]!
+    const elapsed = te_s * rate2_per_s
+    const decay = Math.exp(-elapsed)
+    const signal = p[0]! * decay
     gradient[0] = decay
-    gradient[1] = (p[0]! * decay * te_s) / (t2_s * t2_s)
-    return p[0]! * decay
+    gradient[1] = signal * elapsed * rate2_per_s
+    return signal
   },
   guess: (te_s, signal_au) => guessDecay(te_s, signal_au),
   refuse: refuseNegativeTimes,
