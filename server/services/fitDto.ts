@@ -46,5 +46,5 @@ export function fitDto({ fit, versions, kind, exclusions, evidence, places }: Fi
 
 function tubeDto(tube: TubeResult, kind: MeasurementKind, places: ReadonlyMap<number, string>): TubeDto {
   const figure = kind.tubeFigure(tube)
-  return { ...tube, place: places.get(tube.tubeNo) ?? '', figure, small: smallFigure(tube, figure, kind.labelsName === 'course') }
+  return { ...tube, place: places.get(tube.tubeNo) ?? '', small: smallFigure(tube, figure, kind.labelsName === 'course') }
 }

@@ -11,6 +11,7 @@ const reason = z.string().trim().min(MIN_REASON_LENGTH, `A reason stays with the
 const place = { tubeNo: z.number().int().min(1), pointIndex: z.number().int().min(0).nullable() }
 
 export const FitParams = z.object({ programme: z.string(), id: z.uuid(), version: z.coerce.number().int().min(1) })
+export const TubeFigureParams = FitParams.extend({ tube: z.coerce.number().int().min(1) })
 /** ?versions=1,2 */
 export const CompareQuery = z.object({
   versions: z.string().regex(/^[1-9]\d{0,8},[1-9]\d{0,8}$/, 'Name two versions, such as versions=1,2.').transform(text => text.split(',').map(Number) as [number, number]),
@@ -76,7 +77,7 @@ export const TubeDto = z.object({
   intervalMethod: z.string().optional(),
   /** Place in the file: column, rows. */
   place: z.string(),
-  figure: FigureSpec,
+  /** The large figure is asked for tube by tube. */
   small: SmallFigureSpec,
 })
 export type TubeDto = z.output<typeof TubeDto>

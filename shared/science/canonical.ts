@@ -11,7 +11,7 @@ export type JsonValue = null | boolean | number | string | readonly JsonValue[] 
  *   a typed array, a class instance, a hole in an array or a cycle: JSON would drop or change each of them silently
  */
 export function canonicalJson(value: unknown): string {
-  return write(value, '$', [])
+  return write(value, [], [])
 }
 
 /**
@@ -25,29 +25,50 @@ export function parseCanonicalJson(text: string): JsonValue {
   return value
 }
 
-function write(value: unknown, path: string, parents: readonly object[]): string {
+/** Keys and indices that lead to the value at hand; one array for the whole text, for it is read only when something is wrong. */
+type Path = (string | number)[]
+
+const at = (path: Path): string => `$${path.map(step => typeof step === 'number' ? `[${step}]` : `.${step}`).join('')}`
+
+function write(value: unknown, path: Path, parents: object[]): string {
+  if (typeof value === 'number') return writeNumber(value, path)
   if (value === null || value === true || value === false) return String(value)
   if (typeof value === 'string') return JSON.stringify(value)
-  if (typeof value === 'number') return writeNumber(value, path)
-  if (typeof value !== 'object') throw new TypeError(`Canonical JSON cannot hold ${typeof value} at ${path}.`)
-  if (parents.includes(value)) throw new TypeError(`Canonical JSON cannot hold a cycle at ${path}.`)
-  const inside = [...parents, value]
-  if (Array.isArray(value)) return `[${Array.from(value, (item, i) => write(item, `${path}[${i}]`, inside)).join(',')}]`
-  return writeObject(value, path, inside)
+  if (typeof value !== 'object') throw new TypeError(`Canonical JSON cannot hold ${typeof value} at ${at(path)}.`)
+  if (parents.includes(value)) throw new TypeError(`Canonical JSON cannot hold a cycle at ${at(path)}.`)
+  parents.push(value)
+  const text = Array.isArray(value) ? writeArray(value, path, parents) : writeObject(value, path, parents)
+  parents.pop()
+  return text
 }
 
-function writeNumber(value: number, path: string): string {
-  if (!Number.isFinite(value)) throw new TypeError(`Canonical JSON cannot hold ${value} at ${path}.`)
+function writeNumber(value: number, path: Path): string {
+  if (!Number.isFinite(value)) throw new TypeError(`Canonical JSON cannot hold ${value} at ${at(path)}.`)
   return Object.is(value, -0) ? '-0' : String(value)
 }
 
-function writeObject(value: object, path: string, inside: readonly object[]): string {
+function writeArray(value: readonly unknown[], path: Path, parents: object[]): string {
+  let text = '['
+  for (let i = 0; i < value.length; i++) {
+    path.push(i)
+    text += i === 0 ? write(value[i], path, parents) : `,${write(value[i], path, parents)}`
+    path.pop()
+  }
+  return `${text}]`
+}
+
+function writeObject(value: object, path: Path, parents: object[]): string {
   const prototype: unknown = Object.getPrototypeOf(value)
   if (prototype !== Object.prototype && prototype !== null) {
-    throw new TypeError(`Canonical JSON cannot hold a ${value.constructor?.name ?? 'class instance'} at ${path}.`)
+    throw new TypeError(`Canonical JSON cannot hold a ${value.constructor?.name ?? 'class instance'} at ${at(path)}.`)
   }
-  if (Object.getOwnPropertySymbols(value).length > 0) throw new TypeError(`Canonical JSON cannot hold a symbol key at ${path}.`)
+  if (Object.getOwnPropertySymbols(value).length > 0) throw new TypeError(`Canonical JSON cannot hold a symbol key at ${at(path)}.`)
   const record = value as Record<string, unknown>
-  const pairs = Object.keys(record).sort().map(key => `${JSON.stringify(key)}:${write(record[key], `${path}.${key}`, inside)}`)
-  return `{${pairs.join(',')}}`
+  let text = '{'
+  for (const key of Object.keys(record).sort()) {
+    path.push(key)
+    text += `${text === '{' ? '' : ','}${JSON.stringify(key)}:${write(record[key], path, parents)}`
+    path.pop()
+  }
+  return `${text}}`
 }

@@ -70,11 +70,11 @@ describe('figures', () => {
       id: 't5', title: '0.50 mM', value: null, plusMinus: null, text: 'Tube 5, no fit.', x: { scale: 'log' }, y: { scale: 'linear' },
       points: [{ x: 50, y: -90 }, { x: 100, y: 10, out: true }], curve: [], residuals: [{ x: 50, y: 5 }], flags: ['outlier'], leftOut: true,
     })
-    const wrapper = await mountSuspended(SmallMultiple, { props: { figure: tube, chosen: true } })
+    const wrapper = await mountSuspended(SmallMultiple, { props: { figure: tube, width: 146, chosen: true } })
     expect(wrapper.text()).toContain('no fit')
     expect(wrapper.find('b').classes()).toContain('line-through')
     expect(wrapper.attributes('aria-pressed')).toBe('true')
-    expect(wrapper.findAll('circle')).toHaveLength(1)
+    expect(wrapper.find('path.dots').attributes('d')!.split('M')).toHaveLength(2)
     await wrapper.trigger('click')
     expect(wrapper.emitted('choose')).toEqual([['t5']])
   })

@@ -6,7 +6,8 @@ import { confirmUpload } from '../../server/services/confirmUpload'
 import { previewUpload } from '../../server/services/previewUpload'
 import { repeatFit } from '../../server/services/repeatFit'
 import { requestFit } from '../../server/services/requestFit'
-import { showFit } from '../../server/services/showFit'
+import { FigureSpec } from '../../shared/schemas/figure'
+import { showFit, showTubeFigure } from '../../server/services/showFit'
 import { showPresets } from '../../server/services/showPresets'
 import { showSeries } from '../../server/services/showSeries'
 import { stageUpload } from '../../server/services/stageUpload'
@@ -46,6 +47,11 @@ describe('the way of a file [issue: way 2 and 3]', () => {
     expect(headline.se! / headline.value).toBeGreaterThan(0.015)
     expect(headline.evidenceId).toBe(fit.evidence[0]!.id)
     expect(fit.tubes.every(tube => tube.small.curve.length > 20 && tube.headline?.se !== null)).toBe(true)
+    const large = { programmeId: programme.id, seriesId, versionNo: 1, tubeNo: 2 }
+    const figure = FigureSpec.parse(await showTubeFigure(deps, { ...large, scope: 'programme' }))
+    expect(figure.layers.map(layer => [layer.type, layer.points.length])).toEqual([['line', fit.tubes[1]!.small.curve.length], ['points', fit.tubes[1]!.points.length]])
+    await expect(showTubeFigure(deps, { ...large, scope: 'signed' })).rejects.toMatchObject({ code: 'notFound' })
+    await expect(showTubeFigure(deps, { ...large, scope: 'programme', tubeNo: 6 })).rejects.toMatchObject({ code: 'notFound' })
     expect(await repeatFit(deps, { actor: physicist, programmeId: programme.id, seriesId, versionNo: 1 })).toMatchObject({ same: true })
     const shown = SeriesDto.parse(await showSeries(deps, { programmeId: programme.id, scope: 'programme', seriesId }))
     expect(shown.conditions).toContainEqual(expect.objectContaining({ key: 'temperature_K', shown: '37\u00A0°C' }))

@@ -7,7 +7,7 @@ export interface ApiRoute { file: string, method: 'GET' | 'POST' | 'PUT' | 'PATC
 
 const root = fileURLToPath(new URL('../../server/api', import.meta.url))
 /** Parameters that name a thing: well-formed, and of nothing that exists. */
-const MADE_UP: Readonly<Record<string, string>> = { token: 'A'.repeat(43), kind: 'fit', version: '1', code: 'TS-222222', name: 'none' }
+const MADE_UP: Readonly<Record<string, string>> = { token: 'A'.repeat(43), kind: 'fit', version: '1', tube: '1', code: 'TS-222222', name: 'none' }
 const NO_ROW = '01990000-0000-7000-8000-00000000dead'
 
 /** Every route of the product as its file declares it, the catch-all left out. */

@@ -50,7 +50,9 @@ export function analysedPoints(x: readonly number[], y: readonly number[], fit: 
 /** A test that was passed, with what it saw: 'Outlier: no. Point 3 has the largest ...'. */
 export const passedText = (title: string, detail: string | null): string => `${title}: no.${detail ? ` ${detail}` : ''}`
 
-const CURVE_POINTS = 97
+const CURVE_POINTS = 65
+/** Curves are for the eye: figures show no more digits. */
+const CURVE_DIGITS = 6
 
 /** Model values from 0 to the last point, denser where a recovery bends: spaced by the square of their index. */
 export function curveOver(x: readonly number[], evaluate: (x: number) => number): { x: number, y: number }[] {
@@ -58,6 +60,8 @@ export function curveOver(x: readonly number[], evaluate: (x: number) => number)
   if (!(end > 0)) return []
   return Array.from({ length: CURVE_POINTS }, (_, i) => {
     const at = end * (i / (CURVE_POINTS - 1)) ** 2
-    return { x: at, y: evaluate(at) }
+    return { x: forTheEye(at), y: forTheEye(evaluate(at)) }
   })
 }
+
+const forTheEye = (value: number): number => Number(value.toPrecision(CURVE_DIGITS))

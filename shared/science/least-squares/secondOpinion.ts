@@ -5,6 +5,8 @@ import type { LeastSquaresProblem, Solution } from './problem'
 /** Fall of the sum of squares that counts as a lower minimum. */
 const LOWER_BY = 1e-6
 const ITERATIONS = 40
+/** From where we ended: either it falls at once or there is nothing below. */
+const ITERATIONS_FROM_OURS = 10
 
 /**
  * Asks an independent Levenberg–Marquardt program for a lower minimum, from our optimum and from the model's own start.
@@ -14,7 +16,7 @@ const ITERATIONS = 40
  * @param start the model's start, free parameters
  */
 export function findSecondOpinion(problem: LeastSquaresProblem, ours: Solution, start: readonly number[]): SecondOpinion {
-  const found = [Array.from(ours.parameters), start].map(from => runFrom(problem, ours, from))
+  const found = [runFrom(problem, ours, Array.from(ours.parameters), ITERATIONS_FROM_OURS), runFrom(problem, ours, start, ITERATIONS)]
   const best = found.reduce((a, b) => b.sumOfSquares < a.sumOfSquares ? b : a)
   // Below rounding of the residuals no sum of squares is lower than another.
   const rounding = 1e-28 * problem.n * Math.max(...ours.residual.map((_, i) => largestInRow(ours.jacobian, problem, ours.parameters, i) ** 2))
@@ -27,7 +29,7 @@ function largestInRow(jacobian: Float64Array, { n, m }: LeastSquaresProblem, p: 
   return largest
 }
 
-function runFrom(problem: LeastSquaresProblem, ours: Solution, from: readonly number[]): { sumOfSquares: number, parameters: number[] } {
+function runFrom(problem: LeastSquaresProblem, ours: Solution, from: readonly number[], maxIterations: number): { sumOfSquares: number, parameters: number[] } {
   const { n, m, lower, upper } = problem
   const size = Array.from(ours.parameters, value => Math.abs(value) || 1)
   const residual = new Float64Array(n)
@@ -59,7 +61,7 @@ function runFrom(problem: LeastSquaresProblem, ours: Solution, from: readonly nu
         }
       },
       minValues: size.map((s, j) => lower[j]! / s), maxValues: size.map((s, j) => upper[j]! / s),
-      maxIterations: ITERATIONS, errorTolerance: 1e-12 * ours.sumOfSquares,
+      maxIterations, errorTolerance: 1e-12 * ours.sumOfSquares,
     },
   )
   return { sumOfSquares: result.parameterError, parameters: result.parameterValues.map((value, j) => value * size[j]!) }
