@@ -9,7 +9,7 @@ export interface SolutePool {
   readonly rate2_per_s: number
   /** Rate from the solute to water, k; the rate back is k·ratio. */
   readonly exchange_per_s: number
-  /** Protons of the pool over protons of water, x = n·c/(2·55.5 mol/L). */
+  /** Protons of the pool over protons of water, x: see `protonFraction`. */
   readonly ratio: number
 }
 
@@ -31,22 +31,9 @@ export interface Block {
   readonly initial_frac?: number
 }
 
-/** Protons of water, mol/L: 2 × 55.5. */
-export const WATER_PROTONS_M = 111
-
-/** x = n·c/(2·55.5 mol/L). */
-export function protonRatio(protons: number, conc_mM: number): number {
-  return (protons * conc_mM * 1e-3) / WATER_PROTONS_M
-}
-
 /** rad s⁻¹ for 1 ppm at this field. */
 export function ppmToRadPerS(field_T: number): number {
   return PROTON_GAMMA_rad_per_s_T * field_T * 1e-6
-}
-
-/** ω1 in rad s⁻¹. */
-export function b1ToRadPerS(b1_uT: number): number {
-  return PROTON_GAMMA_rad_per_s_T * b1_uT * 1e-6
 }
 
 const positive = (x: number): boolean => x > 0 && x < Infinity

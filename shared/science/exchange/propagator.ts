@@ -11,7 +11,8 @@
 import { kernelOf, type Kernel } from './kernels'
 import { packedAt } from './packed'
 import { polynomial } from './polynomial'
-import { b1ToRadPerS, ppmToRadPerS, type PoolSystem } from './poolSystem'
+import { ppmToRadPerS, type PoolSystem } from './poolSystem'
+import { omega1_rad_per_s } from './transferForms'
 
 const LARGEST_NORM = 0.29
 /** Of the squarings so many are made on the vector, as products of the matrix with it: cheaper for one vector. */
@@ -55,7 +56,7 @@ export function createPropagator(pools: number): Propagator {
 export function setSystem(state: Propagator, system: PoolSystem, b1_uT: number): void {
   const { n, matrix, roots, out_per_s: out, places, norms, source } = state
   const perPpm = ppmToRadPerS(system.field_T)
-  const rotation = b1ToRadPerS(b1_uT)
+  const rotation = omega1_rad_per_s(b1_uT)
   const base = system.waterShift_ppm ?? 0
   roots[0] = 1
   out[0] = 0

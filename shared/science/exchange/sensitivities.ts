@@ -7,7 +7,8 @@ import { packedAt, signOf } from './packed'
 import { polynomialAndDerivative } from './polynomial'
 import { scalingOf, setOffset, setSystem, solveSteady, type Propagator } from './propagator'
 import { propagatorOf } from './spectrum'
-import { b1ToRadPerS, ppmToRadPerS, type Block, type PoolSystem } from './poolSystem'
+import { ppmToRadPerS, type Block, type PoolSystem } from './poolSystem'
+import { omega1_rad_per_s } from './transferForms'
 
 /** Columns of the derivatives: these, then five for each solute. */
 export const COLUMN = { waterRate1: 0, waterRate2: 1, waterShift: 2, b1: 3 } as const
@@ -108,5 +109,5 @@ function gather(state: Propagator, system: PoolSystem, { found, initial, perPpm,
     put(soluteColumn(p - 1, 'ratio'), byRoot / (2 * root) - k * ofWater)
   }
   put(COLUMN.waterShift, byShifts)
-  put(COLUMN.b1, b1ToRadPerS(1) * byRotation)
+  put(COLUMN.b1, omega1_rad_per_s(1) * byRotation)
 }

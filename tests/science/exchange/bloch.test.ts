@@ -1,10 +1,11 @@
 import { readFileSync } from 'node:fs'
 import { describe, expect, it } from 'vitest'
 import { PROTON_GAMMA_rad_per_s_T } from '../../../shared/science/constants'
-import { b1ToRadPerS, faultOfBlock, faultOfSystem, ppmToRadPerS, protonRatio, type PoolSystem } from '../../../shared/science/exchange/poolSystem'
+import { faultOfBlock, faultOfSystem, ppmToRadPerS, type PoolSystem } from '../../../shared/science/exchange/poolSystem'
 import { faultOfTrain, pulsedSpectrum, type PulseTrain } from '../../../shared/science/exchange/pulses'
 import { columnCount, cwSensitivities } from '../../../shared/science/exchange/sensitivities'
 import { cwSpectrum } from '../../../shared/science/exchange/spectrum'
+import { omega1_rad_per_s, protonFraction } from '../../../shared/science/exchange/transferForms'
 
 interface Reference {
   gamma_rad_per_s_uT: number
@@ -24,7 +25,7 @@ const solute = { shift_ppm: 20, rate1_per_s: 1, rate2_per_s: 50, exchange_per_s:
 
 /** Steady state of one pool: 1/Z = 1 + ω1²·T1·T2/(1 + (Δω·T2)²). */
 const blochSteady = ({ rate1_per_s: r1, rate2_per_s: r2 }: PoolSystem['water'], b1_uT: number, difference_rad_per_s: number) =>
-  1 / (1 + b1ToRadPerS(b1_uT) ** 2 / (r1 * r2) / (1 + (difference_rad_per_s / r2) ** 2))
+  1 / (1 + omega1_rad_per_s(b1_uT) ** 2 / (r1 * r2) / (1 + (difference_rad_per_s / r2) ** 2))
 
 describe('Bloch–McConnell spectra', () => {
   it('are those of the matrix exponential for 100 systems of 2 and 3 pools and 6 of 4 within 1e-10 [SciPy linalg.expm]', () => {
@@ -46,15 +47,15 @@ describe('Bloch–McConnell spectra', () => {
   it('has its dip at the published shift of the bound water and of the size that the published lifetime gives [J. Am. Chem. Soc. 123, 1517 (2001), from memory]', () => {
     const k = 1e6 / published.lifetime_us
     const rates = { rate1_per_s: 0.4, rate2_per_s: 1 }
-    const system: PoolSystem = { field_T: 9.4, water: rates, solutes: [{ shift_ppm: published.shift_ppm, rate1_per_s: 5, rate2_per_s: 100, exchange_per_s: k, ratio: protonRatio(2, 10) }] }
+    const system: PoolSystem = { field_T: 9.4, water: rates, solutes: [{ shift_ppm: published.shift_ppm, rate1_per_s: 5, rate2_per_s: 100, exchange_per_s: k, ratio: protonFraction(2, 10) }] }
     const offsets = Array.from({ length: 401 }, (_, i) => 40 + 0.05 * i)
     const z = cwSpectrum(system, { b1_uT: 20, duration_s: Infinity }, offsets)
     const mirrored = cwSpectrum(system, { b1_uT: 20, duration_s: Infinity }, offsets.map(x => -x))
     const asymmetry = Array.from(z, (value, i) => mirrored[i]! - value)
     const top = asymmetry.indexOf(Math.max(...asymmetry))
     expect(Math.abs(offsets[top]! - published.shift_ppm)).toBeLessThan(published.shiftTolerance_ppm)
-    const alpha = b1ToRadPerS(20) ** 2 / (b1ToRadPerS(20) ** 2 + k * (k + 100))
-    const transfer = protonRatio(2, 10) * k * alpha
+    const alpha = omega1_rad_per_s(20) ** 2 / (omega1_rad_per_s(20) ** 2 + k * (k + 100))
+    const transfer = protonFraction(2, 10) * k * alpha
     expect(Math.abs(1 / z[top]! - 1 / mirrored[top]! - transfer / rates.rate1_per_s)).toBeLessThan(0.02 * transfer / rates.rate1_per_s)
   })
   it('keeps the bits of an earlier version [our own output]', () => {
@@ -100,7 +101,7 @@ describe('limits of the Bloch–McConnell equations', () => {
   it('the transfer at the steady state is x·k·α/(R1w + x·k·α) for ω1² ≫ (R2s + k)(R1s + k) and no direct saturation [closed form]', () => {
     const far = { ...solute, shift_ppm: 5e4, exchange_per_s: 300, rate2_per_s: 20 }
     const z = cwSpectrum({ field_T: 9.4, water: { rate1_per_s: 0.4, rate2_per_s: 1 }, solutes: [far] }, { b1_uT: 100, duration_s: Infinity }, [5e4])[0]!
-    const squared = b1ToRadPerS(100) ** 2
+    const squared = omega1_rad_per_s(100) ** 2
     const transfer = far.ratio * 300 * squared / (squared + 300 * 320)
     expect(z / (0.4 / (0.4 + transfer))).toBeCloseTo(1, 4)
     const built = cwSpectrum({ field_T: 9.4, water: { rate1_per_s: 0.4, rate2_per_s: 1 }, solutes: [far] }, { b1_uT: 100, duration_s: 3 }, [5e4])[0]!
