@@ -46,6 +46,8 @@ export const useUploadStore = defineStore('upload', () => {
     // A later change was asked meanwhile: its answer is the one that counts.
     if (!answer.ok || mine !== asked) return
     preview.value = answer.value
+    // What the file was taken for stays, until the person says otherwise.
+    draft.value = { ...draft.value, kind: answer.value.kind }
     if (answer.value.kind !== kindBefore) presets.value = await $fetch<PresetsDto>(`${base.value}/presets`, { query: { kind: answer.value.kind } })
   }
   /** Changes choices and reads the file anew after a moment; what is typed is not cut into one request per key. */

@@ -44,9 +44,10 @@ export async function confirmUpload(deps: Deps, input: ConfirmInput): Promise<Co
 }
 
 async function makePlan(deps: Deps, { programmeId, draft }: ConfirmInput, staged: StagedRow): Promise<Plan> {
-  const kind = kindOf(deps, draft)
+  const bytes = await stagedBytes(deps, staged)
+  const kind = kindOf(deps, draft, bytes)
   const targets = await uploadTargets(deps.db, programmeId)
-  const understood = await readUpload(deps, await stagedBytes(deps, staged), { programmeId, kind, draft, targets })
+  const understood = await readUpload(deps, bytes, { programmeId, kind, draft, targets })
   if (understood.canStore) return { kind, understood, targets }
   const blocking = understood.problems.filter(problem => problem.severity === 'blocks')
   const [first] = blocking

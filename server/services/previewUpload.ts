@@ -16,9 +16,10 @@ export interface PreviewInput { actor: Actor, programmeId: string, id: string, d
 export async function previewUpload(deps: Deps, { actor, programmeId, id, draft }: PreviewInput): Promise<PreviewDto> {
   const staged = await ownStaged(deps, { programmeId, personId: actor.personId, id })
   refuseUnlessStaged(staged, deps.clock.now())
-  const kind = kindOf(deps, draft)
+  const bytes = await stagedBytes(deps, staged)
+  const kind = kindOf(deps, draft, bytes)
   const targets = await uploadTargets(deps.db, programmeId)
-  const understood = await readUpload(deps, await stagedBytes(deps, staged), { programmeId, kind, draft, targets })
+  const understood = await readUpload(deps, bytes, { programmeId, kind, draft, targets })
   const text = JSON.stringify(draft)
   if (text !== staged.draft && !await saveDraft(deps.db, id, text)) refuseUnlessStaged(await ownStaged(deps, { programmeId, personId: actor.personId, id }), deps.clock.now())
   return { ...previewDto(understood, kind), upload: await stagedDto(deps, { ...staged, draft: text }), targets: byAgent(targets) }

@@ -1,5 +1,6 @@
 import { AppError } from '../../shared/errors'
 import type { UploadDraft } from '../../shared/measurements/draft'
+import { guessKind } from '../../shared/measurements/guessKind'
 import { MEASUREMENTS } from '../../shared/measurements/index'
 import { asks } from '../../shared/measurements/tabular/problem'
 import { readTable } from '../../shared/measurements/tabular/readTable'
@@ -32,9 +33,10 @@ export function refuseUnlessStaged(staged: StagedRow, now: Date): void {
   if (staged.state !== 'staged') throw new AppError('conflict', `This upload was ${staged.state} already.`, { data: { state: staged.state } })
 }
 
-/** The kind that a draft names; the first one where it names none. @throws AppError('invalidInput') */
-export function kindOf(deps: Pick<Deps, 'kinds'>, draft: UploadDraft): MeasurementKind {
-  const kind = draft.kind ? deps.kinds[draft.kind] : deps.kinds[DEFAULT_KIND] ?? Object.values(deps.kinds)[0]
+/** The kind that a draft names; where it names none, the one whose words the file speaks. @throws AppError('invalidInput') */
+export function kindOf(deps: Pick<Deps, 'kinds'>, draft: UploadDraft, bytes: Uint8Array): MeasurementKind {
+  const guessed = draft.kind || isArchive(bytes) ? null : guessKind(bytes, Object.values(deps.kinds))
+  const kind = draft.kind ? deps.kinds[draft.kind] : guessed ?? deps.kinds[DEFAULT_KIND] ?? Object.values(deps.kinds)[0]
   if (!kind) throw new AppError('invalidInput', `No measurement is called ${draft.kind ?? DEFAULT_KIND}.`, { field: 'kind', accepted: Object.keys(deps.kinds).join(', ') })
   return kind
 }

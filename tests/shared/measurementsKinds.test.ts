@@ -1,5 +1,6 @@
 import { describe, expect, it } from 'vitest'
-import { measurement } from '#shared/measurements'
+import { measurement, MEASUREMENTS } from '#shared/measurements'
+import { guessKind } from '#shared/measurements/guessKind'
 import type { AnalysisInput, AnalysisOutcome } from '#shared/measurements/types'
 import { understandTable } from '#shared/measurements/tabular/understand'
 import { demoFileText } from '../../db/seeds/demo/forward'
@@ -110,5 +111,20 @@ describe('the reference tube', () => {
     expect(outcome.series.points.map(point => point.tubeNo)).not.toContain(reference.tubeNo)
     const gone = analysed({ ...input, tubes: input.tubes.filter(tube => tube !== reference) })
     expect(gone.series.headline).toEqual(outcome.series.headline)
+  })
+})
+
+describe('of which kind a file is', () => {
+  const kinds = Object.values(MEASUREMENTS)
+  const guessed = (text: string): string | undefined => guessKind(new TextEncoder().encode(text), kinds)?.kind
+  it('is read off its words, for every file of the demonstration', () => {
+    for (const file of DEMO_FILES) expect([file.fileName, guessed(demoFileText(file))]).toEqual([file.fileName, file.kind])
+  })
+  it('and for every template', () => {
+    for (const kind of kinds) for (const { fileName, text } of kind.templates) expect([fileName, guessed(text)]).toEqual([fileName, kind.kind])
+  })
+  it('a file that says nothing is taken for the first of all, bytes that are no text for none', () => {
+    expect(guessed('a,b\n1,2\n2,3\n')).toBe(kinds[0]!.kind)
+    expect(guessKind(Uint8Array.of(0x89, 0x50, 0x4E, 0x47, 0, 0, 0, 0), kinds)).toBeNull()
   })
 })
