@@ -1,13 +1,14 @@
 /**
  * Speed, compared in one run as ratios: answers are compared before speed is. Nothing is asserted here; the goals stand beside the numbers.
  * npm run bench            all but what needs a browser
- * npm run bench -- small series equilibria titration threads click
+ * npm run bench -- small series equilibria titration lorentzian threads click
  */
 const PARTS: Readonly<Record<string, () => Promise<{ run: () => void | Promise<void> }>>> = {
   small: () => import('./small'),
   series: () => import('./series'),
   equilibria: () => import('./equilibria'),
   titration: () => import('./titration'),
+  lorentzian: () => import('./lorentzian'),
   threads: () => import('./threads'),
   click: () => import('./click'),
 }
