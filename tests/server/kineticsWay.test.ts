@@ -66,7 +66,7 @@ describe('the way of a time course [issue: stability]', () => {
     expect(fit.evidence.map(item => [item.quantity, item.value.kind])).toEqual([['k1_per_M_s', '='], ['k0_per_s', '<']])
     expect(fit.series!.parameters.map(one => one.evidenceId)).toEqual(fit.evidence.map(item => item.id))
     expect(fit.tubes.map(tube => tube.small.title)).toEqual(flasks.map(one => one.name))
-    expect(fit.seriesFigure).toMatchObject({ x: { label: '[H^+]' } })
+    expect(fit.seriesFigure).toMatchObject({ x: { label: '[H^{+}]' } })
     expect(await repeatFit(deps, { actor: programme.people.physicist, programmeId: programme.id, seriesId, versionNo: 1 })).toMatchObject({ same: true, differenceCount: 0 })
     const series = SeriesDto.parse(await showSeries(deps, { programmeId: programme.id, scope: 'programme', seriesId }))
     expect(series.words.title).toBe('Rate law')

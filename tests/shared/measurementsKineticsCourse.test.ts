@@ -53,7 +53,7 @@ describe('time courses from a table [textbook first-order kinetics; acid as −l
     const outcome = done(kineticsCourse, input)
     expect(outcome.flags.map(flag => flag.id)).toContain('boundOnly')
     expect(outcome.series.statistics.find(one => one.label.startsWith('Half-life at pH 7.4'))!.text).toMatch(/^at least .* decades/)
-    expect(kineticsCourse.seriesFigure(outcome)).toMatchObject({ x: { label: '[H^+]', unit: 'M' }, y: { unit: 's^-1' } })
+    expect(kineticsCourse.seriesFigure(outcome)).toMatchObject({ x: { label: '[H^{+}]', unit: 'M' }, y: { unit: 's^-1' } })
     expect(kineticsCourse.tubeFigure(outcome.tubes[0]!).x).toMatchObject({ label: 'Time', unit: 'd' })
   })
 

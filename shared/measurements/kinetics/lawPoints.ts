@@ -28,7 +28,7 @@ function onlyAxis({ rates, main, activation }: Input): Axis | null {
   const metals = (['Zn', 'Cu', 'Ca'] as const).filter(metal => isMany(rates.map(rate => rate.point.conditions.competitors_M[metal] ?? 0)))
   const acid = isMany(rates.map(rate => rate.point.conditions.pH))
   if (activation !== null || metals.length + (acid ? 1 : 0) !== 1) return null
-  if (acid) return { label: '[H^+]', unit: 'M', of: rate => hydrogen_M(rate.point.conditions.pH), at: x => ({ ...first, pH: -Math.log10(x) }) }
+  if (acid) return { label: '[H^{+}]', unit: 'M', of: rate => hydrogen_M(rate.point.conditions.pH), at: x => ({ ...first, pH: -Math.log10(x) }) }
   const metal = metals[0] as CompetitorMetal
   return { label: `[${metal}]`, unit: 'M', of: rate => rate.point.conditions.competitors_M[metal] ?? 0, at: x => ({ ...first, competitors_M: { ...first.competitors_M, [metal]: x } }) }
 }

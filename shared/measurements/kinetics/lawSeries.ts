@@ -116,7 +116,7 @@ function statisticsOf(fit: RateFit, main: readonly SeriesRate[], { law, activati
     { label: STATISTIC.temperature, value: Number(fit.temperature_K.toPrecision(12)), text: `${(fit.temperature_K - 273.15).toFixed(1)} °C` },
     { label: STATISTIC.lowPH, value: fit.pHMin, text: shown(fit.pHMin) }, { label: STATISTIC.highPH, value: fit.pHMax, text: shown(fit.pHMax) },
     ...(activation ? [{ label: 'Activation entropy', value: activation.second, text: `${shown(activation.second)} ± ${shown(activation.secondSe, 2)} J/(mol K), for the rate over that of the law` }] : []),
-    ...(half && Number.isFinite(half.value) ? [{ label: 'Half-life at pH 7.4 by this law, without metals', value: half.value, text: `${words[half.kind]} ${formatDuration(half.value, 2)}, ${at.ok && at.decadesExtrapolated ? `${at.decadesExtrapolated.toFixed(1)} decades of [H^+] extrapolated` : 'within the measured pH'}` }] : []),
+    ...(half && Number.isFinite(half.value) ? [{ label: 'Half-life at pH 7.4 by this law, without metals', value: half.value, text: `${words[half.kind]} ${formatDuration(half.value, 2)}, ${at.ok && at.decadesExtrapolated ? `${at.decadesExtrapolated.toFixed(1)} decades of [H^{+}] extrapolated` : 'within the measured pH'}` }] : []),
   ]
 }
 

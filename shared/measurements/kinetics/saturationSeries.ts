@@ -45,7 +45,7 @@ function done({ rates, counting, fit, metal, conc_M }: Parts): LawDone {
       headline, parameters: [headline, of(bindingName, fit.binding_per_M), spontaneous], correlation: null, band: [],
       points: rates.map(({ tubeNo, label, excluded, point }, i) => ({ tubeNo, label, excluded, x: xs[i]!, y: point.rate_per_s, ySe: point.se_per_s, fitted: at(xs[i]!), studentised: null, cook: null, leaveOneOut: null })),
       line: Array.from({ length: 61 }, (_, i) => high * i / 60).map(x => ({ x, y: at(x) })),
-      axes: { x: { label: metal === null ? '[H^+]' : `[${metal}]`, unit: 'M', scale: 'linear' }, y: { label: 'k_{obs}', unit: 's^-1', scale: 'linear' } },
+      axes: { x: { label: metal === null ? '[H^{+}]' : `[${metal}]`, unit: 'M', scale: 'linear' }, y: { label: 'k_{obs}', unit: 's^-1', scale: 'linear' } },
       statistics: [
         { label: 'Law', value: null, text: metal === null ? 'k_{obs} = (k_0 + k_1K_H[H])/(1 + K_H[H])' : `k_{obs} = (k_0 + k_3K_M[${metal}])/(1 + K_M[${metal}])` },
         { label: 'Rates in the law', value: counting.length, text: `${counting.length}, ${fit.dof} degrees of freedom` },
