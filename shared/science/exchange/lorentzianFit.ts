@@ -67,7 +67,7 @@ export function fitLorentzians(spectrum: PooledSpectrum, pools: readonly PoolSta
   const edges = (side: 0 | 1) => Float64Array.from([...(hasBaseline ? [BASELINE_RANGE[side]] : []), ...pools.flatMap(one => [one.depthRange[side], one.widthRange_ppm[side], one.offsetRange_ppm[side]])])
   const problem = lorentzianProblem(data, hasBaseline, { lower: edges(0), upper: edges(1) })
   const reduced = solveProjected(data, pools, hasBaseline)
-  const solution = wholeOf(problem, reduced, hasBaseline) ?? solveWhole(problem, [reduced.start, reduced.first], hasBaseline)
+  const solution = wholeOf(problem, reduced, hasBaseline) ?? solveWhole(problem, [reduced.start, reduced.first()], hasBaseline)
   if (!solution.converged) return refuseExchange('noMinimum', `The ${pools.length} pools did not settle (${solution.stop}).`, 'Fewer pools, or narrower bounds.')
   return describeLorentzian(spectrum, pools, { solution, hasBaseline })
 }
@@ -89,7 +89,7 @@ interface Reduced {
   readonly solution: Solution
   /** All parameters of the whole problem where it ended, and those at the widths and places it began with. */
   readonly start: Float64Array
-  readonly first: Float64Array
+  readonly first: () => Float64Array
 }
 
 /** Widths and places from the projected problem, with the depths and the baseline that belong to them. */
@@ -103,7 +103,7 @@ function solveProjected(data: LorentzianData, pools: readonly PoolStart[], hasBa
     const linear = projected.linearAt(nonlinear)
     return Float64Array.from([...(hasBaseline ? [linear[0]!] : []), ...pools.flatMap((_, c) => [linear[offset + c]!, nonlinear[2 * c]!, nonlinear[2 * c + 1]!])])
   }
-  return { solution, start: wholeAt(solution.parameters), first: wholeAt(Float64Array.from(first)) }
+  return { solution, start: wholeAt(solution.parameters), first: () => wholeAt(Float64Array.from(first)) }
 }
 
 /**
