@@ -49,7 +49,7 @@ describe('the way of a file [issue: way 2 and 3]', () => {
     expect(fit.tubes.every(tube => tube.small.curve.length > 20 && tube.headline?.se !== null)).toBe(true)
     const large = { programmeId: programme.id, seriesId, versionNo: 1, tubeNo: 2 }
     const figure = FigureSpec.parse(await showTubeFigure(deps, { ...large, scope: 'programme' }))
-    expect(figure.layers.map(layer => [layer.type, layer.points.length])).toEqual([['line', fit.tubes[1]!.small.curve.length], ['points', fit.tubes[1]!.points.length]])
+    expect(figure.layers.map(layer => [layer.type, 'points' in layer ? layer.points.length : 0])).toEqual([['line', fit.tubes[1]!.small.curve.length], ['points', fit.tubes[1]!.points.length]])
     await expect(showTubeFigure(deps, { ...large, scope: 'signed' })).rejects.toMatchObject({ code: 'notFound' })
     await expect(showTubeFigure(deps, { ...large, scope: 'programme', tubeNo: 6 })).rejects.toMatchObject({ code: 'notFound' })
     expect(await repeatFit(deps, { actor: physicist, programmeId: programme.id, seriesId, versionNo: 1 })).toMatchObject({ same: true })

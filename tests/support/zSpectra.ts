@@ -49,8 +49,8 @@ function exponential(a: readonly Float64Array[], t: number): Float64Array[] {
   const norm = Math.max(...a.map(row => row.reduce((sum, value) => sum + Math.abs(value), 0))) * t
   const halvings = Math.max(0, Math.ceil(Math.log2(norm / 0.25)))
   const scaled = a.map(row => row.map(value => (value * t) / 2 ** halvings))
-  let term = a.map((_, i) => Float64Array.from({ length: size }, (__, j) => i === j ? 1 : 0))
-  let sum = term.map(row => row.slice())
+  let term: Float64Array[] = a.map((_, i) => Float64Array.from({ length: size }, (__, j) => i === j ? 1 : 0))
+  let sum: Float64Array[] = term.map(row => row.slice())
   for (let k = 1; k <= 14; k++) {
     term = product(term, scaled).map(row => row.map(value => value / k))
     sum = sum.map((row, i) => row.map((value, j) => value + term[i]![j]!))
