@@ -49,6 +49,7 @@ export const PERMISSIONS = {
   'check.return': { ...none, physicist: 'programme' },
   'check.withdraw': { ...none, physicist: 'programme' },
   'record.see': everyone,
+  'ligand.see': everyone,
   'record.enter': { ...none, chemist: 'programme' },
   'library.copy': { ...none, chemist: 'programme' },
   'number.trace': everyone,

@@ -34,6 +34,15 @@ export function proposeFromSmiles(smiles: string): StructureDto {
   }
 }
 
+/**
+ * Atoms in the ring that holds the donors of a ligand; null where its structure has no such ring.
+ * @throws AppError('invalidInput') as above
+ */
+export function ringAtomsOf(smiles: string): number | null {
+  const graph = graphOf(readSmiles(smiles))
+  return findDonorRing(graph, findDonors(graph))?.length ?? null
+}
+
 function readSmiles(smiles: string): Molecule {
   const text = smiles.trim()
   const molecule = parse(text)

@@ -20,7 +20,7 @@ export interface FigureLayout {
   isNarrow: boolean
 }
 export interface EndLabel { text: string, token: FigureToken, x: number, y: number }
-export interface KeyEntry { name: string, token: FigureToken, shape: 'points' | 'open' | 'line' | 'band' | 'cross', dash: FigureDash }
+export interface KeyEntry { name: string, token: FigureToken, shape: 'points' | 'open' | 'square' | 'line' | 'band' | 'cross', dash: FigureDash }
 
 const TICK_GLYPH_px = 6.1
 const LABEL_GLYPH_px = 6.6
@@ -137,7 +137,7 @@ function keyEntries(layers: readonly FigureLayer[], labelled: readonly string[])
     if (layer.type === 'line') return layer.labelled === false ? [] : [{ name: layer.name, token: layer.token, shape: 'line', dash: dashOf(layer.token, layer.dash) }]
     if (layer.type === 'cross') return [{ name: layer.name, token: layer.token ?? 'ink-3', shape: 'cross', dash: 'solid' }]
     if (layer.type === 'band') return [{ name: layer.name, token: layer.token, shape: 'band', dash: 'solid' }]
-    return [{ name: layer.name, token: layer.token, shape: layer.type === 'points' && layer.open ? 'open' : 'points', dash: 'solid' }]
+    return [{ name: layer.name, token: layer.token, shape: layer.type !== 'points' ? 'points' : layer.square ? 'square' : layer.open ? 'open' : 'points', dash: 'solid' }]
   })
   return entries.length > 1 ? entries.filter((entry, at) => entries.findIndex(one => one.name === entry.name) === at) : []
 }

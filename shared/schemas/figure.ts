@@ -30,6 +30,8 @@ const PointsLayer = z.object({
   type: z.literal('points'), name, token,
   /** The second condition of a figure is drawn open. */
   open: z.boolean().optional(),
+  /** Numbers of another origin, such as literature, are drawn as squares. */
+  square: z.boolean().optional(),
   /** Joined by a thin line: "points as read, joined; not a fit". */
   joined: z.boolean().optional(),
   points: z.array(point),

@@ -20,7 +20,7 @@ describe('the permission table', () => {
   })
 
   it('gives a partner signed rows, wherever rows can be unsigned', () => {
-    for (const permission of ['agent.see', 'series.see', 'record.see', 'number.trace', 'map.see'] as const) expect([permission, scopeOf(actor(['partner']), permission, 'mine')]).toEqual([permission, 'signed'])
+    for (const permission of ['agent.see', 'series.see', 'record.see', 'ligand.see', 'number.trace', 'map.see'] as const) expect([permission, scopeOf(actor(['partner']), permission, 'mine')]).toEqual([permission, 'signed'])
   })
 
   it('gives the administrator no measurement [product: people]', () => {

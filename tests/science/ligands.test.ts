@@ -4,7 +4,8 @@ import { compareLigands, type Candidate, type Told } from '#shared/science/ligan
 import { cavity_A, denticity, donorClasses, ligandCharge, type LigandFacts } from '#shared/science/ligands/donors'
 import { estimateLogK } from '#shared/science/ligands/estimate'
 import { hintsFor } from '#shared/science/ligands/hints'
-import { ionFacts, IONS, radius_A, type Ion } from '#shared/science/ligands/radii'
+import { coordinationsOf, ionFacts, ionName, ionOf, IONS, ionSymbol, radius_A, type Ion } from '#shared/science/ligands/radii'
+import { comparableTogether } from '#shared/science/ligands/together'
 import { basicity } from '#shared/science/equilibria/protonation'
 import { fitLine, lineBand } from '#shared/science/least-squares/line'
 
@@ -35,7 +36,25 @@ describe('ions', () => {
   })
 })
 
+describe('names of ions', () => {
+  it('are one symbol each, there and back, with the charge in Roman numerals', () => {
+    expect(new Set(IONS.map(ionSymbol)).size).toBe(IONS.length)
+    for (const ion of IONS) expect(ionOf(ionSymbol(ion))).toBe(ion)
+    expect([ionName('Gd3'), ionName('Zn2'), ionOf('Xx')]).toEqual(['Gd(III)', 'Zn(II)', null])
+    expect([coordinationsOf('Gd3'), coordinationsOf('Ga3')]).toEqual([[6, 8, 9], [6]])
+  })
+})
+
 describe('hints', () => {
+  it('take charge and denticity as registered where groups beside the donors count, and own up to a ring or donors not known', () => {
+    const registered: LigandFacts = { ...ring, charge: -5, denticity: 9, ringAtoms: 'unknown' }
+    expect([ligandCharge(registered), denticity(registered)]).toEqual([-5, 9])
+    expect(hint('Gd3', registered, 'charge').reason).toContain('charge -2')
+    expect(hint('Gd3', registered, 'hardness').reason).toContain('1 of a class that is not known')
+    expect(hint('Gd3', registered, 'size')).toMatchObject({ leaning: 'open', reason: expect.stringContaining('size of the ring is not known') })
+    expect(hint('Gd3', registered, 'shape').reason).toMatch(/^A ring lets go slowly/)
+  })
+
   it('count donors, charge and classes from the groups', () => {
     expect([denticity(ring), ligandCharge(ring), denticity(chain), ligandCharge(chain), ligandCharge(ringAmide)]).toEqual([8, -4, 8, -5, 0])
     expect(donorClasses({ name: 'x', donors: { thiolate: 2, pyridine: 1 }, ringAtoms: null })).toEqual({ hard: 0, borderline: 1, soft: 2 })
@@ -124,5 +143,28 @@ describe('log K from ΣpKa', () => {
     expect(estimateLogK(known.slice(0, 3), 20)).toMatchObject({ ok: false, reason: 'tooFewPoints' })
     expect(estimateLogK(known.map(one => ({ ...one, sumPKa: 20 })), 20)).toMatchObject({ ok: false, reason: 'equalX' })
     expect(estimateLogK(known, NaN)).toMatchObject({ ok: false, reason: 'notFinite' })
+  })
+})
+
+describe('constants that may stand together', () => {
+  const at = (label: string, ionicStrength_M: number | null, cation: 'Na' | 'K' | 'tetraalkylammonium' | null = 'K') => ({ label, ionicStrength_M, temperature_K: 298.15, cation, phScale: 'concentration' as const })
+
+  it('are the largest set that compares, and each one left apart has its reason', () => {
+    const answer = comparableTogether([at('a', 1), at('b', 0.1), at('c', 0.1), at('d', 0.11), at('e', 0.5)])
+    expect(answer.inside).toEqual([1, 2, 3])
+    expect(answer.outside).toEqual([{ at: 0, why: expect.stringMatching(/a for 1 M/) }, { at: 4, why: expect.stringMatching(/e for 0\.5 M/) }])
+    expect(answer.warnings).toEqual([])
+  })
+
+  it('hold every pair: a chain of small steps does not stretch the set', () => {
+    const answer = comparableTogether([at('a', 0.1), at('b', 0.115), at('c', 0.13)])
+    expect(answer.inside).toHaveLength(2)
+    expect(answer.outside).toHaveLength(1)
+  })
+
+  it('take a constant without conditions along, with a warning; sodium and tetraalkylammonium stay apart', () => {
+    expect(comparableTogether([at('a', 0.1), at('b', null)])).toMatchObject({ inside: [0, 1], warnings: [expect.stringContaining('b not stated')], outside: [] })
+    expect(comparableTogether([at('a', 0.1, 'Na'), at('b', 0.1, 'tetraalkylammonium'), at('c', 0.1, 'tetraalkylammonium')]).inside).toEqual([1, 2])
+    expect(comparableTogether([])).toEqual({ inside: [], warnings: [], outside: [] })
   })
 })

@@ -62,6 +62,9 @@ describe('where things stand in a figure', () => {
     const narrow = layoutFigure(figure, 340, 280)
     expect(narrow.endLabels).toEqual([])
     expect(narrow.key.map(entry => entry.name)).toEqual(['L1', 'L2', 'tubes'])
+    const points = (name: string, how: object) => ({ type: 'points' as const, name, token: 's1' as const, points: [{ x: 1, y: 3 }], ...how })
+    const three = layoutFigure({ ...figure, layers: [points('filled', {}), points('open', { open: true }), points('of other origin', { square: true })] }, 300, 280)
+    expect(three.key.map(entry => entry.shape)).toEqual(['points', 'open', 'square'])
   })
   it('runs offsets from right to left when asked', () => {
     const { x } = layoutFigure({ ...figure, x: { ...figure.x, reversed: true } }, 600, 280)

@@ -25,7 +25,11 @@ export interface LigandFacts {
   /** Number of each donor that can bind one metal. */
   readonly donors: Readonly<Partial<Record<Donor, number>>>
   /** Atoms in the ring that holds the metal; null for an open chain. */
-  readonly ringAtoms: number | null
+  readonly ringAtoms: number | 'unknown' | null
+  /** Charge of the fully deprotonated ligand where groups beside the donors carry some of it; left out: that of the donors. */
+  readonly charge?: number
+  /** Donor atoms that reach the metal at once where that is not what the groups add up to. */
+  readonly denticity?: number
 }
 
 const counted = (ligand: LigandFacts): (readonly [Donor, number])[] => (Object.keys(DONORS) as Donor[]).flatMap((donor) => {
@@ -35,12 +39,12 @@ const counted = (ligand: LigandFacts): (readonly [Donor, number])[] => (Object.k
 
 /** Donor atoms that can reach the metal at once. */
 export function denticity(ligand: LigandFacts): number {
-  return counted(ligand).reduce((sum, [, count]) => sum + count, 0)
+  return ligand.denticity ?? counted(ligand).reduce((sum, [, count]) => sum + count, 0)
 }
 
 /** Charge of the fully deprotonated ligand. */
 export function ligandCharge(ligand: LigandFacts): number {
-  return counted(ligand).reduce((sum, [donor, count]) => sum + count * DONORS[donor].charge, 0)
+  return ligand.charge ?? counted(ligand).reduce((sum, [donor, count]) => sum + count * DONORS[donor].charge, 0)
 }
 
 /** How many donors are of each class. */
@@ -53,7 +57,7 @@ export function donorClasses(ligand: LigandFacts): Readonly<Record<'hard' | 'bor
 /** Mean ion radius, in ångström, that fits the cavity of a ring of nitrogen atoms: from memory, ±0.15, a hint at most. */
 const CAVITY_A: Readonly<Record<number, readonly [number, number]>> = { 9: [0.6, 0.8], 12: [0.9, 1.15], 14: [0.6, 0.75], 15: [0.9, 1.1], 18: [1.1, 1.4] }
 
-/** Smallest and largest radius that a ring is taken to suit; null for an open chain or a ring that is not listed. */
-export function cavity_A(ringAtoms: number | null): readonly [number, number] | null {
-  return ringAtoms === null ? null : CAVITY_A[ringAtoms] ?? null
+/** Smallest and largest radius that a ring is taken to suit; null for an open chain, and for a ring that is not listed or not known. */
+export function cavity_A(ringAtoms: LigandFacts['ringAtoms']): readonly [number, number] | null {
+  return typeof ringAtoms === 'number' ? CAVITY_A[ringAtoms] ?? null : null
 }

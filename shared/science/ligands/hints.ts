@@ -1,6 +1,6 @@
 /** Hints beside a metal and a ligand, each with its reason in words; never a verdict, never a number to rank by. */
 import { cavity_A, denticity, donorClasses, ligandCharge, type LigandFacts } from './donors'
-import { ionFacts, radius_A, type Ion } from './radii'
+import { ionFacts, ionName, radius_A, type Ion } from './radii'
 
 export interface Hint {
   readonly about: 'size' | 'hardness' | 'denticity' | 'charge' | 'shape'
@@ -14,8 +14,6 @@ export interface Need {
   readonly waters: number
 }
 
-const named = (ion: Ion): string => `${ion.slice(0, -1)}(${'I'.repeat(ionFacts(ion).charge)})`
-
 /** Picometres, to the tenth that the tables give. */
 const inPm = (length_A: number): string => String(Math.round(1000 * length_A) / 10)
 
@@ -25,10 +23,11 @@ export function hintsFor(ion: Ion, ligand: LigandFacts, need: Need): readonly Hi
 
 function sizeHint(ion: Ion, ligand: LigandFacts, need: Need): Hint {
   const radius = radius_A(ion, need.coordination)
-  if (radius === null) return { about: 'size', leaning: 'open', reason: `No radius of ${named(ion)} is tabulated at coordination number ${need.coordination}.` }
-  const size = `${named(ion)} has a radius of ${inPm(radius)} pm at coordination number ${need.coordination} (Shannon)`
+  if (radius === null) return { about: 'size', leaning: 'open', reason: `No radius of ${ionName(ion)} is tabulated at coordination number ${need.coordination}.` }
+  const size = `${ionName(ion)} has a radius of ${inPm(radius)} pm at coordination number ${need.coordination} (Shannon)`
   const cavity = cavity_A(ligand.ringAtoms)
   if (ligand.ringAtoms === null) return { about: 'size', leaning: 'open', reason: `${size}; an open chain folds to any size.` }
+  if (ligand.ringAtoms === 'unknown') return { about: 'size', leaning: 'open', reason: `${size}; the size of the ring is not known.` }
   if (cavity === null) return { about: 'size', leaning: 'open', reason: `${size}; no cavity is listed for a ring of ${ligand.ringAtoms}.` }
   const fits = radius >= cavity[0] && radius <= cavity[1]
   const span = `${inPm(cavity[0])} to ${inPm(cavity[1])} pm (from memory)`
@@ -39,10 +38,11 @@ function sizeHint(ion: Ion, ligand: LigandFacts, need: Need): Hint {
 function hardnessHint(ion: Ion, ligand: LigandFacts): Hint {
   const { hardness } = ionFacts(ion)
   const { hard, borderline, soft } = donorClasses(ligand)
-  const donors = `${hard} hard, ${borderline} borderline and ${soft} soft donors`
+  const unlisted = denticity(ligand) - hard - borderline - soft
+  const donors = `${hard} hard, ${borderline} borderline and ${soft} soft donors${unlisted > 0 ? `, ${unlisted} of a class that is not known` : ''}`
   if (hard + borderline + soft === 0) return { about: 'hardness', leaning: 'open', reason: `No donor of ${ligand.name} is listed.` }
-  if (hardness === 'hard') return { about: 'hardness', leaning: soft > 0 ? 'against' : 'for', reason: `${named(ion)} is hard and ${ligand.name} has ${donors}.` }
-  return { about: 'hardness', leaning: hardness === 'borderline' || soft > 0 ? 'for' : 'against', reason: `${named(ion)} is ${hardness} and ${ligand.name} has ${donors}.` }
+  if (hardness === 'hard') return { about: 'hardness', leaning: soft > 0 ? 'against' : 'for', reason: `${ionName(ion)} is hard and ${ligand.name} has ${donors}.` }
+  return { about: 'hardness', leaning: hardness === 'borderline' || soft > 0 ? 'for' : 'against', reason: `${ionName(ion)} is ${hardness} and ${ligand.name} has ${donors}.` }
 }
 
 function denticityHint(ligand: LigandFacts, { coordination, waters }: Need): Hint {
@@ -66,5 +66,5 @@ function chargeHint(ion: Ion, ligand: LigandFacts): Hint {
 function shapeHint(ligand: LigandFacts): Hint {
   return ligand.ringAtoms === null
     ? { about: 'shape', leaning: 'against', reason: 'An open chain forms its complex fast and lets go fast.' }
-    : { about: 'shape', leaning: 'for', reason: `A ring of ${ligand.ringAtoms} lets go slowly, and forms slowly too: warm it when labelling.` }
+    : { about: 'shape', leaning: 'for', reason: `A ring${ligand.ringAtoms === 'unknown' ? '' : ` of ${ligand.ringAtoms}`} lets go slowly, and forms slowly too: warm it when labelling.` }
 }

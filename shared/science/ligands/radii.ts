@@ -15,6 +15,18 @@ const RADII_A = {
 
 export type Ion = keyof typeof RADII_A
 export const IONS = Object.keys(RADII_A) as Ion[]
+/** Symbol of the element, as the address and records name it. */
+export const ionSymbol = (ion: Ion): string => ion.slice(0, -1)
+
+/** The ion that a symbol stands for; null for an element without one here. */
+export const ionOf = (symbol: string): Ion | null => IONS.find(ion => ionSymbol(ion) === symbol) ?? null
+
+/** Ion as the trade writes it: Gd(III). */
+export const ionName = (ion: Ion): string => `${ionSymbol(ion)}(${'I'.repeat(ionFacts(ion).charge)})`
+
+/** Coordination numbers at which a radius is tabulated, ascending. */
+export const coordinationsOf = (ion: Ion): number[] => Object.keys(RADII_A[ion]).map(Number)
+
 export const RADII_SOURCE = 'Shannon, Acta Cryst. A32, 751 (1976)'
 
 export interface IonFacts {
