@@ -4,6 +4,7 @@
  *
  * The matrices are those of the symmetrised Bloch–McConnell equations (see exchange/poolSystem.ts), kept as the symmetric G = P·F with P = diag(1, −1, 1) per pool:
  * the upper triangle by row. Products of matrices that commute stay in that form, which halves their work.
+ * Each function reads its matrices into constants and writes to another array: twice as fast as turning in place, where the registers do not suffice.
  */
 import { writeFileSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
@@ -62,38 +63,57 @@ const M = 'Float64Array'
 
 function square(l: Layout): string {
   const g = dense(l, 'g')
-  return `/** g ← g^(2^times). */
-export function square(g: ${M}, times: number): void {
-${l.upper().map(([i, j]) => `  let g${l.at(i, j)} = g[${l.at(i, j)}]!`).join('\n')}
-  for (let turn = 0; turn < times; turn++) {
-${l.upper().map(([i, j]) => `    const n${l.at(i, j)} = ${l.product(g, g, i, j)}`).join('\n')}
-${l.upper().map(([i, j]) => `    g${l.at(i, j)} = n${l.at(i, j)}`).join('\n')}
-  }
-${l.upper().map(([i, j]) => `  g[${l.at(i, j)}] = g${l.at(i, j)}`).join('\n')}
+  return `/** out = g²; out is another array than g. */
+export function square(out: ${M}, g: ${M}): void {
+${load(l, 'g').join('\n')}
+${l.upper().map(([i, j]) => `  out[${l.at(i, j)}] = ${l.product(g, g, i, j)}`).join('\n')}
 }
 `
 }
 
 function powers(l: Layout): string {
   const a = sparse(l, 'a')
-  return `/** Second and third power of the matrix of the equations, whose zeros are skipped. */
-export function powers(a: ${M}, second: ${M}, third: ${M}): void {
+  return `/** Second and third power of the matrix of the equations, whose zeros are skipped, and lead = c0·1 + c1·a + c2·a² + c3·a³. */
+export function powers(a: ${M}, second: ${M}, third: ${M}, lead: ${M}, c: readonly [number, number, number, number]): void {
+  const [c0, c1, c2, c3] = c
 ${load(l, 'a', (i, j) => l.isFilled(i, j)).join('\n')}
 ${l.upper().map(([i, j]) => `  const s${l.at(i, j)} = ${l.product(a, a, i, j)}`).join('\n')}
-${l.upper().map(([i, j]) => `  second[${l.at(i, j)}] = s${l.at(i, j)}`).join('\n')}
-${l.upper().map(([i, j]) => `  third[${l.at(i, j)}] = ${l.product(a, dense(l, 's'), i, j)}`).join('\n')}
+${l.upper().map(([i, j]) => `  const t${l.at(i, j)} = ${l.product(a, dense(l, 's'), i, j)}`).join('\n')}
+${l.upper().map(([i, j]) => `  second[${l.at(i, j)}] = s${l.at(i, j)}\n  third[${l.at(i, j)}] = t${l.at(i, j)}`).join('\n')}
+${l.upper().map(([i, j]) => `  lead[${l.at(i, j)}] = c2 * s${l.at(i, j)} + c3 * t${l.at(i, j)}${a(i, j) === null ? '' : ` + c1 * ${a(i, j)}`}${one(l, i, j)}`).join('\n')}
+}
+`
+}
+
+const one = (l: Layout, i: number, j: number): string => i !== j ? '' : l.isNegative(i) ? ' - c0' : ' + c0'
+
+/** Row and column z of water: where the direction of the derivative of Z can differ from zero. */
+const DIRECTION = 2
+
+function powersDerivative(l: Layout): string {
+  const a = sparse(l, 'a')
+  const d = (i: number, j: number): string | null => i === DIRECTION || j === DIRECTION ? `d${l.at(i, j)}` : null
+  return `/** The derivatives of the same in a direction d that is zero but in row and column z of water. */
+export function powersDerivative(a: ${M}, second: ${M}, d: ${M}, dSecond: ${M}, dThird: ${M}, dLead: ${M}, c: readonly [number, number, number, number]): void {
+  const [, c1, c2, c3] = c
+${load(l, 'a', (i, j) => l.isFilled(i, j)).join('\n')}
+${load(l, 'd', (i, j) => d(i, j) !== null).join('\n')}
+${l.upper().filter(([, j]) => j >= DIRECTION).map(([i, j]) => `  const q${l.at(i, j)} = second[${l.at(i, j)}]!`).join('\n')}
+${l.upper().map(([i, j]) => `  const s${l.at(i, j)} = ${l.product(a, d, i, j)} + (${l.product(d, a, i, j)})`).join('\n')}
+${l.upper().map(([i, j]) => `  const t${l.at(i, j)} = ${l.product(a, dense(l, 's'), i, j)} + (${l.product(d, dense(l, 'q'), i, j)})`).join('\n')}
+${l.upper().map(([i, j]) => `  dSecond[${l.at(i, j)}] = s${l.at(i, j)}\n  dThird[${l.at(i, j)}] = t${l.at(i, j)}`).join('\n')}
+${l.upper().map(([i, j]) => `  dLead[${l.at(i, j)}] = c2 * s${l.at(i, j)} + c3 * t${l.at(i, j)}${d(i, j) === null ? '' : ` + c1 * d${l.at(i, j)}`}`).join('\n')}
 }
 `
 }
 
 function fold(l: Layout): string {
-  const one = (i: number, j: number): string => i !== j ? '' : l.isNegative(i) ? ' - c0' : ' + c0'
   return `/** out = a·b + c0·1 + c1·x + c2·y, for matrices that commute; c is [c0, c1, c2]. */
 export function fold(out: ${M}, a: ${M}, b: ${M}, c: readonly [number, number, number], x: ${M}, y: ${M}): void {
   const [c0, c1, c2] = c
 ${load(l, 'a').join('\n')}
 ${load(l, 'b').join('\n')}
-${l.upper().map(([i, j]) => `  out[${l.at(i, j)}] = ${l.product(dense(l, 'a'), dense(l, 'b'), i, j)} + c1 * x[${l.at(i, j)}]! + c2 * y[${l.at(i, j)}]!${one(i, j)}`).join('\n')}
+${l.upper().map(([i, j]) => `  out[${l.at(i, j)}] = ${l.product(dense(l, 'a'), dense(l, 'b'), i, j)} + c1 * x[${l.at(i, j)}]! + c2 * y[${l.at(i, j)}]!${one(l, i, j)}`).join('\n')}
 }
 `
 }
@@ -108,37 +128,28 @@ ${l.upper().map(([i, j]) => `  out[${l.at(i, j)}] = ${l.product(dense(l, 'a'), d
 `
 }
 
-function squareBoth(l: Layout): string {
+function squareDerivative(l: Layout): string {
   const g = dense(l, 'g')
   const d = dense(l, 'd')
-  return `/** g ← g^(2^times) and d ← its derivative in the direction d: d ← g·d + d·g at each squaring. */
-export function squareBoth(g: ${M}, d: ${M}, times: number): void {
-${l.upper().map(([i, j]) => `  let g${l.at(i, j)} = g[${l.at(i, j)}]!\n  let d${l.at(i, j)} = d[${l.at(i, j)}]!`).join('\n')}
-  for (let turn = 0; turn < times; turn++) {
-${l.upper().map(([i, j]) => `    const m${l.at(i, j)} = ${i === j ? `2 * (${l.product(g, d, i, j)})` : `${l.product(g, d, i, j)} + (${l.product(d, g, i, j)})`}`).join('\n')}
-${l.upper().map(([i, j]) => `    d${l.at(i, j)} = m${l.at(i, j)}`).join('\n')}
-${l.upper().map(([i, j]) => `    const n${l.at(i, j)} = ${l.product(g, g, i, j)}`).join('\n')}
-${l.upper().map(([i, j]) => `    g${l.at(i, j)} = n${l.at(i, j)}`).join('\n')}
-  }
-${l.upper().map(([i, j]) => `  g[${l.at(i, j)}] = g${l.at(i, j)}\n  d[${l.at(i, j)}] = d${l.at(i, j)}`).join('\n')}
+  return `/** out = g·d + d·g, the derivative of g² in the direction d; out is another array than both. */
+export function squareDerivative(out: ${M}, g: ${M}, d: ${M}): void {
+${load(l, 'g').join('\n')}
+${load(l, 'd').join('\n')}
+${l.upper().map(([i, j]) => `  out[${l.at(i, j)}] = ${i === j ? `2 * (${l.product(g, d, i, j)})` : `${l.product(g, d, i, j)} + (${l.product(d, g, i, j)})`}`).join('\n')}
 }
 `
 }
 
 function apply(l: Layout): string {
   const all = Array.from({ length: l.n }, (_, i) => i)
-  return `/** out = F^times·v; out and v may be the same. */
-export function apply(out: ${M}, g: ${M}, v: ${M}, times: number): void {
+  return `/** out = F·v; out is another array than v. */
+export function apply(out: ${M}, g: ${M}, v: ${M}): void {
 ${load(l, 'g').join('\n')}
-${all.map(i => `  let v${i} = v[${i}]!`).join('\n')}
-  for (let turn = 0; turn < times; turn++) {
+${all.map(i => `  const v${i} = v[${i}]!`).join('\n')}
 ${all.map((i) => {
   const sum = all.map(j => `g${l.at(i, j)} * v${j}`).join(' + ')
-  return `    const n${i} = ${l.isNegative(i) ? `-(${sum})` : sum}`
+  return `  out[${i}] = ${l.isNegative(i) ? `-(${sum})` : sum}`
 }).join('\n')}
-${all.map(i => `    v${i} = n${i}`).join('\n')}
-  }
-${all.map(i => `  out[${i}] = v${i}`).join('\n')}
 }
 `
 }
@@ -188,6 +199,6 @@ for (const pools of POOLS) {
   const text = `/* eslint-disable max-lines */
 /** Written by scripts/makeExchangeKernels.ts, which says what the arrays mean: change that, not this. ${pools} pools, ${l.n} × ${l.n}, ${l.size} numbers a matrix. */
 
-${[square, powers, fold, foldBoth, squareBoth, apply, steady].map(make => make(l)).join('\n')}`
+${[square, powers, powersDerivative, fold, foldBoth, squareDerivative, apply, steady].map(make => make(l)).join('\n')}`
   writeFileSync(fileURLToPath(new URL(`../shared/science/exchange/kernel${pools}.ts`, import.meta.url)), text)
 }

@@ -7,10 +7,13 @@ export type Kernel = Pick<typeof kernel2, keyof typeof kernel2>
 
 export const MOST_SOLUTES = 3
 
+/** One shape of object for all sizes: a module is slow to read from, thousands of times a spectrum. */
+const kernelFrom = ({ square, powers, powersDerivative, fold, foldBoth, squareDerivative, apply, solveSparse }: Kernel): Kernel => ({ square, powers, powersDerivative, fold, foldBoth, squareDerivative, apply, solveSparse })
+const KERNELS: Readonly<Record<number, Kernel>> = { 2: kernelFrom(kernel2), 3: kernelFrom(kernel3), 4: kernelFrom(kernel4) }
+
 /** @param pools water included */
 export function kernelOf(pools: number): Kernel {
-  if (pools === 2) return kernel2
-  if (pools === 3) return kernel3
-  if (pools === 4) return kernel4
-  throw new Error(`There is no kernel for ${pools} pools.`)
+  const kernel = KERNELS[pools]
+  if (!kernel) throw new Error(`There is no kernel for ${pools} pools.`)
+  return kernel
 }

@@ -1,4 +1,3 @@
-import { packedAt, signOf } from './packed'
 import type { Propagator } from './propagator'
 
 /** 1/i!. */
@@ -11,42 +10,28 @@ const coefficients = (first: number): readonly [number, number, number] => [TAYL
 const C0 = coefficients(0)
 const C3 = coefficients(3)
 const C6 = coefficients(6)
+const LEADING: readonly [number, number, number, number] = [TAYLOR[9]!, TAYLOR[10]!, TAYLOR[11]!, TAYLOR[12]!]
 
 /** Taylor polynomial of degree 12 of the matrix entered times `step_s`, in five products, two of them with the zeros skipped. */
-export function polynomial(state: Propagator, step_s: number): Float64Array {
-  const { kernel, matrix, scratch } = state
+export function polynomial({ kernel, matrix, scratch }: Propagator, step_s: number): Float64Array {
   const [a, second, third, p, q] = scratch as [Float64Array, Float64Array, Float64Array, Float64Array, Float64Array]
   for (let i = 0; i < a.length; i++) a[i] = matrix[i]! * step_s
-  kernel.powers(a, second, third)
-  leading(p, a, second, third)
-  for (let i = 0; i < state.n; i++) p[packedAt(state.n, i, i)]! += signOf(i) * TAYLOR[9]!
+  kernel.powers(a, second, third, p, LEADING)
   kernel.fold(q, third, p, C6, a, second)
   kernel.fold(p, third, q, C3, a, second)
   kernel.fold(q, third, p, C0, a, second)
   return q
 }
 
-/** c10·a + c11·a² + c12·a³. */
-function leading(out: Float64Array, a: Float64Array, second: Float64Array, third: Float64Array): void {
-  for (let i = 0; i < out.length; i++) out[i] = TAYLOR[12]! * third[i]! + TAYLOR[11]! * second[i]! + TAYLOR[10]! * a[i]!
-}
-
-const NOTHING = [0, 0, 0] as const
-
 /**
  * The same with its derivative in a direction, both symmetric in G form.
- * @param direction times step_s already
+ * @param direction times step_s already; zero but in row and column z of water
  */
-export function polynomialAndDerivative(state: Propagator, step_s: number, direction: Float64Array): { g: Float64Array, d: Float64Array } {
-  const { kernel, matrix, n, scratch } = state
+export function polynomialAndDerivative({ kernel, matrix, scratch }: Propagator, step_s: number, direction: Float64Array): { g: Float64Array, d: Float64Array } {
   const [a, second, third, p, q, dSecond, dThird, dp, dq] = scratch as [Float64Array, Float64Array, Float64Array, Float64Array, Float64Array, Float64Array, Float64Array, Float64Array, Float64Array]
   for (let i = 0; i < a.length; i++) a[i] = matrix[i]! * step_s
-  kernel.powers(a, second, third)
-  kernel.foldBoth(dSecond, a, direction, a, direction, NOTHING, a, a)
-  kernel.foldBoth(dThird, a, direction, second, dSecond, NOTHING, a, a)
-  leading(p, a, second, third)
-  for (let i = 0; i < n; i++) p[packedAt(n, i, i)]! += signOf(i) * TAYLOR[9]!
-  leading(dp, direction, dSecond, dThird)
+  kernel.powers(a, second, third, p, LEADING)
+  kernel.powersDerivative(a, second, direction, dSecond, dThird, dp, LEADING)
   kernel.foldBoth(dq, third, dThird, p, dp, C6, direction, dSecond)
   kernel.fold(q, third, p, C6, a, second)
   kernel.foldBoth(dp, third, dThird, q, dq, C3, direction, dSecond)

@@ -16,7 +16,7 @@ import { omega1_rad_per_s } from './transferForms'
 
 const LARGEST_NORM = 0.29
 /** Of the squarings so many are made on the vector, as products of the matrix with it: cheaper for one vector. */
-const SQUARINGS_OF_VECTOR = 3
+const SQUARINGS_OF_VECTOR = 2
 const X = 0
 const Y = 1
 const Z = 2
@@ -39,6 +39,9 @@ export interface Propagator {
   readonly source: Float64Array
   readonly steady: Float64Array
   readonly start: Float64Array
+  readonly other: Float64Array
+  /** Place of entry (i, j) in the packed triangle, at i·n + j. */
+  readonly at: Int32Array
   readonly scratch: readonly Float64Array[]
 }
 
@@ -47,7 +50,8 @@ export function createPropagator(pools: number): Propagator {
   const size = (n * (n + 1)) / 2
   return {
     pools, n, kernel: kernelOf(pools), matrix: new Float64Array(size), roots: new Float64Array(pools), out_per_s: new Float64Array(pools), places: new Float64Array(pools),
-    norms: new Float64Array(pools), source: new Float64Array(n), steady: new Float64Array(n), start: new Float64Array(n),
+    norms: new Float64Array(pools), source: new Float64Array(n), steady: new Float64Array(n), start: new Float64Array(n), other: new Float64Array(n),
+    at: Int32Array.from({ length: n * n }, (_, k) => packedAt(n, Math.min(Math.floor(k / n), k % n), Math.max(Math.floor(k / n), k % n))),
     scratch: Array.from({ length: 12 }, () => new Float64Array(size)),
   }
 }
@@ -87,11 +91,11 @@ export function setSystem(state: Propagator, system: PoolSystem, b1_uT: number):
 
 /** Enters the offset, in rad s⁻¹. @returns a bound of every row sum of |A| */
 export function setOffset(state: Propagator, offset_rad_per_s: number): number {
-  const { n, matrix, places, norms } = state
+  const { n, matrix, places, norms, at } = state
   let largest = 0
   for (let p = 0; p < state.pools; p++) {
     const difference = places[p]! - offset_rad_per_s
-    matrix[packedAt(n, 3 * p + X, 3 * p + Y)] = -difference
+    matrix[at[3 * p * (n + 1) + 1]!] = -difference
     const norm = norms[p]! + Math.abs(difference)
     if (norm > largest) largest = norm
   }
@@ -116,6 +120,17 @@ export function scalingOf(norm: number, duration_s: number): { squarings: number
   return { squarings, step_s }
 }
 
+/** g^(2^times), in one of two work arrays. */
+export function squareTimes({ kernel, scratch }: Propagator, g: Float64Array, times: number): Float64Array {
+  let from = g
+  for (let turn = 0; turn < times; turn++) {
+    const to = scratch[turn % 2]!
+    kernel.square(to, from)
+    from = to
+  }
+  return from
+}
+
 /** M ← M_ss + e^{At}·(M − M_ss) for the matrix entered, M scaled by 1/√x per pool. */
 export function propagate(state: Propagator, m: Float64Array, norm: number, duration_s: number): void {
   const { kernel, steady, start, n } = state
@@ -125,10 +140,16 @@ export function propagate(state: Propagator, m: Float64Array, norm: number, dura
     return
   }
   const { squarings, step_s } = scalingOf(norm, duration_s)
-  const g = polynomial(state, step_s)
   const ofVector = Math.min(SQUARINGS_OF_VECTOR, squarings)
-  kernel.square(g, squarings - ofVector)
-  for (let i = 0; i < n; i++) start[i] = m[i]! - steady[i]!
-  kernel.apply(start, g, start, 1 << ofVector)
-  for (let i = 0; i < n; i++) m[i] = steady[i]! + start[i]!
+  const g = squareTimes(state, polynomial(state, step_s), squarings - ofVector)
+  let v = start
+  let other = state.other
+  for (let i = 0; i < n; i++) v[i] = m[i]! - steady[i]!
+  for (let turn = 1 << ofVector; turn > 0; turn--) {
+    kernel.apply(other, g, v)
+    const swap = v
+    v = other
+    other = swap
+  }
+  for (let i = 0; i < n; i++) m[i] = steady[i]! + v[i]!
 }

@@ -1,5 +1,5 @@
 import { polynomial } from './polynomial'
-import { scalingOf, setOffset, setSystem, solveSteady, type Propagator } from './propagator'
+import { scalingOf, setOffset, setSystem, solveSteady, squareTimes, type Propagator } from './propagator'
 import { propagatorOf } from './spectrum'
 import { ppmToRadPerS, type PoolSystem } from './poolSystem'
 
@@ -65,14 +65,13 @@ function fillStep(state: Propagator, system: PoolSystem, step: Step, offset_rad_
   const norm = setOffset(state, offset_rad_per_s)
   solveSteady(state)
   const { squarings, step_s } = scalingOf(norm, step.duration_s)
-  step.g.set(polynomial(state, step_s))
-  state.kernel.square(step.g, squarings)
+  step.g.set(squareTimes(state, polynomial(state, step_s), squarings))
   step.steady.set(state.steady)
-  state.kernel.apply(step.change, step.g, step.steady, 1)
+  state.kernel.apply(step.change, step.g, step.steady)
   for (let i = 0; i < state.n; i++) step.change[i] = step.steady[i]! - step.change[i]!
 }
 
 function take(state: Propagator, step: Step, m: Float64Array): void {
-  state.kernel.apply(m, step.g, m, 1)
-  for (let i = 0; i < state.n; i++) m[i]! += step.change[i]!
+  state.kernel.apply(state.other, step.g, m)
+  for (let i = 0; i < state.n; i++) m[i] = state.other[i]! + step.change[i]!
 }

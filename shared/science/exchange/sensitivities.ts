@@ -3,7 +3,6 @@
  * exponential in the direction (M₀ − M_ss)·e_zᵀ, made symmetric in G form, which costs about three exponentials however many parameters there are.
  * @source Al-Mohy & Higham, SIAM J. Matrix Anal. Appl. 30, 1639 (2009): the derivative by scaling and squaring, from memory
  */
-import { packedAt, signOf } from './packed'
 import { polynomialAndDerivative } from './polynomial'
 import { scalingOf, setOffset, setSystem, solveSteady, type Propagator } from './propagator'
 import { propagatorOf } from './spectrum'
@@ -47,9 +46,9 @@ export function cwSensitivities(system: PoolSystem, block: Block, offsets_ppm: A
     for (let k = 0; k < n; k++) v[k] = (k % 3 === 2 ? initial * roots[(k - 2) / 3]! : 0) - state.steady[k]!
     const found: Adjoint = { ...adjoint, d: block.duration_s === Infinity ? null : derive(state, v, norm, block.duration_s, adjoint.y) }
     if (found.d === null) adjoint.y.fill(0)
-    for (let k = 0; k < n; k++) right[k] = signOf(k) * ((k === 2 ? 1 : 0) - adjoint.y[k]!)
+    for (let k = 0; k < n; k++) right[k] = (k % 3 === 1 ? -1 : 1) * ((k === 2 ? 1 : 0) - adjoint.y[k]!)
     state.kernel.solveSparse(adjoint.w, state.matrix, right)
-    for (let k = 0; k < n; k++) adjoint.w[k]! *= signOf(k)
+    for (let k = 0; k < n; k++) if (k % 3 === 1) adjoint.w[k]! *= -1
     let sum = state.steady[2]!
     for (let k = 0; k < n; k++) sum += adjoint.y[k]! * v[k]!
     z[i] = sum
@@ -59,14 +58,22 @@ export function cwSensitivities(system: PoolSystem, block: Block, offsets_ppm: A
 
 /** Fills y with row z of E. @returns the derivative of E in the direction v·e_zᵀ times the duration */
 function derive(state: Propagator, v: Float64Array, norm: number, duration_s: number, y: Float64Array): Float64Array {
-  const { n, kernel, scratch } = state
+  const { n, kernel, scratch, at } = state
   const { squarings, step_s } = scalingOf(norm, duration_s)
   const direction = scratch[9]!
   direction.fill(0)
-  for (let k = 0; k < n; k++) direction[k < 2 ? packedAt(n, k, 2) : packedAt(n, 2, k)] = (k === 2 ? 1 : 0.5) * signOf(k) * v[k]! * step_s
-  const { g, d } = polynomialAndDerivative(state, step_s, direction)
-  kernel.squareBoth(g, d, squarings)
-  for (let k = 0; k < n; k++) y[k] = k < 2 ? g[packedAt(n, k, 2)]! : g[packedAt(n, 2, k)]!
+  for (let k = 0; k < n; k++) direction[at[2 * n + k]!] = (k === 2 ? 1 : 0.5) * (k % 3 === 1 ? -1 : 1) * v[k]! * step_s
+  let { g, d } = polynomialAndDerivative(state, step_s, direction)
+  // Two pairs of work arrays take turns; the polynomial left its results in others.
+  for (let turn = 0; turn < squarings; turn++) {
+    const square = scratch[turn % 2]!
+    const derivative = scratch[2 + (turn % 2)]!
+    kernel.squareDerivative(derivative, g, d)
+    kernel.square(square, g)
+    g = square
+    d = derivative
+  }
+  for (let k = 0; k < n; k++) y[k] = g[at[2 * n + k]!]!
   return d
 }
 
@@ -74,10 +81,10 @@ interface Place { readonly found: Adjoint, readonly initial: number, readonly pe
 
 /** Derivatives by the parameters from those by the entries of A, of the source and of the start. */
 function gather(state: Propagator, system: PoolSystem, { found, initial, perPpm, at, count }: Place, out: Float64Array): void {
-  const { n, steady, roots, pools } = state
+  const { n, steady, roots, pools, at: places } = state
   const { d, y, w } = found
   /** dZ/dA(i, j). */
-  const entry = (i: number, j: number): number => (d === null ? 0 : signOf(j) * (i < j ? d[packedAt(n, i, j)]! : d[packedAt(n, j, i)]!)) - w[i]! * steady[j]!
+  const entry = (i: number, j: number): number => (d === null ? 0 : (j % 3 === 1 ? -1 : 1) * d[places[i * n + j]!]!) - w[i]! * steady[j]!
   const put = (column: number, value: number): void => {
     out[column * count + at] = value
   }
