@@ -59,10 +59,10 @@ export function fitModel(model: Model, data: FitData, options: FitOptions = {}):
   if (!prepared.ok) return prepared
   const weights = prepared.sigma && prepared.sigma.map(s => 1 / s)
   const quick = fitQuickly(model, prepared, weights, options)
-  const start = quick?.parameters ?? findStart(model, prepared, options)
+  const start = quick ? Float64Array.from(quick.parameters) : findStart(model, prepared, options)
   if (!start) return refuse('noStart', 'The points give no start values for this model.', 'A start value for every parameter, or other points.')
   const problem = problemOf(model, prepared, free, start)
-  const solution = quick === null ? solve(problem, free.map(j => start[j]!), options.solve) : solutionAt(problem, quick)
+  const solution = quick === null ? solve(problem, free.map(j => start[j]!), options.solve) : solutionAt(problem, start, quick.evaluations)
   if (solution.stop === 'notFinite') {
     return refuse('modelNotFinite', 'The model has no finite value at the start values.', 'Start values at which the model can be computed.')
   }
@@ -89,7 +89,7 @@ function fitQuickly(model: Model, prepared: PreparedData, weights: readonly numb
 }
 
 /** The end of a quick fit as a solve reports it. */
-function solutionAt(problem: LeastSquaresProblem, { parameters, evaluations }: QuickFit): Solution {
+function solutionAt(problem: LeastSquaresProblem, parameters: Float64Array, evaluations: number): Solution {
   const residual = new Float64Array(problem.n)
   const jacobian = new Float64Array(problem.n * problem.m)
   problem.evaluate(parameters, residual, jacobian)

@@ -90,11 +90,17 @@ function solveTwo(normal: Float64Array, right: Float64Array, damping: number, st
   return true
 }
 
+/** Inverse of the matrix that `solveNormal` factored last, by row; a plain array, for a typed one costs more to make than to fill. */
+export function invertNormal(m: number): readonly number[] {
+  if (m === 3) return invertThree()
+  if (m === 2) return invertTwo()
+  return invertAny(m)
+}
+
 const column = new Float64Array(QUICK_PARAMETERS)
 
-/** Inverse of the matrix that `solveNormal` factored last, by row. */
-export function invertNormal(m: number): Float64Array {
-  const inverse = new Float64Array(m * m)
+function invertAny(m: number): number[] {
+  const inverse = new Array<number>(m * m).fill(0)
   for (let c = m - 1; c >= 0; c--) {
     // Column c of L⁻¹ from row c down, then Lᵀ solved upwards.
     for (let a = c; a < m; a++) {
@@ -110,4 +116,20 @@ export function invertNormal(m: number): Float64Array {
     }
   }
   return inverse
+}
+
+function invertThree(): number[] {
+  const l10 = unit[3]!, l20 = unit[6]!, l21 = unit[7]!
+  const i22 = 1 / pivots[2]!
+  const i21 = -l21 * i22
+  const i20 = -(l20 * i22 + l10 * i21)
+  const i11 = 1 / pivots[1]! - l21 * i21
+  const i10 = -(l10 * i11 + l20 * i21)
+  return [1 / pivots[0]! - l10 * i10 - l20 * i20, i10, i20, i10, i11, i21, i20, i21, i22]
+}
+
+function invertTwo(): number[] {
+  const i11 = 1 / pivots[1]!
+  const i10 = -unit[2]! * i11
+  return [1 / pivots[0]! - unit[2]! * i10, i10, i10, i11]
 }

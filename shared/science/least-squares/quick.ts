@@ -12,11 +12,11 @@ export interface QuickData {
 
 /** Minimum with the inverse of JᵀWJ: parameters, sum of squares and what their covariance needs. */
 export interface QuickFit {
-  readonly parameters: Float64Array
+  readonly parameters: readonly number[]
   /** Weighted residual sum of squares. */
   readonly sumOfSquares: number
   /** (JᵀWJ)⁻¹ by row. */
-  readonly inverse: Float64Array
+  readonly inverse: readonly number[]
   readonly evaluations: number
 }
 
@@ -81,8 +81,10 @@ export function solveQuickly(model: Model, data: QuickData, start: ArrayLike<num
       damping = damping === 0 ? FIRST_DAMPING : damping * 10
     }
   }
-  return { parameters: current.slice(0, m), sumOfSquares: sum, inverse: invertNormal(m), evaluations }
+  return { parameters: firstOf(current, m), sumOfSquares: sum, inverse: invertNormal(m), evaluations }
 }
+
+const firstOf = (p: Float64Array, m: number): number[] => m === 3 ? [p[0]!, p[1]!, p[2]!] : m === 2 ? [p[0]!, p[1]!] : Array.from(p.subarray(0, m))
 
 function copySystem(m: number): void {
   for (let j = 0; j < m; j++) right[j] = trialRight[j]!
