@@ -18,15 +18,15 @@ export function useFigureFiles(figure: () => FigureSpec, drawing: () => SVGSVGEl
   const nameFor = (ending: string): string => `${fileNameFrom(prefix(), figure().id === figure().title ? '' : figure().id, plainNotation(figure().title))}.${ending}`
 
   function saveCsv(): void {
-    save(new Blob([`\uFEFF${figureCsv(figure(), [figure().caption ?? '', CAUTION].filter(line => line !== ''))}`], { type: 'text/csv;charset=utf-8' }), nameFor('csv'))
+    saveFile(new Blob([`\uFEFF${figureCsv(figure(), [figure().caption ?? '', CAUTION].filter(line => line !== ''))}`], { type: 'text/csv;charset=utf-8' }), nameFor('csv'))
   }
   function saveSvg(): void {
     const paper = drawing() && onPaper(drawing()!, figure())
-    if (paper) save(new Blob([paper.text], { type: 'image/svg+xml;charset=utf-8' }), nameFor('svg'))
+    if (paper) saveFile(new Blob([paper.text], { type: 'image/svg+xml;charset=utf-8' }), nameFor('svg'))
   }
   async function savePng(): Promise<void> {
     const paper = drawing() && onPaper(drawing()!, figure())
-    if (paper) save(await rasterise(paper), nameFor('png'))
+    if (paper) saveFile(await rasterise(paper), nameFor('png'))
   }
   return { saveCsv, saveSvg, savePng }
 }
@@ -92,7 +92,8 @@ async function rasterise({ text, width, height }: Paper): Promise<Blob> {
   }
 }
 
-function save(blob: Blob, name: string): void {
+/** Hands a file to the browser to keep. */
+export function saveFile(blob: Blob, name: string): void {
   const link = document.createElement('a')
   link.href = URL.createObjectURL(blob)
   link.download = name
