@@ -69,7 +69,7 @@ export function fitModel(model: Model, data: FitData, options: FitOptions = {}):
   const parameters = start.slice()
   free.forEach((j, c) => { parameters[j] = solution.parameters[c]! })
   const information = informationOf(solution.jacobian, problem.n, solution.atBound)
-  const secondOpinion = options.secondOpinion ? findSecondOpinion(problem, solution, free.map(j => start[j]!)) : null
+  const secondOpinion = options.secondOpinion ? findSecondOpinion(problem, solution, ownStart(model, prepared, free)) : null
   return reportFit({ model, data, prepared, options, free, parameters, solution, information, secondOpinion })
 }
 
@@ -86,6 +86,18 @@ function fitQuickly(model: Model, prepared: PreparedData, weights: readonly numb
   }
   const search = options.search ?? (model.separable ? (options.searches ?? createSearches()).find(model, { x: prepared.x, sigma: prepared.sigma, settings: prepared.settings }) : null)
   return search && projectQuickly(model, data, search)
+}
+
+/** Where the model itself would begin, inside the bounds. */
+function ownStart(model: Model, { x, y, settings }: PreparedData, free: readonly number[]): readonly number[] | null {
+  const guess = model.guess(x, y, settings)
+  if (guess === null) return null
+  const start = free.map((j) => {
+    const name = model.names[j]!
+    const { min, max } = model.params[name]!
+    return Math.min(Math.max(guess[name]!, min), max)
+  })
+  return start.every(Number.isFinite) ? start : null
 }
 
 /** The end of a quick fit as a solve reports it. */
