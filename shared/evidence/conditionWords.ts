@@ -1,6 +1,6 @@
 import { formatCelsius, formatNumber, NBSP } from '../format'
 import type { EvidenceItemDto } from './item'
-import { mediumWords } from './records/common'
+import { solutionWords } from './records/common'
 
 const METAL_TOTALS = ['metal_M', 'ligand_M'] as const
 
@@ -8,14 +8,12 @@ const METAL_TOTALS = ['metal_M', 'ligand_M'] as const
 export function conditionWords({ conditions, detail, quantity }: Pick<EvidenceItemDto, 'conditions' | 'detail' | 'quantity'>): string {
   const number = (key: string): number | null => typeof conditions[key] === 'number' ? conditions[key] : null
   const written = (key: string, before: string, unit: string): string => number(key) === null ? '' : `${before}${formatNumber(number(key))}${unit ? `${NBSP}${unit}` : ''}`
-  const medium = typeof conditions.medium === 'string' ? mediumWords(conditions.medium) : ''
-  const strength = written('ionicStrength_M', '', 'M')
   const totals = METAL_TOTALS.every(key => number(key) !== null) ? `${formatNumber(number('metal_M')! * 1e6)}${NBSP}µM metal, ${formatNumber(number('ligand_M')! * 1e6)}${NBSP}µM ligand` : ''
   const range = number('pHMin') !== null && number('pHMax') !== null ? `pH${NBSP}${formatNumber(number('pHMin'))} to ${formatNumber(number('pHMax'))}` : ''
   const acid = conditions.acid === 'notStated' ? 'strong acid, not stated which' : number('acid_M') === null ? '' : `${formatNumber(number('acid_M'))}${NBSP}M ${typeof conditions.acid === 'string' && conditions.acid !== 'other' ? conditions.acid.replace(/(\d)/, '_$1') : 'acid'}`
   const method = quantity === 'freeMetal_frac' && typeof detail.method === 'string' ? detail.method : ''
   return [
     written('b0_T', '', 'T'), number('temperature_K') === null ? '' : formatCelsius(number('temperature_K'), 0), written('pH', `pH${NBSP}`, ''), range, acid,
-    [strength, medium].filter(Boolean).join(' '), totals, method,
+    solutionWords(conditions.ionicStrength_M, conditions.medium), totals, method,
   ].filter(Boolean).join(', ')
 }

@@ -9,7 +9,7 @@ const DO3A_STEPS = [11.59, 9.24, 4.43, 3.48]
 const METHYLAMIDE_STEPS = [9.56, 5.95]
 const AMIDE_STEPS = [9.08, 6.44]
 const NOTA_STEPS = [13.17, 5.74, 3.22]
-const TWO_MEDIA = 'The source used 0.1 M KCl and 0.1 M NMe4Cl; which goes with which constant is not stated here. Published log K of this gadolinium complex spread from 21.1 to 25.3 with the medium.'
+const TWO_MEDIA = 'The source used 0.1 M KCl and 0.1 M NMe_4Cl; which goes with which constant is not stated here. Published log K of this gadolinium complex spread from 21.1 to 25.3 with the medium.'
 const CONDITIONS_OPEN = 'Ionic strength of 0.1 to 1 M; the electrolyte is not stated here. pH 0 to 1 is 1 to 0.1 M acid.'
 const WANG = 'Wang, Jin, Comblin, Lopez-Mut, Merciny, Desreux, Inorg. Chem. 31, 1095 (1992)'
 const TRADE = 'As the trade puts it: log K about 12 for the tetraamide and 26 for the parent, half-life in strong acid about 250 h and 50 h. Neither acid, temperature nor medium goes with the figures.'
@@ -35,7 +35,7 @@ export const RINGS: readonly LibraryLigand[] = [
     payload: payload({ name: '1,4,7,10-tetraazacyclododecane-1,4,7,10-tetraacetate', smiles: 'OC(=O)CN1CCN(CC(O)=O)CCN(CC(O)=O)CCN(CC(O)=O)CC1', donors: donors({ 'amine N': 4, 'carboxylate O': 4 }), denticity: 8, charge: -4, steps: DOTA_STEPS, medium: 'notStated', from: CLARKE }),
     records: [
       gadolinium({ logK: 24.67, protonation: DOTA_STEPS, competitors: { Ca: 17.23, Zn: 21.05, Cu: 22.25, Fe: 29.4 }, medium: 'notStated', note: TWO_MEDIA, citation: CLARKE, lookedUpToo: 'Log K of iron(III) was looked up (NIST SRD 46).' }),
-      rate(2e-5, WANG, 'Published values run from 1.8e-6 to 2.0e-5: half-lives in 1 M acid of 107 to 10 h.'),
+      rate(2e-5, WANG, 'Published values run from 1.8 × 10^-6 to 2.0 × 10^-5: half-lives in 1 M acid of 107 to 10 h.'),
       acidAt25('=', 338, 'h'), zincAt37(0.99, null), practiceLogK(26, TRADE), practiceHalfLife(50, TRADE),
     ],
     constants: [],
@@ -45,7 +45,7 @@ export const RINGS: readonly LibraryLigand[] = [
     payload: payload({ name: '10-(2-hydroxypropyl)-1,4,7,10-tetraazacyclododecane-1,4,7-triacetate', smiles: 'CC(O)CN1CCN(CC(O)=O)CCN(CC(O)=O)CCN(CC(O)=O)CC1', donors: donors({ 'amine N': 4, 'hydroxyl O': 1, 'carboxylate O': 3 }), denticity: 8, charge: -3, steps: HP_STEPS, medium: 'NMe4Cl', from: TRIACETATE }),
     records: [
       gadolinium({ logK: 23.8, protonation: HP_STEPS, competitors: { Ca: 14.83, Zn: 19.37, Cu: 22.84 }, medium: 'NMe4Cl', citation: TRIACETATE }),
-      rate(2.6e-4, 'Inorg. Chem. 32, 587 (1993)', 'The half-life of 3.9 h in 0.1 M acid corresponds to 4.9e-4: sources differ by two.'), acidAt25('=', 3.9, 'h'), zincAt37(0.99, null),
+      rate(2.6e-4, 'Inorg. Chem. 32, 587 (1993)', 'The half-life of 3.9 h in 0.1 M acid corresponds to 4.9 × 10^-4: sources differ by two.'), acidAt25('=', 3.9, 'h'), zincAt37(0.99, null),
     ],
     constants: [],
   },

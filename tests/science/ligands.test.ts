@@ -93,9 +93,11 @@ describe('ligands side by side', () => {
 
   it('say that a tetraamide near log K 12 lets go more slowly in acid than its tetraacetate near 26 [common practice, no source: 250 and 50 h]', () => {
     const { disagreements, entries } = compareLigands('Gd3', need, [candidate(ring, 26, 50), candidate(ringAmide, 12, 250)])
-    expect(disagreements).toEqual([expect.stringMatching(/ring tetraamide holds more weakly .*12 against 26.* more slowly in acid \(250 against 50 h/)])
+    expect(disagreements).toEqual([expect.stringMatching(/ring tetraamide holds more weakly .*12 against 26.* more slowly in acid \(250 h against 50 h/)])
     expect(entries[0]!.unknown).toEqual(['formation'])
-    expect(entries[0]!.measured[0]).toBe('log K 26')
+    expect(entries[0]!.measured).toEqual(['log K 26', 'half-life in acid 50 h (2.5 M acid, 25 °C)'])
+    const quick = compareLigands('Gd3', need, [candidate(ring, 26, 5 / 3600, '<'), candidate(chain, 22, 0.5)]).entries
+    expect(quick.map(one => one.measured[1])).toEqual(['half-life in acid below 5 s (2.5 M acid, 25 °C)', 'half-life in acid 30 min (2.5 M acid, 25 °C)'])
   })
 
   it('draw no order from a bound that does not exclude the other, nor from different acids', () => {

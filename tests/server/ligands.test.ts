@@ -1,6 +1,7 @@
 import { afterAll, beforeAll, beforeEach, describe, expect, it } from 'vitest'
 import type { RecordEntry } from '../../shared/evidence/records/entry'
 import type { Scope } from '../../shared/permissions'
+import { ligandCsv } from '../../shared/files/ligandCsv'
 import { LigandChoiceDto, LigandChoiceQuery } from '../../shared/schemas/ligandChoice'
 import { estimateLogK } from '../../shared/science/ligands/estimate'
 import { chooseLigand } from '../../server/services/chooseLigand'
@@ -77,7 +78,7 @@ describe('ligands side by side for one metal', () => {
     await enter(deps, programme, { agent: 'STRONG', kind: 'acidHalfLife', entry: hours(50) })
     await enter(deps, programme, { agent: 'WEAK', kind: 'acidHalfLife', entry: hours(250) })
     const answer = await choose()
-    expect(answer.disagreements).toEqual([expect.stringMatching(/WEAK-L holds more weakly .* STRONG-L .*250 against 50 h, 25.°C, 1.M.HCl/)])
+    expect(answer.disagreements).toEqual([expect.stringMatching(/WEAK-L holds more weakly .* STRONG-L .*250 h against 50 h, 25.°C, 1.M.HCl/)])
     expect(rowOf(answer, 'WEAK-L').acidHalfLives).toMatchObject([{ value: { value: 250 * 3600 }, state: 'draft' }])
     await measured('WEAKER', 8, [8, 6])
     await enter(deps, programme, { agent: 'WEAKER', kind: 'acidHalfLife', entry: { ...hours(900), acid: choice('HClO4') } })
@@ -121,6 +122,14 @@ describe('log K against ΣpKa', () => {
     expect(answer.line).toMatch(/through 5 signed ligands: log K = 4\.50 \+ 0\.750/)
     expect(answer.figure!.table!.rows.filter(one => one.how === 'estimate, not measured')).toMatchObject([{ ligand: 'NEW-L', sum: 20, steps: 2, logK: 19.5 }])
     expect(rowOf(answer, 'L0-L').estimate).toBeNull()
+    const [head, ...lines] = ligandCsv(answer).trim().split('\r\n')
+    const rows = lines.filter(line => !line.startsWith('#') && !line.startsWith('"#'))
+    expect(rows.map(line => line.split(',')[0])).toEqual(['L0-L', 'L1-L', 'L2-L', 'L3-L', 'L4-L', 'NEW-L'])
+    const cellsOf = (line: string) => line.match(/("([^"]|"")*"|[^,]*)(,|$)/g)!.map(cell => cell.replace(/,$/, '').replace(/^"|"$/g, ''))
+    const at = (line: string, column: string) => cellsOf(line)[cellsOf(head!).indexOf(column)]
+    expect([at(rows[5]!, 'log K, kind'), at(rows[5]!, 'log K'), Number(at(rows[5]!, 'log K, estimate'))]).toEqual(['not known', '', expect.closeTo(19.5, 10)])
+    expect([at(rows[0]!, 'log K, kind'), at(rows[0]!, 'log K'), at(rows[0]!, 'log K, state'), at(rows[0]!, 'log K, estimate')]).toEqual(['=', '12', 'signed', ''])
+    expect(lines.at(-1)).toContain('not for diagnosis')
   })
 
   it('is no line below four signed ligands, and the words say how many there are', async () => {

@@ -36,15 +36,20 @@ export function mediumWords(medium: string): string {
   return MEDIA.some(([value]) => value === medium) ? medium.replace(/\d+/g, '_$&') : medium
 }
 
+/** Ionic strength and electrolyte: "0.1 M KCl", or of the two what is stated; '' without either. Notation. */
+export function solutionWords(ionicStrength_M: unknown, medium: unknown): string {
+  const words = typeof medium === 'string' ? mediumWords(medium) : ''
+  if (typeof ionicStrength_M !== 'number') return words
+  return `${formatNumber(ionicStrength_M)}${NBSP}M${medium === 'notStated' ? ',' : ''} ${words}`.trim()
+}
+
 /** Temperature, ionic strength and electrolyte as the trade writes them: "25 °C, 0.1 M KCl". */
 export function describeMedium(conditions: Conditions): string {
   const { temperature_K, ionicStrength_M, medium } = conditions
   const parts: string[] = []
   if (typeof temperature_K === 'number') parts.push(formatCelsius(temperature_K, 0))
-  const words = typeof medium === 'string' ? mediumWords(medium) : ''
-  if (typeof ionicStrength_M === 'number') parts.push(`${formatNumber(ionicStrength_M)}${NBSP}M ${words}`.trim())
-  else if (words) parts.push(words)
-  return parts.join(', ')
+  const solution = solutionWords(ionicStrength_M, medium)
+  return [...parts, ...(solution ? [solution] : [])].join(', ')
 }
 
 /** A value in words with its bound and error, notation. */

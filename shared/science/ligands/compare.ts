@@ -46,10 +46,16 @@ export function compareLigands(ion: Ion, need: Need, candidates: readonly Candid
 
 const inWords = ({ value, kind, basis }: Told): string => `${kind === '=' ? '' : kind === '<' ? 'below ' : 'above '}${Number(value.toPrecision(4))}${basis === 'estimate' ? ' (estimate)' : ''}`
 
+/** Hours, or what is read more easily below one. */
+function timeInWords({ value, ...told }: Told): string {
+  const [times, unit] = value >= 1 ? [1, 'h'] : value >= 1 / 60 ? [60, 'min'] : [3600, 's']
+  return `${inWords({ ...told, value: value * times })} ${unit}`
+}
+
 function measuredOf({ logK, acidHalfLife_h, formation_min }: Candidate): string[] {
   return [
     ...(logK ? [`log K ${inWords(logK)}`] : []),
-    ...(acidHalfLife_h ? [`half-life in acid ${inWords(acidHalfLife_h.value)} h (${acidHalfLife_h.at})`] : []),
+    ...(acidHalfLife_h ? [`half-life in acid ${timeInWords(acidHalfLife_h.value)} (${acidHalfLife_h.at})`] : []),
     ...(formation_min ? [`99 % formed after ${inWords(formation_min.value)} min (${formation_min.at})`] : []),
   ]
 }
@@ -67,7 +73,7 @@ function disagreementsOf(candidates: readonly Candidate[]): string[] {
     for (const b of candidates) {
       if (!a.logK || !b.logK || !a.acidHalfLife_h || !b.acidHalfLife_h || a.acidHalfLife_h.at !== b.acidHalfLife_h.at) continue
       if (isAbove(b.logK, a.logK) && isAbove(a.acidHalfLife_h.value, b.acidHalfLife_h.value)) {
-        words.push(`${a.ligand.name} holds more weakly at equilibrium than ${b.ligand.name} (log K ${inWords(a.logK)} against ${inWords(b.logK)}) but lets go more slowly in acid (${inWords(a.acidHalfLife_h.value)} against ${inWords(b.acidHalfLife_h.value)} h, ${a.acidHalfLife_h.at}).`)
+        words.push(`${a.ligand.name} holds more weakly at equilibrium than ${b.ligand.name} (log K ${inWords(a.logK)} against ${inWords(b.logK)}) but lets go more slowly in acid (${timeInWords(a.acidHalfLife_h.value)} against ${timeInWords(b.acidHalfLife_h.value)}, ${a.acidHalfLife_h.at}).`)
       }
     }
   }
