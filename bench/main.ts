@@ -9,6 +9,7 @@ const PARTS: Readonly<Record<string, () => Promise<{ run: () => void | Promise<v
   equilibria: () => import('./equilibria'),
   titration: () => import('./titration'),
   lorentzian: () => import('./lorentzian'),
+  bloch: () => import('./bloch'),
   threads: () => import('./threads'),
   click: () => import('./click'),
 }
