@@ -53,6 +53,9 @@ export const passedText = (title: string, detail: string | null): string => `${t
 const CURVE_POINTS = 65
 /** Curves are for the eye: figures show no more digits. */
 const CURVE_DIGITS = 6
+/** Powers of ten that a double holds exactly. */
+const EXACT_POWERS = 22
+const POWERS_OF_TEN = Array.from({ length: EXACT_POWERS + 1 }, (_, n) => Number(`1e${n}`))
 
 /** Model values from 0 to the last point, denser where a recovery bends: spaced by the square of their index. */
 export function curveOver(x: readonly number[], evaluate: (x: number) => number): { x: number, y: number }[] {
@@ -64,4 +67,9 @@ export function curveOver(x: readonly number[], evaluate: (x: number) => number)
   })
 }
 
-const forTheEye = (value: number): number => Number(value.toPrecision(CURVE_DIGITS))
+/** To so many significant digits, by a power of ten: a detour over text takes longer than the fit. */
+function forTheEye(value: number): number {
+  const shift = CURVE_DIGITS - 1 - Math.floor(Math.log10(Math.abs(value)))
+  if (!(Math.abs(shift) <= EXACT_POWERS)) return value
+  return shift >= 0 ? Math.round(value * POWERS_OF_TEN[shift]!) / POWERS_OF_TEN[shift]! : Math.round(value / POWERS_OF_TEN[-shift]!) * POWERS_OF_TEN[-shift]!
+}
