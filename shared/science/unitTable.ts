@@ -2,7 +2,7 @@ import { CELSIUS_ZERO_K, PROTON_GAMMA_MHz_per_T } from './constants'
 
 export type Dimension =
   | 'time' | 'rate' | 'concentration' | 'relaxivity' | 'temperature' | 'field' | 'frequency' | 'signal' | 'fraction' | 'length' | 'shift'
-  | 'angle' | 'dose' | 'amount' | 'volume' | 'mass' | 'rateSecondOrder' | 'rateThirdOrder' | 'energy' | 'pulseField' | 'none'
+  | 'angle' | 'dose' | 'amount' | 'volume' | 'mass' | 'rateSecondOrder' | 'rateThirdOrder' | 'energy' | 'pulseField' | 'potential' | 'none'
 
 /** One unit: stored = value·times/over + plus, over and times exact so that 12 ms is the double nearest to 0.012. */
 export interface UnitRow {
@@ -61,5 +61,6 @@ export const UNIT_ROWS: Readonly<Record<Dimension, readonly UnitRow[]>> = {
   rateThirdOrder: [unit('M^-2 s^-1', ['per_M2_s', '1/(M^2 s)', 'L^2 mol^-2 s^-1'])],
   energy: [unit('kJ/mol', ['kJ mol^-1', 'kJ_per_mol']), unit('J/mol', ['J mol^-1', 'J_per_mol'], 1, 1e3), unit('kcal/mol', ['kcal mol^-1'], 4184, 1e3)],
   pulseField: [unit('µT', ['uT', 'microtesla']), unit('T', ['tesla'], 1e6)],
+  potential: [unit('mV', ['millivolt', 'millivolts']), unit('V', ['volt', 'volts'], 1e3)],
   none: [unit('', ['1', '-', 'none'])],
 }

@@ -17,7 +17,11 @@ export interface Calibration {
   readonly electrode: Electrode
   /** Standard errors by the names below; null where not refined. */
   readonly se: Readonly<Record<CalibrationName, number | null>>
+  /** What was refined, and its covariance in that order; null where no errors exist. */
+  readonly refined: readonly CalibrationName[]
+  readonly covariance: readonly (readonly number[])[] | null
   readonly base_M: number
+  readonly end_mL: number
   /** Carbonate in the base by the two Gran ends, mol/L; null where a branch is missing. */
   readonly carbonate_M: number | null
   readonly residuals_mV: readonly number[]
@@ -132,9 +136,10 @@ function report(run: CalibrationRun, { solution, all, free }: RunFit, junctionP:
   const dof = n - free.length
   const reducedChi2 = dof > 0 ? solution.sumOfSquares / dof : null
   const { inverse } = informationOf(solution.jacobian, n, free.map(() => false))
+  const covariance = inverse && free.map((_, a) => free.map((__, b) => inverse[a * free.length + b]! * Math.max(1, reducedChi2 ?? 1)))
   const se = Object.fromEntries(NAMES.map((name, which) => {
     const c = free.indexOf(which)
-    return [name, c < 0 || inverse === null ? null : Math.sqrt(inverse[c * free.length + c]! * Math.max(1, reducedChi2 ?? 1))]
+    return [name, c < 0 || covariance === null ? null : Math.sqrt(covariance[c]![c]!)]
   })) as Record<CalibrationName, number | null>
   const electrode = electrodeOf(all)
   const slopeOfNernst = electrode.slope_mV / nernstSlope_mV(run.temperature_K)
@@ -143,7 +148,7 @@ function report(run: CalibrationRun, { solution, all, free }: RunFit, junctionP:
   if (slopeOfNernst < 0.95 || slopeOfNernst > 1.02) warnings.push(`The slope is ${(100 * slopeOfNernst).toFixed(1)} % of the theoretical one; 95 to 102 % is usual (common practice, no source).`)
   if (!free.includes(3)) warnings.push('pKw was held: the run has fewer than five alkaline points.')
   return {
-    ok: true, electrode, se, base_M: run.acid_mmol / all[2]!, carbonate_M: acid && base ? carbonateFromEnds(run.acid_mmol, acid.end_mL, base.end_mL) : null,
+    ok: true, electrode, se, refined: free.map(which => NAMES[which]!), covariance, base_M: run.acid_mmol / all[2]!, end_mL: all[2]!, carbonate_M: acid && base ? carbonateFromEnds(run.acid_mmol, acid.end_mL, base.end_mL) : null,
     residuals_mV: run.volumes_mL.map((v, i) => run.readings_mV[i]! - modelAt(run, all, v).value), reducedChi2, junctionP, slopeOfNernst, warnings,
   }
 }
