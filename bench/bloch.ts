@@ -1,6 +1,8 @@
 import { spawnSync } from 'node:child_process'
 import { fileURLToPath } from 'node:url'
 import { PROTON_GAMMA_rad_per_s_T } from '../shared/science/constants'
+import type { DetectionInput } from '../shared/science/exchange/detection'
+import { DETECTION_DRAWS, drawDetection, type DetectionErrors } from '../shared/science/exchange/detectionDraws'
 import { fitSeries } from '../shared/science/exchange/fitSeries'
 import type { Block, PoolSystem } from '../shared/science/exchange/poolSystem'
 import type { Quantity, SeriesModel, SeriesSpectrum } from '../shared/science/exchange/seriesTypes'
@@ -31,8 +33,16 @@ const REPEATS = 60
 const B1_UT = [0.5, 1.2, 2.5, 5]
 const CONC_MM = 20
 const FIT_GOAL = 20
+const DETECTION: DetectionInput = {
+  agent: { shift_ppm: 50, exchange_per_s: 3000, protons: 8, rate1_per_s: 5, rate2_per_s: 150, r1_per_mM_s: 0.005, r2_per_mM_s: 0.02 },
+  tissue: { rate1_per_s: 0.45, rate2_per_s: 25, macromolecules: { ratio: 0.08, exchange_per_s: 40, t2_s: 1e-5, rate1_per_s: 1 } },
+  setting: { field_T: 9.4, b1_uT: 10, duration_s: 3, drop_points: 5 },
+}
+const DETECTION_ERRORS: DetectionErrors = {
+  agent: { exchange_per_s: 300, r1_per_mM_s: 0.002, r2_per_mM_s: 0.01, rate2_per_s: 30, shift_ppm: 0.3 }, tissueRate1_per_s: 0.05, tissueRate2_per_s: 3, macromolecules: { ratio: 0.01, exchange_per_s: 5 }, b1_frac: 0.05,
+}
 
-/** Spectra before the steady state, and a fit of three pools to 4 B1 × 67 offsets with 7 free parameters, against scipy's matrix exponential and least_squares over it. */
+/** Spectra before the steady state, and a fit of three pools to 4 B1 × 67 offsets with 7 free parameters, draws of a detection concentration; the first two against scipy's matrix exponential and least_squares over it. */
 export function run(): void {
   const series = makeSeries()
   const scipy = spawnSync(process.env.LANTHORN_PYTHON ?? 'python3', [fileURLToPath(new URL('./scipy_bloch.py', import.meta.url))], {
@@ -64,6 +74,21 @@ export function run(): void {
     const one = theirs?.fit[way]
     if (one) console.log(`  scipy least_squares over expm, ${way} ${(1e3 * median(one.seconds)).toFixed(0)} ms, k ${one.answer.toFixed(4)}, ${one.evaluations} steps   ×${(median(one.seconds) / median(ours!.seconds)).toFixed(1)} (asked: ${FIT_GOAL})`)
   }
+
+  const detect = () => {
+    const done = drawDetection(DETECTION, DETECTION_ERRORS, { seed: 'bench' })
+    if (!done.ok) throw new Error(done.message)
+    return done.quantiles_mM.median ?? Number.NaN
+  }
+  const [cold] = takeTurns([{ name: 'detection', run: detect }], { rounds: 1, warm: 0 })
+  const [warm] = takeTurns([{ name: 'detection', run: detect }], { rounds: 9, warm: 2 })
+  console.log(`Detection concentration, ${DETECTION_DRAWS} draws, every one solved: ${(1e3 * median(warm!.seconds)).toFixed(0)} ms, the first time ${(1e3 * median(cold!.seconds)).toFixed(0)} ms (asked: at most 500), median ${warm!.answer.toPrecision(6)} mM`)
+
+  const simulator = SPECTRA['3 pools']!
+  const offsets = axis(9, 201)
+  const redraw = () => B1_UT.reduce((sum, b1_uT) => sum + cwSpectrum(simulator.system, { b1_uT, duration_s: 5 }, offsets)[100]!, 0)
+  const [page] = takeTurns([{ name: 'simulator', run: redraw }], { rounds: 31, warm: 10 })
+  console.log(`Simulator, 3 pools × 4 B1 × 201 offsets: ${(1e3 * median(page!.seconds)).toFixed(1)} ms in Node (asked: at most 8 in a browser)`)
 }
 
 function makeSeries() {
