@@ -46,5 +46,5 @@ export const useProfileStore = defineStore('profile', () => {
     open(version.id)
   }
 
-  return { versions, baseId, draft, usable, base, isChanged, problems, newest, accept, open, change, saved }
+  return { versions, baseId, draft, usable, base, start, isChanged, problems, newest, accept, open, change, saved }
 })
