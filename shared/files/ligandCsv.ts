@@ -4,6 +4,8 @@ import { CAUTION } from '../caution'
 import { plainNotation } from '../notation'
 import { csvText } from './csv'
 
+/** A sign of its own would be read as the beginning of a formula. */
+const KIND_WORDS = { '=': 'value', '<': 'less than', '>': 'more than' } as const
 type Cell = string | number | null
 
 const TOPICS = { size: 'Size', hardness: 'Donor hardness', denticity: 'Sites', charge: 'Charge', shape: 'Ring or chain' } as const satisfies Record<(typeof HINT_TOPICS)[number], string>
@@ -21,7 +23,7 @@ export function ligandCsv(answer: LigandChoiceDto): string {
   return csvText([HEAD, ...answer.ligands.map(toCells), ...lines.map(line => [`# ${plainNotation(line)}`])])
 }
 
-const numberCells = (value: LigandValueDto['value'] | undefined): Cell[] => value ? [value.kind, value.value, value.se] : ['not known', null, null]
+const numberCells = (value: LigandValueDto['value'] | undefined): Cell[] => value ? [KIND_WORDS[value.kind], value.value, value.se] : ['not known', null, null]
 
 function toCells(row: LigandChoiceRow): Cell[] {
   const { logK, sumPKa, estimate, halfLife } = row
@@ -30,7 +32,7 @@ function toCells(row: LigandChoiceRow): Cell[] {
     ...HINT_TOPICS.flatMap((topic): Cell[] => { const hint = row.hints.find(one => one.about === topic); return [hint?.leaning ?? '', hint?.reason ?? ''] }),
     ...numberCells(logK?.value), logK ? logK.state ?? 'literature' : '', plainNotation(logK?.conditions ?? ''), logK?.source ?? '',
     sumPKa?.value ?? null, sumPKa?.steps ?? null, plainNotation(sumPKa?.conditions ?? ''), estimate?.logK ?? null, estimate?.low ?? null, estimate?.high ?? null,
-    plainNotation(row.acidHalfLives.map(one => `${one.value.kind === '=' ? '' : one.value.kind} ${one.value.value} s (${one.conditions}; ${one.state ?? `literature: ${one.source ?? ''}`})`.trim()).join(' | ')),
+    plainNotation(row.acidHalfLives.map(one => `${one.value.kind === '=' ? '' : KIND_WORDS[one.value.kind]} ${one.value.value} s (${one.conditions}; ${one.state ?? `literature: ${one.source ?? ''}`})`.trim()).join(' | ')),
     ...numberCells(halfLife?.value), halfLife?.state ?? '', row.unknown?.join(', ') ?? '', [...row.notes, ...(estimate?.warnings ?? [])].join(' '),
   ]
 }

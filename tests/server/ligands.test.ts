@@ -128,7 +128,7 @@ describe('log K against ΣpKa', () => {
     const cellsOf = (line: string) => line.match(/("([^"]|"")*"|[^,]*)(,|$)/g)!.map(cell => cell.replace(/,$/, '').replace(/^"|"$/g, ''))
     const at = (line: string, column: string) => cellsOf(line)[cellsOf(head!).indexOf(column)]
     expect([at(rows[5]!, 'log K, kind'), at(rows[5]!, 'log K'), Number(at(rows[5]!, 'log K, estimate'))]).toEqual(['not known', '', expect.closeTo(19.5, 10)])
-    expect([at(rows[0]!, 'log K, kind'), at(rows[0]!, 'log K'), at(rows[0]!, 'log K, state'), at(rows[0]!, 'log K, estimate')]).toEqual(['=', '12', 'signed', ''])
+    expect([at(rows[0]!, 'log K, kind'), at(rows[0]!, 'log K'), at(rows[0]!, 'log K, state'), at(rows[0]!, 'log K, estimate')]).toEqual(['value', '12', 'signed', ''])
     expect(lines.at(-1)).toContain('not for diagnosis')
   })
 
