@@ -1,4 +1,3 @@
-import { exchangeZSpectrum } from './exchange/zspectrum'
 import { kineticsCourse } from './kinetics/course'
 import { kineticsRates } from './kinetics/rates'
 import { kineticsZincPhosphate } from './kinetics/zinc'
