@@ -1,3 +1,4 @@
+import { exchangeZSpectrum } from './exchange/zspectrum'
 import { kineticsCourse } from './kinetics/course'
 import { kineticsRates } from './kinetics/rates'
 import { kineticsZincPhosphate } from './kinetics/zinc'
@@ -11,7 +12,7 @@ import { thermoTitration } from './titration/titration'
 import type { MeasurementKind } from './types'
 
 /** Every kind of measurement, by id; the order is that of the choice on the upload page. Services take the record as an argument. */
-export const MEASUREMENTS: Readonly<Record<string, MeasurementKind>> = Object.fromEntries([relaxT1Ir, relaxT1Sr, relaxT1Ll, relaxT1Vfa, relaxT2Echo, relaxFitted, kineticsCourse, kineticsRates, kineticsZincPhosphate, thermoTitration].map(kind => [kind.kind, kind]))
+export const MEASUREMENTS: Readonly<Record<string, MeasurementKind>> = Object.fromEntries([relaxT1Ir, relaxT1Sr, relaxT1Ll, relaxT1Vfa, relaxT2Echo, relaxFitted, kineticsCourse, kineticsRates, kineticsZincPhosphate, thermoTitration, exchangeZSpectrum].map(kind => [kind.kind, kind]))
 
 /** The kind of an id that came from outside; null when there is none. */
 export function findMeasurement(kinds: Readonly<Record<string, MeasurementKind>>, id: string): MeasurementKind | null {

@@ -29,13 +29,18 @@ export interface MirrorReading {
   readonly ptr: WithError
   /** 1/Z(+Δω) − 1/Z(−Δω). */
   readonly mtrRex: WithError
+  /**
+   * How far Z at the offset hangs on the way of interpolation: the cubic through the four nearest points less the monotone one, which never dips below its points. 0 at a measured
+   * offset; null at the ends of the data.
+   */
+  readonly interpolation: number | null
 }
 
 type Measure = (lab: number, ref: number) => number
 
 /**
- * Reads a spectrum at an offset and at its mirror image, by monotone cubic interpolation. Errors hold the noise of the points, of S0 (shared by both sides) and the
- * error of the water position.
+ * Reads a spectrum at an offset and at its mirror image, by monotone cubic interpolation. Errors hold the noise of the points, of S0 (shared by both sides), the
+ * error of the water position, and what two ways of interpolation differ by.
  * @param offset_ppm the pool's own signed offset, from water
  * @returns a refusal where one of the two leaves the data
  * @source MTR_Rex: Zaiss et al., Magn. Reson. Med. 79, 1708 (2018)
@@ -47,12 +52,21 @@ export function readMirrored(spectrum: CentredSpectrum, offset_ppm: number): Mir
   const pchip = createPchip(x, z)
   const [lab, ref] = [pchip.at(offset_ppm), pchip.at(-offset_ppm)]
   const errorOf = errorsAt(spectrum, offset_ppm)
+  const cubic = cubicAt(x, z, offset_ppm)
   const withError = (measure: Measure): WithError => ({ value: measure(lab, ref), se: errorOf(measure) })
   const positive = lab > 0 && ref > 0
   if (!positive) return refuseExchange('saturated', `Z is ${lab.toPrecision(2)} at the pool and ${ref.toPrecision(2)} opposite: nothing is left to compare.`, 'Weaker or shorter saturation, or a pool farther from water.')
   return {
-    ok: true, offset_ppm, lab: withError(a => a), ref: withError((_, b) => b), mtrAsym: withError((a, b) => b - a), ptr: withError((a, b) => 1 - a / b), mtrRex: withError((a, b) => 1 / a - 1 / b),
+    ok: true, offset_ppm, interpolation: cubic === null ? null : cubic - lab, lab: withError(a => a), ref: withError((_, b) => b), mtrAsym: withError((a, b) => b - a), ptr: withError((a, b) => 1 - a / b), mtrRex: withError((a, b) => 1 / a - 1 / b),
   }
+}
+
+/** Value of the cubic through the two points on either side; null where there are not two. */
+function cubicAt(x: readonly number[], y: readonly number[], at: number): number | null {
+  const next = x.findIndex(one => one >= at)
+  if (next < 2 || next + 1 >= x.length) return null
+  const nodes = [next - 2, next - 1, next, next + 1]
+  return nodes.reduce((sum, i) => sum + y[i]! * nodes.reduce((product, j) => j === i ? product : product * (at - x[j]!) / (x[i]! - x[j]!), 1), 0)
 }
 
 /** Standard error of a measure of both readings: each source of error moves them together as it does in truth. */
@@ -72,14 +86,15 @@ function errorsAt({ offset_ppm: x, z, zSe, s0RelativeSe, shiftSe_ppm }: CentredS
     values[i] = z[i]!
   }
   if (s0RelativeSe !== null) sources.push([read(z.map(one => one * (1 + s0RelativeSe))), read(z.map(one => one * (1 - s0RelativeSe)))])
-  if (shiftSe_ppm !== null) {
-    const moved = [read(z, shiftSe_ppm), read(z, -shiftSe_ppm)] as const
-    // at the ends of the data the move leaves them: the side that stays counts double
-    const here = read(z)
-    const kept = (a: readonly [number, number], b: readonly [number, number]): readonly [number, number] => a.some(Number.isNaN) ? [2 * here[0] - b[0], 2 * here[1] - b[1]] : a
-    sources.push([kept(moved[0], moved[1]), kept(moved[1], moved[0])])
+  const here = read(z)
+  const cubic = [cubicAt(x, z, offset) ?? here[0], cubicAt(x, z, -offset) ?? here[1]] as const
+  const moved = shiftSe_ppm === null ? [] : [read(z, shiftSe_ppm), read(z, -shiftSe_ppm)].filter(pair => !pair.some(Number.isNaN))
+  return (measure) => {
+    const linear = sources.reduce((sum, [up, down]) => sum + ((measure(...up) - measure(...down)) / 2) ** 2, 0)
+    // at the top of a dip both directions change Z alike: differences from where it stands, not between the two
+    const shifted = moved.reduce((sum, pair) => sum + (measure(...pair) - measure(...here)) ** 2, 0) / Math.max(1, moved.length)
+    return Math.sqrt(linear + shifted + (measure(...cubic) - measure(...here)) ** 2)
   }
-  return measure => Math.sqrt(sources.reduce((sum, [up, down]) => sum + ((measure(...up) - measure(...down)) / 2) ** 2, 0))
 }
 
 /** The points that a monotone cubic takes into account at each place: the two around it and one more on either side. */

@@ -31,6 +31,8 @@ export interface NormalisedSpectrum {
   readonly readings: readonly number[]
   /** Positions in the raw spectrum that make up each point. */
   readonly members: readonly (readonly number[])[]
+  /** Mean S0. */
+  readonly s0_au: number
   /** SD of one reading, and where it is from. */
   readonly noise: { readonly sd_au: number, readonly from: 'given' | 's0Repeats' | 's0Line', readonly dof: number | null } | null
   /** Change of S0 from the first to the last bracket, as a fraction of the first; null with one bracket or no order. */
@@ -62,7 +64,7 @@ export function normaliseSpectrum(raw: RawSpectrum): NormalisedSpectrum | Exchan
   const perBracket = raw.s0.length / brackets.length
   const meanS0 = brackets.reduce((sum, one) => sum + one.mean, 0) / brackets.length
   return {
-    ok: true, members, readings: members.map(group => group.length), offset_ppm: members.map(group => raw.offset_ppm[group[0]!]!),
+    ok: true, members, s0_au: meanS0, readings: members.map(group => group.length), offset_ppm: members.map(group => raw.offset_ppm[group[0]!]!),
     z: mean(i => raw.signal_au[i]! / s0At(i)), noise, drift: driftOf(brackets, noise?.sd_au ?? null),
     zSe: noise && members.map(group => Math.sqrt(group.reduce((sum, i) => sum + (noise.sd_au / s0At(i)) ** 2, 0)) / group.length),
     s0RelativeSe: noise && noise.sd_au / Math.sqrt(perBracket) / meanS0,

@@ -31,37 +31,46 @@ export const noShift: WaterShift = { ok: true, method: 'none', shift_ppm: 0, se_
  * cubic interpolation. The standard error is σ/√ΣS′(x)² over the points compared, the least that any unbiased centre of a symmetric dip can have.
  * @source Kim, Gillen, Landman, Zhou, van Zijl, Magn. Reson. Med. 61, 1441 (2009)
  */
-export function shiftBySymmetry(data: DipData, method: 'wassr' | 'waterDip' = 'wassr'): WaterShift | ExchangeRefusal {
+export function shiftBySymmetry(data: DipData): WaterShift | ExchangeRefusal {
+  return refuseDip(data) ?? findCentre(data, 'wassr')
+}
+
+/** The same for the dip of a spectrum itself: only points of its lower half and two steps beyond are compared, so that pools beside the water do not pull. */
+export function shiftByWaterDip(data: DipData): WaterShift | ExchangeRefusal {
+  return refuseDip(data) ?? findCentre(data, 'waterDip')
+}
+
+function findCentre(data: DipData, method: 'wassr' | 'waterDip'): WaterShift | ExchangeRefusal {
   const { offset_ppm: x, z } = data
-  const refusal = refuseDip(data)
-  if (refusal) return refusal
-  const lowest = z.indexOf(Math.min(...z))
-  const reach = Math.min(x[lowest]! - x[0]!, x.at(-1)! - x[lowest]!)
-  const step = Math.max(x[lowest]! - (x[lowest - 1] ?? -Infinity), (x[lowest + 1] ?? Infinity) - x[lowest]!)
-  const half = reach - 2 * step
-  const inside = x.flatMap((at, i) => Math.abs(at - x[lowest]!) <= half ? [i] : [])
-  if (!(half > 0) || inside.length < 6) return refuseExchange('dipAtEdge', `The lowest point of the dip, at ${x[lowest]} ppm, is too near the end of the scan: its mirror image leaves the data.`, 'A scan that reaches as far beyond the water on one side as on the other, at least six points.')
+  const dip = lowerHalf(x, z)
+  // the scan must hold the mirror image wherever the centre is looked for
+  const reach = Math.min(dip.centre - x[0]!, x.at(-1)! - dip.centre) - 2 * dip.step
+  const half = method === 'wassr' ? reach : Math.min(reach, dip.halfWidth + 2 * dip.step)
+  const inside = x.flatMap((at, i) => Math.abs(at - dip.centre) <= half ? [i] : [])
+  if (!(half > 0) || inside.length < 6) {
+    return method === 'wassr' || !(reach > dip.halfWidth)
+      ? refuseExchange('dipAtEdge', `The dip, at about ${Number(dip.centre.toFixed(2))} ppm, is too near the end of the scan: its mirror image leaves the data.`, 'A scan that reaches as far beyond the water on one side as on the other, at least six points.')
+      : refuseExchange('waterDipTooCoarse', `The water dip of the spectrum has ${inside.length} points in its lower half.`, 'Six points or more across the water dip, a scan for the water shift, or no correction.')
+  }
   const pchip = createPchip(x, z)
   const objective = (c: number) => inside.reduce((sum, i) => sum + (z[i]! - pchip.at(2 * c - x[i]!)) ** 2, 0)
-  const centre = leastOn(objective, x[lowest]! - step, x[lowest]! + step)
+  const centre = leastOn(objective, dip.centre - dip.step, dip.centre + dip.step)
   return describeCentre({ data, pchip, inside, centre, mismatch: objective(centre) }, method)
 }
 
-/** The same for the dip of a spectrum itself: only points within its own lower half are compared, so that pools beside the water do not pull. */
-export function shiftByWaterDip(data: DipData): WaterShift | ExchangeRefusal {
-  const refusal = refuseDip(data)
-  if (refusal) return refusal
-  const { offset_ppm, z } = data
+/** Where a dip crosses half its depth on both sides of its lowest point: the middle is a first centre that noise at a flat bottom does not move. */
+function lowerHalf(x: readonly number[], z: readonly number[]): { centre: number, halfWidth: number, step: number } {
   const lowest = z.indexOf(Math.min(...z))
   const level = (Math.min(...z) + Math.max(...z)) / 2
-  let [from, to] = [lowest, lowest]
-  while (from > 0 && z[from - 1]! < level) from--
-  while (to < z.length - 1 && z[to + 1]! < level) to++
-  // two points more on either side hold the mirror image
-  const reach = Math.min(offset_ppm[lowest]! - (offset_ppm[from - 2] ?? Infinity), (offset_ppm[to + 2] ?? -Infinity) - offset_ppm[lowest]!)
-  const keep = offset_ppm.flatMap((at, i) => Math.abs(at - offset_ppm[lowest]!) <= reach * (1 + 1e-9) ? [i] : [])
-  const found = shiftBySymmetry({ offset_ppm: keep.map(i => offset_ppm[i]!), z: keep.map(i => z[i]!), zSe: data.zSe && keep.map(i => data.zSe![i]!) }, 'waterDip')
-  return found.ok ? found : refuseExchange('waterDipTooCoarse', `The water dip of the spectrum has ${to - from + 1} points in its lower half and ${keep.length} that can be mirrored.`, 'Six points or more across the water dip, a scan for the water shift, or no correction.')
+  const crossing = (direction: 1 | -1): number => {
+    let i = lowest
+    while (i + direction >= 0 && i + direction < x.length && z[i]! < level) i += direction
+    const before = i - direction
+    return z[i]! < level || i === lowest ? x[i]! : x[before]! + ((level - z[before]!) / (z[i]! - z[before]!)) * (x[i]! - x[before]!)
+  }
+  const [left, right] = [crossing(-1), crossing(1)]
+  const within = x.flatMap((at, i) => i > 0 && at > left && x[i - 1]! < right ? [at - x[i - 1]!] : [])
+  return { centre: (left + right) / 2, halfWidth: (right - left) / 2, step: Math.max(...within) }
 }
 
 function refuseDip({ offset_ppm, z }: DipData): ExchangeRefusal | null {

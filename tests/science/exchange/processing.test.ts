@@ -115,9 +115,20 @@ describe('water shift by maximum symmetry [Kim et al. 2009]', () => {
     expect(found.se_ppm!).toBeGreaterThan(0)
   })
 
+  it.each([2.5, 4, 12])('finds the water of a dip with a flat bottom, %s µT for 15 s, noise 0.002, within a fifth of a step and the error it states', (b1_uT) => {
+    const axis = [...range(-40, -10, 10), ...range(-5, 5, 0.5), ...range(10, 40, 10)]
+    for (let draw = 0; draw < 20; draw++) {
+      const z = noisy(axis.map(offset => zOf([{ ...water, rate2_per_s: 3, offset_ppm: 0.22 }], { b0_T: 7, b1_uT, tsat_s: 15 }, offset)), 0.002, createRandom(`flat ${draw}`))
+      const found = done(shiftByWaterDip({ offset_ppm: axis, z, zSe: axis.map(() => 0.002) }))
+      expect(Math.abs(found.shift_ppm - 0.22)).toBeLessThan(Math.min(0.1, 3.5 * found.se_ppm!))
+      expect(found.se_ppm!).toBeLessThan(0.1)
+    }
+  })
+
   it('refuses a scan without a dip, with the dip at its end, or with six offsets', () => {
     expect(shiftBySymmetry({ offset_ppm: offsets, z: offsets.map(() => 0.9), zSe: null })).toMatchObject({ ok: false, reason: 'noDip' })
     expect(shiftBySymmetry({ offset_ppm: offsets, z: scan(1.15), zSe: null })).toMatchObject({ ok: false, reason: 'dipAtEdge' })
+    expect(shiftByWaterDip({ offset_ppm: [-30, -20, -10, -1, 1, 10, 20, 30], z: [1, 1, 0.9, 0.2, 0.2, 0.9, 1, 1], zSe: null })).toMatchObject({ ok: false, reason: 'waterDipTooCoarse' })
     expect(shiftBySymmetry({ offset_ppm: offsets.slice(0, 6), z: scan(0).slice(0, 6), zSe: null })).toMatchObject({ ok: false, reason: 'tooFewPoints' })
   })
 })
@@ -141,16 +152,24 @@ describe('asymmetry', () => {
     const draws = Array.from({ length: 4000 }, () => {
       const scale = 1 + 0.003 * random.normal()
       const by = 0.01 * random.normal()
-      const drawn = done(readMirrored({ ...spectrum, offset_ppm: at.map(x => x + by), z: noisy(z, 0.004, random).map(value => value * scale), zSe: null }, 3.7))
+      const drawn = done(readMirrored({ ...spectrum, offset_ppm: at.map(x => x + by), z: noisy(z, 0.004, random).map(value => value * scale), zSe: null }, 4))
       return [drawn.mtrAsym.value, drawn.mtrRex.value]
     })
-    const reading = done(readMirrored(spectrum, 3.7))
+    const reading = done(readMirrored(spectrum, 4))
     const stated = [reading.mtrAsym.se!, reading.mtrRex.se!]
     stated.forEach((se, j) => {
       const mean = draws.reduce((sum, draw) => sum + draw[j]!, 0) / draws.length
       const sd = Math.sqrt(draws.reduce((sum, draw) => sum + (draw[j]! - mean) ** 2, 0) / (draws.length - 1))
       expect(Math.abs(se / sd - 1)).toBeLessThan(0.05)
     })
+  })
+
+  it('counts into the error, between two offsets, what two ways of interpolation differ by, and nothing of it at an offset', () => {
+    const [between, at4] = [done(readMirrored(spectrum, 3.75)), done(readMirrored(spectrum, 4))]
+    expect(at4.interpolation).toBeCloseTo(0, 14)
+    // the dip of 0.2 is deeper between its points than the monotone cubic shows
+    expect(Math.abs(between.interpolation!)).toBeGreaterThan(1e-4)
+    expect(between.lab.se!).toBeGreaterThan(Math.abs(between.interpolation!))
   })
 
   it('has no asymmetry in a symmetric spectrum and no error where no noise is known', () => {
