@@ -23,12 +23,12 @@ const COARSEST = 4
 /** It ends where it no longer moves by this; two sums of squares that differ by less than the second are one minimum. */
 const COARSE_TOLERANCE = 1e-3
 const SAME_MINIMUM = 1e-2
-/** The last search starts next to the minimum: a step that lowers the sum by less than this is followed by one or two of Gauss and Newton, which leave 1e-6 standard errors. */
-const LAST_TOLERANCE = 1e-6
+/** The last search starts next to the minimum: a step that lowers the sum by less than this is followed by one of Gauss and Newton, which leaves less than 1e-3 standard errors. */
+const LAST_TOLERANCE = 1e-3
 /** Amplitude of the nutation of water above which a point is left out. Common practice, no source: about the scatter of a good spectrum. */
 const NUTATION = 0.003
 const COARSE_POLISH = 0
-const LAST_POLISH = 2
+const LAST_POLISH = 1
 
 export const SERIES_ASSUMPTIONS = 'Bloch–McConnell equations of water and pools that exchange with it alone, constant irradiation, any saturation time; one set of pools for all tubes but where a quantity is fitted per tube; B1 the same over the region.'
 

