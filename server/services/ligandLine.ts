@@ -71,10 +71,11 @@ export function basicityFigure(ligands: readonly ReadLigand[], line: BasicityLin
   const points = (of: readonly Placed[]) => of.map(({ ligand, x, y }) => ({ x, y, id: ligand.entry.key, label: ligand.facts.name }))
   const layers: FigureLayer[] = [
     ...lineLayers(line, [...line.on, ...estimates].map(one => one.x)),
+    // drawn first, so that what the programme measured stands on it
+    { type: 'points', name: HOW.literature, token: 's2', square: true, points: points(kinds.literature) },
     { type: 'points', name: HOW.on, token: 'ink', points: points(kinds.on) },
     { type: 'cross', name: HOW.off, token: 'ink-3', points: points(kinds.off) },
     { type: 'points', name: HOW.unsigned, token: 'ink-2', open: true, points: points(kinds.unsigned) },
-    { type: 'points', name: HOW.literature, token: 's2', square: true, points: points(kinds.literature) },
     { type: 'errorBars', name: '95 % prediction interval', token: 's1', points: estimates.map(({ x, y, low, high }) => ({ x, y, low, high })) },
     { type: 'points', name: HOW.estimate, token: 's1', open: true, points: points(estimates) },
   ]

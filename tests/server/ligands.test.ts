@@ -142,7 +142,7 @@ describe('log K against ΣpKa', () => {
     expect(answer.line).toMatch(/No line is drawn\. 3 ligands are measured\. Accepted: At least 4/)
     expect(answer.figure!.layers.some(layer => layer.type === 'line' || layer.type === 'band')).toBe(false)
     expect(rowOf(answer, 'NEW-L').estimate).toBeNull()
-    expect(answer.figure!.layers.map(layer => layer.name)).toEqual(['signed, on the line', 'not signed', 'literature'])
+    expect(answer.figure!.layers.map(layer => layer.name)).toEqual(['literature', 'signed, on the line', 'not signed'])
   })
 
   it('leaves out a constant of another ionic strength and says why, and one of common practice', async () => {

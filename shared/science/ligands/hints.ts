@@ -32,7 +32,7 @@ function sizeHint(ion: Ion, ligand: LigandFacts, need: Need): Hint {
   const fits = radius >= cavity[0] && radius <= cavity[1]
   const span = `${inPm(cavity[0])} to ${inPm(cavity[1])} pm (from memory)`
   if (fits) return { about: 'size', leaning: 'for', reason: `${size}, within what a ring of ${ligand.ringAtoms} suits, ${span}.` }
-  return { about: 'size', leaning: 'against', reason: `${size}, ${radius < cavity[0] ? 'smaller' : 'larger'} than what a ring of ${ligand.ringAtoms} suits, ${span}; larger ions can still sit above the ring.` }
+  return { about: 'size', leaning: 'against', reason: `${size}, ${radius < cavity[0] ? 'smaller' : 'larger'} than what a ring of ${ligand.ringAtoms} suits, ${span}${radius < cavity[0] ? '' : '; it can still sit above the ring'}.` }
 }
 
 function hardnessHint(ion: Ion, ligand: LigandFacts): Hint {
@@ -59,7 +59,7 @@ function chargeHint(ion: Ion, ligand: LigandFacts): Hint {
   const charge = ionFacts(ion).charge + ligandCharge(ligand)
   if (charge === 0) return { about: 'charge', leaning: 'for', reason: 'The complex is neutral: least osmotic load.' }
   return charge < 0
-    ? { about: 'charge', leaning: 'for', reason: `The complex is an anion of charge ${charge}: strong attraction in the complex, a counter-ion in the formulation.` }
+    ? { about: 'charge', leaning: 'for', reason: `The complex is an anion of charge −${-charge}: strong attraction in the complex, a counter-ion in the formulation.` }
     : { about: 'charge', leaning: 'against', reason: `The complex is a cation of charge +${charge}: weaker attraction of the ligand and more binding of anions.` }
 }
 
