@@ -29,6 +29,8 @@ export const PERMISSIONS = {
   'agent.see': everyone,
   'agent.register': { ...none, chemist: 'programme' },
   'batch.register': { ...none, chemist: 'programme' },
+  'readiness.see': staff,
+  'readiness.enter': { ...none, chemist: 'programme' },
   'upload.stage': { ...none, chemist: 'programme' },
   'upload.confirm': { ...none, chemist: 'programme' },
   // Partners only where the lead opened raw files, and then files behind a signed number: the service looks.

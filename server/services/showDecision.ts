@@ -1,6 +1,6 @@
 import { AppError } from '../../shared/errors'
 import type { Scope } from '../../shared/permissions'
-import type { DecisionDto, DecisionRowDto, NoticeDto } from '../../shared/schemas/decision'
+import type { DecisionDto, DecisionRowDto, DecisionSnapshot, NoticeDto } from '../../shared/schemas/decision'
 import type { Deps } from '../platform/deps'
 import { agentMark } from '../queries/agentMarks'
 import { type DecisionRow, findDecision, listDecisionRows } from '../queries/decisions'
@@ -21,9 +21,15 @@ export async function showDecision(deps: Pick<Deps, 'db'>, { programmeId, isStaf
   const { snapshot, snapshotHash, ...row } = found
   const [history, notices] = await Promise.all([listDecisionRows(deps.db, programmeId, row.complexId), isStaff ? listNotices(deps.db, programmeId, id) : []])
   return {
-    ...await toRowDto(deps, programmeId, row, notices), snapshot, snapshotHash, notices: notices.map(toNoticeDto),
+    ...await toRowDto(deps, programmeId, row, notices), snapshot: isStaff ? snapshot : withoutReadiness(snapshot), snapshotHash, notices: notices.map(toNoticeDto),
     history: history.map(one => ({ id: one.id, outcome: one.outcome, by: one.personName, at: one.at.toISOString() })),
   }
+}
+
+/** What a chemist typed and nobody signs stays among the staff. */
+function withoutReadiness(snapshot: DecisionSnapshot): DecisionSnapshot {
+  const { readiness: _, ...rest } = snapshot
+  return rest
 }
 
 async function toRowDto(deps: Pick<Deps, 'db'>, programmeId: string, row: DecisionRow, notices: readonly NoticeRow[]): Promise<DecisionRowDto> {

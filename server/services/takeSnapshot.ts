@@ -8,6 +8,7 @@ import { signaturesOf } from '../queries/decisions'
 import type { ProfileVersionRow } from '../queries/profiles'
 import { readAgents } from './agentView'
 import { engineOf } from './engine'
+import { readinessOf } from './readiness'
 import { mapSeed } from './showMap'
 
 const SIGNED_ONLY = { includeUnsigned: false }
@@ -41,7 +42,7 @@ export async function takeSnapshot(db: Knex, { programmeId, agentCode, profile, 
     agent: { complexId: complex.id, code: complex.code }, placement, chances, evidence: used,
     signatures: signatures.map(({ subjectKind, subjectId, personName, at: signedAt }) => ({ subjectKind, subjectId, personName, at: signedAt.toISOString() })),
     front: placements.filter(one => one.onFront).map(one => one.code).sort(),
-    seed: mapSeed(programmeId), engine: engineOf(),
+    seed: mapSeed(programmeId), engine: engineOf(), readiness: await readinessOf(db, programmeId, complex),
     deciderSigned: signatures.some(one => one.personId === personId),
   }
 }

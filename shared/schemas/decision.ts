@@ -6,6 +6,7 @@ import type { ScreeningProfile } from '../science/placement/profile'
 import { codeOf, oneOf } from './accepted'
 import { MECHANISMS } from './agent'
 import { TOPOLOGIES } from './ligand'
+import type { FrozenReadiness } from './readiness'
 
 export const OUTCOMES = ['advance', 'hold', 'stop'] as const
 export const MIN_REASONS_LENGTH = 20
@@ -35,6 +36,8 @@ export interface DecisionSnapshot {
   front: string[]
   seed: string
   engine: { lanthorn: string, node: string, v8: string }
+  /** The readiness list as it stood; absent from decisions older than the list, and not given to those who see signed values only. */
+  readiness?: FrozenReadiness
   /** The person who decides signed some of it: the decision says so. */
   deciderSigned: boolean
 }

@@ -11,7 +11,7 @@ type Walk = (places: DemoPlaces) => string[]
 const WALKS: Readonly<Record<string, Walk>> = {
   nobody: () => ['/sign-in', '/reset', '/reset/no-such-token', '/invitation/no-such-token', '/first/no-such-token'],
   chemist: at => [
-    '/skerry/bench', '/skerry/agents', '/skerry/agents/SK-07', '/skerry/agents/new', '/skerry/agents/SK-07/change?part=ligand', '/skerry/agents/SK-07/change?part=complex', '/skerry/agents/SK-07/batch',
+    '/skerry/bench', '/skerry/agents', '/skerry/agents/SK-07', '/skerry/agents/new', '/skerry/agents/SK-07/change?part=ligand', '/skerry/agents/SK-07/change?part=complex', '/skerry/agents/SK-07/batch', '/skerry/agents/SK-07/readiness',
     '/skerry/series', '/skerry/series/new', `/skerry/series/new?upload=${at.staged}`, `/skerry/series/${at.series}`, '/skerry/instruments', `/skerry/instruments/${at.instrument}`, '/skerry/sheets', '/skerry/sheets/new', `/skerry/sheets/${at.sheet}`, '/skerry/records', '/skerry/records/new', `/skerry/records/${at.record}`, `/skerry/records/${at.record}/change`, '/skerry/library',
   ],
   physicist: at => ['/skerry/bench', '/skerry/checks', `/skerry/checks/fit/${at.waitingFit}`, `/skerry/checks/record/${at.waitingRecord}`, `/skerry/checks/batchVersion/${at.batchVersion}`, '/skerry/stability', '/skerry/stability/SK-07', '/skerry/ligands', '/skerry/ligands?metal=Zn&library=1'],
