@@ -16,6 +16,7 @@ import { agentBody, batchPayload } from './bodies'
 import { decideOn, saveStartingProfile } from './decisions'
 import { type Institute, makeInstitute } from './institute'
 import { DEMO_RECORDS, type DemoRecord } from './records'
+import { enterReadinessLists } from './readiness'
 import { DEMO_FILES } from './series'
 import { measure } from './measure'
 import { signAs } from './sign'
@@ -46,6 +47,7 @@ export async function loadDemo(deps: DemoDeps, readFile: ReadDemoFile): Promise<
     preset: { name: 'Bay 3, inversion recovery in plasma', kind: 'relax.t1.ir', conditions: { instrument: 'Bay 3', b0_T: 3, temperature_K: 310.15, pH: 7.4, medium: 'plasma', timing: 'longTr', signalForm: 'signed', concBasis: 'icp', concScaleError_frac: 0.015 } },
   })
   await nameReference(deps, institute)
+  await enterReadinessLists(deps, institute)
   for (const file of [...DEMO_FILES].sort((a, b) => (a.day < b.day ? -1 : 1))) {
     deps.clock.set(at(file.day, 10))
     await measure(deps, institute, file, await readFile(file.fileName))
