@@ -11,6 +11,7 @@ import { demoFileText } from '../../db/seeds/demo/forward'
 import { emptyHalfLoaded, isHalfLoaded } from '../../db/seeds/demo/halfLoaded'
 import { loadDemo } from '../../db/seeds/demo/loadDemo'
 import { DEMO_FILES, TRY_FILE } from '../../db/seeds/demo/series'
+import { DEMO_TITRATIONS, titrationText } from '../../db/seeds/demo/titrations'
 import { countJobs } from '../../server/queries/jobs'
 import { countPersons } from '../../server/queries/persons'
 import { listDecisions } from '../../server/services/showDecision'
@@ -25,9 +26,9 @@ const folder = new URL('../../fixtures/demo/', import.meta.url)
 
 describe('raw files of the demonstration', () => {
   it('are what the seeded script writes, byte for byte', async () => {
-    const files = [...DEMO_FILES, TRY_FILE]
+    const files = [...[...DEMO_FILES, TRY_FILE].map(file => ({ fileName: file.fileName, text: demoFileText(file) })), ...DEMO_TITRATIONS.map(file => ({ fileName: file.fileName, text: titrationText(file) }))]
     expect((await readdir(folder)).sort()).toEqual(files.map(one => one.fileName).sort())
-    for (const file of files) expect(await readFile(new URL(file.fileName, folder), 'utf8'), file.fileName).toBe(demoFileText(file))
+    for (const file of files) expect(await readFile(new URL(file.fileName, folder), 'utf8'), file.fileName).toBe(file.text)
   })
 })
 
@@ -45,6 +46,8 @@ describe('the demonstration', () => {
     const lane = (code: string) => placed.find(one => one.code === code)!.lane
     expect(placed.filter(one => one.lane === 'plane').length).toBeGreaterThanOrEqual(10)
     expect([lane('SK-08'), lane('SK-15'), lane('SK-16')]).toEqual(['neither', 'concentrationMissing', 'lossMissing'])
+    const { value } = map.agents.find(agent => agent.code === 'SK-05')!.evidence.find(item => item.quantity === 'logK' && item.origin.kind === 'fit')!
+    expect(Math.abs(value.value - 13.1)).toBeLessThan(3 * value.se!)
     expect(placed.find(one => one.code === 'SK-11')!.loss_frac!.kind).toBe('<')
     expect(placed.find(one => one.code === 'SK-06')!.limits.find(one => one.key === 'freeMetal')!.outcome).toBe('over')
     expect(placed.find(one => one.code === 'SK-10')!.split.length).toBeGreaterThan(1)

@@ -5,6 +5,7 @@ import type { AnalysisInput, AnalysisOutcome } from '#shared/measurements/types'
 import { understandTable } from '#shared/measurements/tabular/understand'
 import { demoFileText } from '../../db/seeds/demo/forward'
 import { DEMO_FILES } from '../../db/seeds/demo/series'
+import { DEMO_TITRATIONS, titrationText } from '../../db/seeds/demo/titrations'
 
 const TRUTH = Object.fromEntries(DEMO_FILES.flatMap(file => file.parts.map(part => [file.fileName, part.r_per_mM_s])))
 
@@ -119,6 +120,7 @@ describe('of which kind a file is', () => {
   const guessed = (text: string): string | undefined => guessKind(new TextEncoder().encode(text), kinds)?.kind
   it('is read off its words, for every file of the demonstration', () => {
     for (const file of DEMO_FILES) expect([file.fileName, guessed(demoFileText(file))]).toEqual([file.fileName, file.kind])
+    for (const file of DEMO_TITRATIONS) expect([file.fileName, guessed(titrationText(file))]).toEqual([file.fileName, file.kind])
   })
   it('and for every template', () => {
     for (const kind of kinds) for (const { fileName, text } of kind.templates) expect([fileName, guessed(text)]).toEqual([fileName, kind.kind])

@@ -20,6 +20,7 @@ import { enterReadinessLists } from './readiness'
 import { DEMO_FILES } from './series'
 import { measure } from './measure'
 import { signAs } from './sign'
+import { DEMO_TITRATIONS } from './titrations'
 
 export interface DemoDeps extends WorkerDeps { clock: ReturnType<typeof fixedClock> }
 
@@ -48,7 +49,7 @@ export async function loadDemo(deps: DemoDeps, readFile: ReadDemoFile): Promise<
   })
   await nameReference(deps, institute)
   await enterReadinessLists(deps, institute)
-  for (const file of [...DEMO_FILES].sort((a, b) => (a.day < b.day ? -1 : 1))) {
+  for (const file of [...DEMO_FILES, ...DEMO_TITRATIONS].sort((a, b) => (a.day < b.day ? -1 : 1))) {
     deps.clock.set(at(file.day, 10))
     await measure(deps, institute, file, await readFile(file.fileName))
     await decideOn(deps, institute, { profileVersionId: profile.id, after: file.fileName })

@@ -10,11 +10,11 @@ import { UploadDraft } from '../../../shared/measurements/draft'
 import { seriesTubes } from '../../../server/queries/series'
 import type { Institute } from './institute'
 import type { DemoDeps } from './loadDemo'
-import type { DemoFile } from './series'
+import type { DemoUpload } from './series'
 import { returnAs, signAs } from './sign'
 
 /** One raw file all the way: staged, previewed, stored, fitted, and what became of it. */
-export async function measure(deps: DemoDeps, institute: Institute, file: DemoFile, bytes: Uint8Array): Promise<void> {
+export async function measure(deps: DemoDeps, institute: Institute, file: DemoUpload, bytes: Uint8Array): Promise<void> {
   const { programmeId, people } = institute
   const actor = people[file.by]
   const staged = await stageUpload(deps, { actor, programmeId, files: [{ fileName: file.fileName, bytes }] })
@@ -28,7 +28,7 @@ export async function measure(deps: DemoDeps, institute: Institute, file: DemoFi
   await drainJobs(deps, JOBS, programmeId)
 }
 
-interface Followed { file: DemoFile, seriesId: string }
+interface Followed { file: DemoUpload, seriesId: string }
 
 async function follow(deps: DemoDeps, institute: Institute, { file, seriesId }: Followed): Promise<void> {
   const { programmeId, people } = institute

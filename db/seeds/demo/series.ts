@@ -5,12 +5,21 @@ export type DemoLayout = 'long' | 'columnPerTube' | 'rowPerTube'
 /** One agent's tubes in a file. `spoiled`: one tube that was not what its label says, as a factor on its concentration. */
 export interface DemoPart { agent: string, lot: string, r_per_mM_s: number, concs_mM: readonly number[], spoiled?: { conc_mM: number, factor: number } }
 
+/** A raw file whatever was measured: what of it goes through upload, fit and check. */
+export interface DemoUpload {
+  fileName: string
+  kind: string
+  parts: readonly Pick<DemoPart, 'agent' | 'lot' | 'spoiled'>[]
+  by: DemoPersonKey
+  day: string
+  fate: 'signed' | 'waiting' | 'returned' | 'draft' | 'leaveOutAndSign'
+}
+
 /**
  * One raw file of the demonstration: what was in the tubes, how it was measured, how the table is laid out, and what became of it.
  * All values are invented; the signals follow from the forward model with seeded noise.
  */
-export interface DemoFile {
-  fileName: string
+export interface DemoFile extends DemoUpload {
   kind: 'relax.t1.ir' | 'relax.t1.sr' | 'relax.t1.ll' | 'relax.t1.vfa' | 'relax.t2.echo' | 'relax.fitted'
   parts: readonly DemoPart[]
   rateDia_per_s: number
@@ -25,9 +34,6 @@ export interface DemoFile {
   noise_au: number
   /** T1 of the instrument's reference tube in this session; left out: the tube was not there. */
   referenceT1_s?: number
-  by: DemoPersonKey
-  day: string
-  fate: 'signed' | 'waiting' | 'returned' | 'draft' | 'leaveOutAndSign'
 }
 
 const PLASMA_3T = (instrument: string, form: string, date: string) => [
