@@ -27,6 +27,7 @@ export const EVIDENCE_GROUPS = {
   exchange: 'Exchange',
   equilibrium: 'Equilibrium',
   kinetics: 'Dissociation',
+  formation: 'Formation',
   batch: 'Batch',
 } as const
 export type EvidenceGroup = keyof typeof EVIDENCE_GROUPS
@@ -86,6 +87,10 @@ export const EVIDENCE_QUANTITIES: Readonly<Record<string, EvidenceQuantity>> = O
   defineEvidence({ id: 'halfLifeAcid_s', label: 'Half-life in acid', base: 't', sub: '1/2', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: ['temperature_K'] }),
   defineEvidence({ id: 'zincPhosphateRatio', label: 'Zinc-phosphate ratio at 72 h', base: 'R', sub: '1,72 h', unit: '', dimension: 'none', digits: decimals(2), better: 'higher', group: 'kinetics', needs: [] }),
   defineEvidence({ id: 'zincPhosphateTime080_s', label: 'Zinc-phosphate time to 0.80', base: 't', sub: '0.80', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: [] }),
+  fraction('intactInChallenge_frac', 'Intact in the challenge', 'higher', 'kinetics'),
+  defineEvidence({ id: 'halfLifeChallenge_s', label: 'Half-life in the challenge', base: 't', sub: '1/2', unit: 's', dimension: 'time', digits: significant(2), better: 'higher', group: 'kinetics', needs: ['temperature_K'] }),
+  defineEvidence({ id: 'kOH_per_M_s', label: 'Formation with hydroxide', base: 'k', sub: 'OH', unit: 'M^-1 s^-1', dimension: 'rateSecondOrder', digits: significant(2), better: 'higher', group: 'formation', needs: ['temperature_K'] }),
+  defineEvidence({ id: 'formationTime99_s', label: 'Time to 99 % bound', base: 't', sub: '99', unit: 's', dimension: 'time', digits: significant(2), better: 'lower', group: 'formation', needs: ['temperature_K', 'pH'] }),
   fraction('freeMetal_frac', 'Free metal in the batch', 'lower', 'batch'),
 ].map(quantity => [quantity.id, quantity]))
 

@@ -9,7 +9,7 @@ import { EvidenceDraft } from '../../shared/evidence/types'
 import { PUBLISHED, rateLawEntry, thermoEntry } from '../support/publishedRecords'
 
 const context: RecordContext = { metal: 'Gd', ligandProtonation: null }
-const { thermo, rateLaw, acidHalfLife, zincPhosphateRatio } = RECORD_KINDS as Record<string, NonNullable<(typeof RECORD_KINDS)[string]>>
+const { thermo, rateLaw, acidHalfLife, zincPhosphateRatio, challenge, formation } = RECORD_KINDS as Record<string, NonNullable<(typeof RECORD_KINDS)[string]>>
 const emitted = (kind: NonNullable<typeof thermo>, entry: RecordEntry, ctx = context) => {
   expect(validateEntry(kind, entry, ctx)).toEqual([])
   return Object.fromEntries(kind.emits(entry, ctx).map(draft => [draft.quantity, EvidenceDraft.parse(draft)]))
@@ -127,5 +127,45 @@ describe('half-life in acid and the zinc–phosphate index as records', () => {
     const entry: RecordEntry = { ...index, ratioAt72h: { type: 'quantity', kind: '=', value: 0.97, se: 0.01, unit: '' } }
     expect(validateEntry(zincPhosphateRatio!, entry, { ...context, metal: 'Eu' })).toEqual([expect.objectContaining({ field: 'measuredOn', accepted: 'its gadolinium analogue' })])
     expect(validateEntry(zincPhosphateRatio!, { ...entry, measuredOn: { type: 'choice', choice: 'analogue' } }, { ...context, metal: 'Eu' })).toEqual([])
+  })
+})
+
+describe('a challenge as a record', () => {
+  const conditions: RecordEntry = { against: { type: 'choice', choice: 'serum' }, temperature_K: { type: 'number', value: 37, unit: '°C' } }
+  it('keeps a share above the detection limit as a bound, with its time, and a half-life beside it', () => {
+    const evidence = emitted(challenge!, { ...conditions, intact: { type: 'quantity', kind: '>', value: 98, se: null, unit: '%' }, after_s: { type: 'number', value: 72, unit: 'h' }, halfLife: { type: 'quantity', kind: '>', value: 100, se: null, unit: 'd' } })
+    expect(evidence.intactInChallenge_frac!.value).toMatchObject({ value: 0.98, kind: '>', se: null })
+    expect(evidence.intactInChallenge_frac!.conditions).toMatchObject({ against: 'serum', after_s: 259_200, temperature_K: 310.15 })
+    expect(evidence.halfLifeChallenge_s!.value).toMatchObject({ value: 8_640_000, kind: '>' })
+  })
+  it.each([
+    ['neither value', {}, 'intact'],
+    ['a share without its time', { intact: { type: 'quantity', kind: '=', value: 40, se: 2, unit: '%' } }, 'after_s'],
+    ['a competitor without a name', { halfLife: { type: 'quantity', kind: '=', value: 3, se: null, unit: 'h' }, against: { type: 'choice', choice: 'ligand' } }, 'competitor'],
+    ['more than all', { intact: { type: 'quantity', kind: '=', value: 140, se: 2, unit: '%' }, after_s: { type: 'number', value: 1, unit: 'h' } }, 'intact'],
+  ] as const)('is refused for %s', (_, more, field) => {
+    expect(validateEntry(challenge!, { ...conditions, ...more } as RecordEntry, context).map(problem => problem.field)).toContain(field)
+  })
+  it('says in one line what was challenged how', () => {
+    const entry: RecordEntry = { against: { type: 'choice', choice: 'ligand' }, competitor: { type: 'text', text: 'EDTA' }, equivalents: { type: 'number', value: 100, unit: '' }, temperature_K: { type: 'number', value: 37, unit: '°C' }, intact: { type: 'quantity', kind: '=', value: 91.5, se: 0.8, unit: '%' }, after_s: { type: 'number', value: 24, unit: 'h' } }
+    expect(challenge!.summarise(entry, context)).toBe('91.50 ± 0.80\u00A0% intact after 24\u00A0h')
+    expect(challenge!.describe(conditionsOf(challenge!, entry))).toBe('100 equivalents of EDTA, 37\u00A0°C')
+  })
+})
+
+describe('formation as a record', () => {
+  const conditions: RecordEntry = { temperature_K: { type: 'number', value: 25, unit: '°C' } }
+  it('gives the rate constant with hydroxide and the time to 99 % with its pH and excess', () => {
+    const evidence = emitted(formation!, {
+      ...conditions, rateOH: { type: 'quantity', kind: '=', value: 5.9e6, se: 2e5, unit: 'M^-1 s^-1' }, time99: { type: 'quantity', kind: '<', value: 10, se: null, unit: 'min' },
+      pH: { type: 'number', value: 5.5, unit: '' }, excess: { type: 'number', value: 20, unit: '' },
+    })
+    expect(evidence.kOH_per_M_s!.value).toMatchObject({ value: 5.9e6, se: 2e5 })
+    expect(evidence.formationTime99_s!.value).toMatchObject({ value: 600, kind: '<' })
+    expect(evidence.formationTime99_s!.conditions).toMatchObject({ pH: 5.5, excess: 20, temperature_K: 298.15 })
+  })
+  it('refuses a time to 99 % without pH or excess, and a record without a value', () => {
+    expect(validateEntry(formation!, { ...conditions, time99: { type: 'quantity', kind: '=', value: 10, se: null, unit: 'min' } }, context).map(problem => problem.field)).toEqual(['pH', 'excess'])
+    expect(validateEntry(formation!, conditions, context).map(problem => problem.field)).toEqual(['rateOH'])
   })
 })
