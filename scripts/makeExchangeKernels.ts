@@ -9,8 +9,6 @@
 import { writeFileSync } from 'node:fs'
 import { fileURLToPath } from 'node:url'
 
-const POOLS = [2, 3, 4]
-
 class Layout {
   readonly n: number
   readonly size: number
@@ -163,7 +161,7 @@ function steady(l: Layout): string {
   const lines: string[] = []
   let count = 0
   const back: string[] = []
-  for (let i = 0; i < l.n; i++) lines.push(`  let r${i} = ${l.isNegative(i) ? '-' : ''}right[${i}]!`)
+  const changed = new Set<number>()
   order.forEach((pivot, step) => {
     const later = order.slice(step + 1).filter(j => names.has(key(pivot, j)))
     lines.push(`  const p${pivot} = 1 / ${names.get(key(pivot, pivot))!}`)
@@ -181,12 +179,16 @@ function steady(l: Layout): string {
         names.set(key(i, j), fresh)
       }
     })
-    later.forEach((j, b) => lines.push(`  r${j} -= ${factors[b]!} * r${pivot}`))
+    later.forEach((j, b) => {
+      lines.push(`  r${j} -= ${factors[b]!} * r${pivot}`)
+      changed.add(j)
+    })
     back.unshift(`  const x${pivot} = r${pivot} * p${pivot}${later.map((j, b) => ` - ${factors[b]!} * x${j}`).join('')}`)
   })
   return `/** Solves F·out = right for the matrix of the equations, whose rates R1 and R2 must be above zero. */
 export function solveSparse(out: ${M}, a: ${M}, right: ${M}): void {
 ${load(l, 'a', (i, j) => l.isFilled(i, j)).join('\n')}
+${Array.from({ length: l.n }, (_, i) => `  ${changed.has(i) ? 'let' : 'const'} r${i} = ${l.isNegative(i) ? '-' : ''}right[${i}]!`).join('\n')}
 ${lines.join('\n')}
 ${back.join('\n')}
 ${Array.from({ length: l.n }, (_, i) => `  out[${i}] = x${i}`).join('\n')}
@@ -194,11 +196,18 @@ ${Array.from({ length: l.n }, (_, i) => `  out[${i}] = x${i}`).join('\n')}
 `
 }
 
-for (const pools of POOLS) {
+/** Text of the kernel for so many pools, water included. */
+export function kernelSource(pools: number): string {
   const l = new Layout(pools)
-  const text = `/* eslint-disable max-lines */
+  return `/* eslint-disable max-lines */
 /** Written by scripts/makeExchangeKernels.ts, which says what the arrays mean: change that, not this. ${pools} pools, ${l.n} × ${l.n}, ${l.size} numbers a matrix. */
 
 ${[square, powers, powersDerivative, fold, foldBoth, squareDerivative, apply, steady].map(make => make(l)).join('\n')}`
-  writeFileSync(fileURLToPath(new URL(`../shared/science/exchange/kernel${pools}.ts`, import.meta.url)), text)
+}
+
+export const KERNEL_POOLS = [2, 3, 4]
+export const kernelFile = (pools: number): string => fileURLToPath(new URL(`../shared/science/exchange/kernel${pools}.ts`, import.meta.url))
+
+if (process.argv[1] === fileURLToPath(import.meta.url)) {
+  for (const pools of KERNEL_POOLS) writeFileSync(kernelFile(pools), kernelSource(pools))
 }

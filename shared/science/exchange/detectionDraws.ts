@@ -113,16 +113,16 @@ function pictureOf({ agent, tissue, setting }: DetectionInput): (conc_mM: number
   const perMM = protonFraction(agent.protons, 1) * exchangeLine(agent, square, agent.shift_ppm * perPpm - place)
   const { macromolecules: macro } = tissue
   const broad = macro ? macro.ratio * exchangeLine({ exchange_per_s: macro.exchange_per_s, rate2_per_s: 1 / macro.t2_s }, square, -place) : 0
-  return (conc) => {
-    const rate1 = tissue.rate1_per_s + agent.r1_per_mM_s * conc
-    const rate = rate1 * cosSquare + (tissue.rate2_per_s + agent.r2_per_mM_s * conc) * (1 - cosSquare) + perMM * conc + broad
+  return (conc_mM) => {
+    const rate1 = tissue.rate1_per_s + agent.r1_per_mM_s * conc_mM
+    const rate = rate1 * cosSquare + (tissue.rate2_per_s + agent.r2_per_mM_s * conc_mM) * (1 - cosSquare) + perMM * conc_mM + broad
     const decay: Decay = { cosSquare, rate1_per_s: rate1, duration_s: setting.duration_s, initial_frac: 1 }
     return zOfRate(rate, decay)
   }
 }
 
 /** Where the full equations were solved, and their Z over that of the picture. */
-interface Known { readonly conc: number, readonly factor: number }
+interface Known { readonly conc_mM: number, readonly factor: number }
 
 /** @returns the concentration, or ∞ where the drop is not reached */
 function solveDraw(input: DetectionInput, grid: Float64Array): number {
@@ -130,12 +130,12 @@ function solveDraw(input: DetectionInput, grid: Float64Array): number {
   const zWithout = tissueZ(input, 0)
   const target = zWithout - input.setting.drop_points / 100
   const values = grid.map(picture)
-  let low: Known = { conc: 0, factor: zWithout / picture(0) }
+  let low: Known = { conc_mM: 0, factor: zWithout / picture(0) }
   let high: Known | null = null
   let isLost = false
   let before = Infinity
   for (let turn = 0; turn < MOST_TURNS; turn++) {
-    const corrected = (conc: number, z: number) => z * factorAt(low, high, conc)
+    const corrected = (conc_mM: number, z: number) => z * factorAt(low, high, conc_mM)
     let i = 0
     while (i < grid.length && corrected(grid[i]!, values[i]!) > target) i++
     const isFound = i < grid.length
@@ -144,12 +144,12 @@ function solveDraw(input: DetectionInput, grid: Float64Array): number {
       if (corrected(grid[lowest]!, values[lowest]!) - target > NEARLY * (zWithout - target)) return Infinity
       break
     }
-    const conc = isFound ? cross(c => corrected(c, picture(c)) - target, i === 0 ? 0 : grid[i - 1]!, grid[i]!) : grid[lowest]!
-    if (isFound && Math.abs(conc - before) <= SETTLED * conc) return conc
-    before = isFound ? conc : Infinity
+    const conc_mM = isFound ? cross(c => corrected(c, picture(c)) - target, i === 0 ? 0 : grid[i - 1]!, grid[i]!) : grid[lowest]!
+    if (isFound && Math.abs(conc_mM - before) <= SETTLED * conc_mM) return conc_mM
+    before = isFound ? conc_mM : Infinity
     isLost = !isFound
-    const z = tissueZ(input, conc)
-    const known = { conc, factor: z / picture(conc) }
+    const z = tissueZ(input, conc_mM)
+    const known = { conc_mM, factor: z / picture(conc_mM) }
     low = high ?? low
     high = known
   }
@@ -159,20 +159,20 @@ function solveDraw(input: DetectionInput, grid: Float64Array): number {
   return full.kind === 'reached' ? full.conc_mM : Infinity
 }
 
-function factorAt(low: Known, high: Known | null, conc: number): number {
-  if (high === null || high.conc === low.conc) return (high ?? low).factor
-  const share = Math.min(1, Math.max(0, (conc - low.conc) / (high.conc - low.conc)))
+function factorAt(low: Known, high: Known | null, conc_mM: number): number {
+  if (high === null || high.conc_mM === low.conc_mM) return (high ?? low).factor
+  const share = Math.min(1, Math.max(0, (conc_mM - low.conc_mM) / (high.conc_mM - low.conc_mM)))
   return low.factor + share * (high.factor - low.factor)
 }
 
-function lowestOf(grid: Float64Array, values: Float64Array, corrected: (conc: number, z: number) => number): number {
+function lowestOf(grid: Float64Array, values: Float64Array, corrected: (conc_mM: number, z: number) => number): number {
   let best = 0
   for (let i = 1; i < grid.length; i++) if (corrected(grid[i]!, values[i]!) < corrected(grid[best]!, values[best]!)) best = i
   return best
 }
 
 /** Zero of a function that is above it at `from` and not at `to`. */
-function cross(f: (conc: number) => number, from: number, to: number): number {
+function cross(f: (conc_mM: number) => number, from: number, to: number): number {
   let [low, high] = [from, to]
   for (let turn = 0; turn < 40 && high - low > 1e-9 * high; turn++) {
     const middle = 0.5 * (low + high)

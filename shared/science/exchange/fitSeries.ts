@@ -11,6 +11,7 @@ import { omega1_rad_per_s } from './transferForms'
 import { ppmToRadPerS } from './poolSystem'
 import { exactExp } from '../exactMath'
 import { seriesProblem, type Cause, type SeriesProblem, type UsedSpectrum } from './seriesProblem'
+import { seriesFlags } from './seriesFlags'
 import { findStarts } from './seriesStart'
 import type { CarriedError, SeriesFitDone, SeriesFitOptions, SeriesModel, SeriesParameter, SeriesSpectrum, SeriesTube } from './seriesTypes'
 import { cwSpectrum } from './spectrum'
@@ -27,8 +28,8 @@ const SAME_MINIMUM = 1e-2
 const LAST_TOLERANCE = 1e-3
 /** Amplitude of the nutation of water above which a point is left out. Common practice, no source: about the scatter of a good spectrum. */
 const NUTATION = 0.003
-const COARSE_POLISH = 0
 const LAST_POLISH = 1
+const MOST_EVALUATIONS = 60
 
 export const SERIES_ASSUMPTIONS = 'Bloch–McConnell equations of water and pools that exchange with it alone, constant irradiation, any saturation time; one set of pools for all tubes but where a quantity is fitted per tube; B1 the same over the region.'
 
@@ -88,14 +89,16 @@ function searchAll(problem: SeriesProblem, starts: readonly Float64Array[], { ma
   const solutions = starts
     .map(start => ({ inner: Float64Array.from(layout.coordinates, (one, j) => toInner(one, start[j]!)), cost: costOf(layout, some, start) }))
     .filter(one => one.cost < Infinity).sort((a, b) => a.cost - b.cost).slice(0, SEARCHED)
-    .map(one => solve(coarse, one.inner, { reductionTolerance: COARSE_TOLERANCE, stepTolerance: COARSE_TOLERANCE, polishSteps: COARSE_POLISH, maxEvaluations: maxEvaluations ?? 60 }))
+    .map(one => solve(coarse, one.inner, { reductionTolerance: COARSE_TOLERANCE, stepTolerance: COARSE_TOLERANCE, polishSteps: 0, maxEvaluations: maxEvaluations ?? MOST_EVALUATIONS }))
     .filter(one => one.stop !== 'notFinite').sort((a, b) => a.sumOfSquares - b.sumOfSquares)
   const nearest = solutions[0]
   if (!nearest) return null
-  const best = solve(problem, nearest.parameters, { reductionTolerance: LAST_TOLERANCE, stepTolerance: LAST_TOLERANCE, polishSteps: LAST_POLISH, maxEvaluations: maxEvaluations ?? 60 })
+  const quick = solve(problem, nearest.parameters, { reductionTolerance: LAST_TOLERANCE, stepTolerance: LAST_TOLERANCE, polishSteps: LAST_POLISH, maxEvaluations: maxEvaluations ?? MOST_EVALUATIONS })
+  // Not yet stationary, as where two pools overlap: on to the engine's own tolerances.
+  const best = quick.converged || quick.stop === 'notFinite' ? quick : solve(problem, quick.parameters, { maxEvaluations: maxEvaluations ?? MOST_EVALUATIONS })
   if (best.stop === 'notFinite') return null
   return {
-    best, tried: solutions.length, evaluations: best.evaluations,
+    best, tried: solutions.length, evaluations: best === quick ? quick.evaluations : quick.evaluations + best.evaluations,
     agree: solutions.filter(one => one.sumOfSquares <= nearest.sumOfSquares * (1 + SAME_MINIMUM) + Number.MIN_VALUE).length,
   }
 }
@@ -145,7 +148,7 @@ function report(problem: SeriesProblem, spectra: readonly SeriesSpectrum[], { be
     carried: inner.map(({ source, change }) => ({ source, change: layout.coordinates.map((one, j) => one.isLog ? outer[j]! * change[j]! : change[j]!) })),
     points: problem.n, dof, intervalDof, level, sigmaUsed: isKnown ? 'known' : 'estimated', sigma: isKnown ? null : Math.sqrt(factor), reducedChi2: isKnown ? best.sumOfSquares / dof : null,
     rss: residuals.flat().reduce<number>((sum, e) => sum + (e ?? 0) ** 2, 0), condition: information.condition, noInterval, evaluations, stop: best.stop, converged: best.converged,
-    starts: { tried, agree }, fitted, residuals,
+    starts: { tried, agree }, flags: seriesFlags(layout, problem.spectra, outer, { tried, agree }), fitted, residuals,
     leftOutNearWater: spectra.reduce((sum, one, s) => sum + one.z.length - new Set(one.exclude ?? []).size - problem.spectra[s]!.used.length, 0),
     assumptions: SERIES_ASSUMPTIONS,
   }

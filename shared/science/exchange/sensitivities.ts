@@ -10,8 +10,8 @@ import { ppmToRadPerS, type Block, type PoolSystem } from './poolSystem'
 import { omega1_rad_per_s } from './transferForms'
 
 /** Columns of the derivatives: these, then five for each solute. */
-export const COLUMN = { waterRate1: 0, waterRate2: 1, waterShift: 2, b1: 3 } as const
-export const SOLUTE_COLUMN = { shift: 0, rate1: 1, rate2: 2, exchange: 3, ratio: 4 } as const
+export const COLUMN = { waterRate1: 0, waterRate2: 1, waterShift: 2, irradiation: 3 } as const
+export const SOLUTE_COLUMN = { shift: 0, longitudinal: 1, transverse: 2, exchange: 3, ratio: 4 } as const
 export const soluteColumn = (solute: number, which: keyof typeof SOLUTE_COLUMN): number => 4 + 5 * solute + SOLUTE_COLUMN[which]
 export const columnCount = (solutes: number): number => 4 + 5 * solutes
 
@@ -115,11 +115,11 @@ function gather(state: Propagator, system: PoolSystem, { found, initial, perPpm,
     for (let axis = 0; axis < 3; axis++) byCoupling += entry(state, found, axis, o + axis) + entry(state, found, o + axis, axis)
     const byRoot = k * byCoupling - w[o + 2]! * r1 + y[o + 2]! * initial
     out[first] = byShift
-    out[first + SOLUTE_COLUMN.rate1 * count] = byRate1
-    out[first + SOLUTE_COLUMN.rate2 * count] = byRate2
+    out[first + SOLUTE_COLUMN.longitudinal * count] = byRate1
+    out[first + SOLUTE_COLUMN.transverse * count] = byRate2
     out[first + SOLUTE_COLUMN.exchange * count] = root * byCoupling - trace(state, found, o) - root * root * ofWater
     out[first + SOLUTE_COLUMN.ratio * count] = byRoot / (2 * root) - k * ofWater
   }
   out[COLUMN.waterShift * count + at] = byShifts
-  out[COLUMN.b1 * count + at] = omega1_rad_per_s(1) * byRotation
+  out[COLUMN.irradiation * count + at] = omega1_rad_per_s(1) * byRotation
 }

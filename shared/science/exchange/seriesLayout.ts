@@ -90,7 +90,7 @@ function slotsOf({ water, pools }: SeriesModel): Slot[] {
 /** Column of the sensitivities that belongs to a slot: the order of the slots is theirs but for B1. */
 export function columnOf(slot: Slot): number {
   if (slot.pool < 0) return slot.name === 'rate1_per_s' ? COLUMN.waterRate1 : slot.name === 'rate2_per_s' ? COLUMN.waterRate2 : COLUMN.waterShift
-  const which = { shift_ppm: 'shift', rate1_per_s: 'rate1', rate2_per_s: 'rate2', exchange_per_s: 'exchange', ratio_per_mM: 'ratio' } as const
+  const which = { shift_ppm: 'shift', rate1_per_s: 'longitudinal', rate2_per_s: 'transverse', exchange_per_s: 'exchange', ratio_per_mM: 'ratio' } as const
   return soluteColumn(slot.pool, which[slot.name as keyof typeof which])
 }
 

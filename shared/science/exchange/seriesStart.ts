@@ -35,18 +35,18 @@ export function findStarts(layout: SeriesLayout, spectra: readonly UsedSpectrum[
   const { coordinates, model } = layout
   if (coordinates.every(one => one.start !== null)) return [Float64Array.from(coordinates, one => one.start!)]
   const rates = isOpen(model.water.rate1_per_s) ? RATE1_GRID : [startOf(model.water.rate1_per_s, 0.5)]
-  const guesses = rates.flatMap(rate1 => search(layout, pointsOf(layout, spectra, rate1), rate1))
+  const guesses = rates.flatMap(rate1_per_s => search(layout, pointsOf(layout, spectra, rate1_per_s), rate1_per_s))
   return guesses.sort((a, b) => a.cost - b.cost).map(guess => coordinatesOf(layout, guess))
 }
 
-function pointsOf(layout: SeriesLayout, spectra: readonly UsedSpectrum[], rate1: number): Point[] {
+function pointsOf(layout: SeriesLayout, spectra: readonly UsedSpectrum[], rate1_per_s: number): Point[] {
   const perPpm = ppmToRadPerS(layout.model.field_T)
   const held = layout.model.water.rate1_per_s
   const water = startOf(layout.model.water.shift_ppm, 0)
   const points: Point[] = []
   for (const { spectrum, offsets_ppm, z, weights } of spectra) {
     const square = omega1_rad_per_s(b1Of(spectrum, layout.tubes)) ** 2
-    const own = held.kind === 'held' && typeof held.value !== 'number' ? held.value[spectrum.tube]! : rate1
+    const own = held.kind === 'held' && typeof held.value !== 'number' ? held.value[spectrum.tube]! : rate1_per_s
     for (let i = 0; i < z.length; i++) {
       const distance = offsets_ppm[i]! - water
       if (Math.abs(distance) < NEAR_WATER_ppm) continue
@@ -63,7 +63,7 @@ function pointsOf(layout: SeriesLayout, spectra: readonly UsedSpectrum[], rate1:
 }
 
 /** Best guess and its neighbours in exchange rate. */
-function search(layout: SeriesLayout, points: readonly Point[], rate1: number): Guess[] {
+function search(layout: SeriesLayout, points: readonly Point[], rate1_per_s: number): Guess[] {
   const { model } = layout
   const pools = model.pools.map((pool): PoolGuess => ({
     shift_ppm: startOf(pool.shift_ppm, 0), exchange_per_s: startOf(pool.exchange_per_s, 500), rate2_per_s: startOf(pool.rate2_per_s, SOLUTE_RATE2_per_s), ratio_per_mM: startOf(pool.ratio_per_mM, 1e-5),
@@ -78,9 +78,9 @@ function search(layout: SeriesLayout, points: readonly Point[], rate1: number): 
   if (model.pools.every(pool => isOpen(pool.shift_ppm) && pool.shift_ppm.kind === 'fitted' && pool.shift_ppm.min === undefined && pool.shift_ppm.max === undefined)) {
     pools.sort((a, b) => b.shift_ppm - a.shift_ppm)
   }
-  const best = solveLinear(layout, points, pools, rate1)
+  const best = solveLinear(layout, points, pools, rate1_per_s)
   const others = pools.flatMap((pool, p) => isOpen(model.pools[p]!.exchange_per_s)
-    ? NEIGHBOURS.map(by => solveLinear(layout, points, pools.map((one, q) => q === p ? { ...pool, exchange_per_s: pool.exchange_per_s * by } : one), rate1))
+    ? NEIGHBOURS.map(by => solveLinear(layout, points, pools.map((one, q) => q === p ? { ...pool, exchange_per_s: pool.exchange_per_s * by } : one), rate1_per_s))
     : [])
   return [best, ...others]
 }
@@ -163,7 +163,7 @@ function orthonormal(columns: readonly Float64Array[]): Float64Array[] {
 }
 
 /** R2 of water and ratios, none below zero, by coordinate descent: a convex problem of a handful of unknowns. */
-function solveLinear(layout: SeriesLayout, points: readonly Point[], pools: readonly PoolGuess[], rate1: number): Guess {
+function solveLinear(layout: SeriesLayout, points: readonly Point[], pools: readonly PoolGuess[], rate1_per_s: number): Guess {
   const water = waterColumns(layout, points)
   const columns = [...water, ...pools.map(one => lineOf(layout, points, one))]
   const start = [...water.map(() => 0), ...pools.map((one, p) => isOpen(layout.model.pools[p]!.ratio_per_mM) ? 0 : one.ratio_per_mM)]
@@ -183,7 +183,7 @@ function solveLinear(layout: SeriesLayout, points: readonly Point[], pools: read
     })
   }
   const tubes = layout.tubes.map((_, tube) => start[water.length === 1 ? 0 : tube]!)
-  return { rate1_per_s: rate1, rate2_per_s: tubes, pools: pools.map((one, p) => ({ ...one, ratio_per_mM: start[water.length + p]! })), cost: dot(rest, rest) }
+  return { rate1_per_s, rate2_per_s: tubes, pools: pools.map((one, p) => ({ ...one, ratio_per_mM: start[water.length + p]! })), cost: dot(rest, rest) }
 }
 
 /** A guess as coordinates, brought inside their bounds. */

@@ -1,4 +1,5 @@
 import type { NoIntervalReason, SigmaUsed } from '../least-squares/outcome'
+import type { SeriesFlag } from './seriesFlags'
 import type { StopReason } from '../least-squares/problem'
 
 /** Spectra of one solution and setting: tubes of a series differ in concentration, pH or temperature. */
@@ -108,6 +109,7 @@ export interface SeriesFitDone {
   readonly converged: boolean
   /** Searches from different starts over some of the points, and how many of them reached the lowest sum of squares. */
   readonly starts: { readonly tried: number, readonly agree: number }
+  readonly flags: readonly SeriesFlag[]
   /** Per spectrum, at every offset given. */
   readonly fitted: readonly (readonly number[])[]
   /** z − fitted; null at points left out. */
