@@ -47,16 +47,18 @@ function needOf(ion: Ion, { coordination, waters }: LigandChoiceQuery): Need {
 const profileWords = ({ profile, name }: ProfileInUse): string => `pH ${formatNumber(profile.pH)}, ${formatCelsius(profile.temperature_K, 0)}; profile ${name}`
 
 const HOUR_S = 3600
+const MINUTE_S = 60
 const NO_NUMBER = { logK: null, conditions: null, acidHalfLife_h: null, formation_min: null }
 
 /** Acid and temperature in words; an acid that is not stated is the same as another only where both come from one statement. */
 const acidPlace = (fact: LigandFact): string => [conditionWords(fact), fact.conditions.acid === 'notStated' && typeof fact.conditions.method === 'string' ? fact.conditions.method : ''].filter(Boolean).join('; ')
 
-function candidateOf({ facts, constant }: ReadLigand, acid: LigandFact | null): Candidate {
+function candidateOf({ facts, constant, formation }: ReadLigand, acid: LigandFact | null): Candidate {
   return {
     ...NO_NUMBER, ligand: facts,
     ...(constant ? { logK: { value: constant.value.value, kind: constant.value.kind, basis: 'measured' as const }, conditions: constantConditions(facts.name, constant.conditions) } : {}),
     ...(acid ? { acidHalfLife_h: { value: { value: acid.value.value / HOUR_S, kind: acid.value.kind, basis: 'measured' as const }, at: acidPlace(acid) } } : {}),
+    ...(formation ? { formation_min: { value: { value: formation.value.value / MINUTE_S, kind: formation.value.kind, basis: 'measured' as const }, at: conditionWords(formation) } } : {}),
   }
 }
 
@@ -74,7 +76,7 @@ function sideBySide(ion: Ion, need: Need, ligands: readonly ReadLigand[]): Pick<
 interface RowContext { ion: Ion, need: Need, line: BasicityLine, placements: readonly Placement[], seesUnsigned: boolean }
 
 function toRow(ligand: ReadLigand, { ion, need, line, placements, seesUnsigned }: RowContext): LigandChoiceRow {
-  const { entry, facts, constant, acid, basicity, notes } = ligand
+  const { entry, facts, constant, acid, formation, basicity, notes } = ligand
   const { key, code, origin, payload } = entry
   const [compared] = compareLigands(ion, need, [candidateOf(ligand, acid[0] ?? null)]).entries
   const halfLife = halfLifeOf(ligand, placements)
@@ -83,7 +85,7 @@ function toRow(ligand: ReadLigand, { ion, need, line, placements, seesUnsigned }
     key, code, name: payload.name, origin, topology: payload.topology, ringAtoms: typeof facts.ringAtoms === 'number' ? facts.ringAtoms : null, denticity: payload.denticity,
     donors: payload.donors.map(({ count, kind }) => `${count} ${kind}`).join(', ') || TOPOLOGY_WORDS[payload.topology], charge: payload.charge, complexCharge: ionFacts(ion).charge + payload.charge,
     hints: [...compared!.hints], sumPKa: basicity && { value: basicity.sum, steps: basicity.steps, conditions: basicity.words },
-    logK: constant && valueOf(constant, conditionWords(constant)), estimate: isOurs ? line.estimateFor(ligand) : null, acidHalfLives: acid.map(fact => valueOf(fact, acidPlace(fact))), halfLife,
+    logK: constant && valueOf(constant, conditionWords(constant)), estimate: isOurs ? line.estimateFor(ligand) : null, acidHalfLives: acid.map(fact => valueOf(fact, acidPlace(fact))), formation: formation && valueOf(formation, conditionWords(formation)), halfLife,
     unknown: seesUnsigned ? [...compared!.unknown, ...(isOurs && !halfLife ? ['rate law'] : [])] : null, notes: [...notes], agents: entry.agents.map(agent => agent.row.code),
   }
 }

@@ -17,7 +17,7 @@ import type { AgentView } from './agentView'
 export interface LigandFact extends Pick<EvidenceItemDto, 'quantity' | 'value' | 'conditions' | 'detail' | 'signed'> { checkState: EvidenceItemDto['checkState'] | null, recordId: string, source: string | null }
 
 /** A ligand with what is known of it with one metal. `constants` are log K with that metal, oldest first, `others` what else its agents and records say. */
-export interface LigandEntry { key: string, code: string, origin: 'programme' | 'literature', payload: LigandPayload, constants: LigandFact[], acid: LigandFact[], others: LigandFact[], agents: AgentView[] }
+export interface LigandEntry { key: string, code: string, origin: 'programme' | 'literature', payload: LigandPayload, constants: LigandFact[], acid: LigandFact[], formation: LigandFact[], others: LigandFact[], agents: AgentView[] }
 
 const isConstantWith = ({ quantity, conditions }: LigandFact, metal: string): boolean =>
   quantity.startsWith('logK') && !quantity.startsWith('logKWith') && quantity !== 'logKConditional' && conditions.metal === metal
@@ -32,12 +32,13 @@ export async function programmeLigands({ db }: Pick<Deps, 'db'>, { programmeId, 
     const others = all.flatMap(agent => agent.evidence.map(toFact))
     return {
       key: row.code, code: row.code, origin: 'programme', payload: LigandPayload.parse(versions.find(one => one.parentId === row.id)!.payload),
-      constants: others.filter(fact => isConstantWith(fact, metal)), acid: own.flatMap(agent => agent.evidence.filter(isAcid).map(toFact)), others, agents: own,
+      constants: others.filter(fact => isConstantWith(fact, metal)), acid: own.flatMap(agent => agent.evidence.filter(isAcid).map(toFact)), formation: own.flatMap(agent => agent.evidence.filter(isFormation).map(toFact)), others, agents: own,
     }
   })
 }
 
 const isAcid = ({ quantity }: Pick<EvidenceItemDto, 'quantity'>): boolean => quantity === 'halfLifeAcid_s'
+const isFormation = ({ quantity }: Pick<EvidenceItemDto, 'quantity'>): boolean => quantity === 'formationTime99_s'
 const toFact = ({ quantity, value, conditions, detail, signed, checkState, origin }: EvidenceItemDto): LigandFact => ({ quantity, value, conditions, detail, signed, checkState, recordId: origin.id, source: null })
 
 /** The ligands of the starter library, with their published constants read as records are. */
@@ -47,7 +48,7 @@ export function libraryLigands(metal: string): LigandEntry[] {
     const own = ligand.records.filter(record => record.metal === metal).map(record => `${ligand.key} ${record.key}`)
     return {
       key: `library:${ligand.key}`, code: ligand.code, origin: 'literature', payload: ligand.payload, agents: [], others: facts,
-      constants: onePerSource(facts.filter(fact => isConstantWith(fact, metal))), acid: facts.filter(fact => isAcid(fact) && own.includes(fact.recordId)),
+      constants: onePerSource(facts.filter(fact => isConstantWith(fact, metal))), acid: facts.filter(fact => isAcid(fact) && own.includes(fact.recordId)), formation: facts.filter(fact => isFormation(fact) && own.includes(fact.recordId)),
     }
   })
 }

@@ -14,7 +14,7 @@ import type { LigandEntry, LigandFact } from './ligandEntries'
 export interface Basicity { sum: number, steps: number, words: string, conditions: ConstantConditions }
 
 /** A ligand as the comparison reads it: the constant that counts, ΣpKa, half-lives in acid by acid, and what is to be said of them. */
-export interface ReadLigand { entry: LigandEntry, facts: LigandFacts, constant: LigandFact | null, basicity: Basicity | null, acid: LigandFact[], notes: string[] }
+export interface ReadLigand { entry: LigandEntry, facts: LigandFacts, constant: LigandFact | null, basicity: Basicity | null, acid: LigandFact[], formation: LigandFact | null, notes: string[] }
 
 const LISTED: Readonly<Record<Donor['kind'], ListedDonor | null>> = {
   'amine N': 'amine', 'pyridine N': 'pyridine', 'carboxylate O': 'carboxylate', 'phosphonate O': 'phosphonate', 'phosphinate O': 'phosphinate', 'amide O': 'amide', 'hydroxyl O': 'alcohol', 'phenolate O': 'phenolate', 'other': null,
@@ -27,7 +27,7 @@ export function readLigand(entry: LigandEntry): ReadLigand {
   const constant = preferred(entry.constants)
   const basicity = basicityOf(entry, constant, name)
   const acid = [...groupBy(entry.acid, one => `${conditionWords(one)} ${String(one.conditions.method ?? '')}`).values()].map(group => preferred(group)!)
-  return { entry, facts: factsOf(entry.payload, name), constant, basicity, acid, notes: notesOn(constant, basicity, name) }
+  return { entry, facts: factsOf(entry.payload, name), constant, basicity, acid, formation: preferred(entry.formation), notes: notesOn(constant, basicity, name) }
 }
 
 /** A signed value before another, a measured one before common practice, a value before a bound; of equals the newest. */

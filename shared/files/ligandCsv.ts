@@ -12,7 +12,7 @@ const TOPICS = { size: 'Size', hardness: 'Donor hardness', denticity: 'Sites', c
 const HEAD = [
   'Ligand', 'Name', 'Origin', 'Donors', 'Denticity', 'Ring atoms', 'Charge of the ligand', 'Charge of the complex', ...HINT_TOPICS.flatMap(topic => [TOPICS[topic], `${TOPICS[topic]}, reason`]),
   'log K, kind', 'log K', 'log K, SE', 'log K, state', 'log K, conditions', 'log K, source', 'Sum of pKa', 'Sum of pKa, constants', 'Sum of pKa, conditions', 'log K, estimate', 'Estimate, lower end (95 %)', 'Estimate, upper end (95 %)',
-  'Half-lives in acid', 'Half-life at the profile, kind', 'Half-life at the profile (s)', 'Half-life at the profile, SE (s)', 'Half-life at the profile, state', 'Not known', 'Notes',
+  'Half-lives in acid', 'Time to 99 % formed', 'Half-life at the profile, kind', 'Half-life at the profile (s)', 'Half-life at the profile, SE (s)', 'Half-life at the profile, state', 'Not known', 'Notes',
 ]
 
 /** The comparison as a CSV file: every ligand in a row, reasons in words, bounds and estimates told from values. */
@@ -33,6 +33,7 @@ function toCells(row: LigandChoiceRow): Cell[] {
     ...numberCells(logK?.value), logK ? logK.state ?? 'literature' : '', plainNotation(logK?.conditions ?? ''), logK?.source ?? '',
     sumPKa?.value ?? null, sumPKa?.steps ?? null, plainNotation(sumPKa?.conditions ?? ''), estimate?.logK ?? null, estimate?.low ?? null, estimate?.high ?? null,
     plainNotation(row.acidHalfLives.map(one => `${one.value.kind === '=' ? '' : KIND_WORDS[one.value.kind]} ${one.value.value} s (${one.conditions}; ${one.state ?? `literature: ${one.source ?? ''}`})`.trim()).join(' | ')),
+    row.formation === null ? '' : plainNotation(`${row.formation.value.kind === '=' ? '' : KIND_WORDS[row.formation.value.kind]} ${row.formation.value.value} s (${row.formation.conditions}; ${row.formation.state ?? `literature: ${row.formation.source ?? ''}`})`.trim()),
     ...numberCells(halfLife?.value), halfLife?.state ?? '', row.unknown?.join(', ') ?? '', [...row.notes, ...(estimate?.warnings ?? [])].join(' '),
   ]
 }

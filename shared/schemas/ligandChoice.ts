@@ -42,6 +42,8 @@ export const LigandChoiceRow = z.object({
   logK: LigandValueDto.nullable(), estimate: LigandEstimateDto.nullable(),
   /** By acid and temperature; comparable with nothing measured in another acid. */
   acidHalfLives: z.array(LigandValueDto),
+  /** Time to 99 % formed. */
+  formation: LigandValueDto.nullable(),
   /** Of an agent with this metal at the programme's profile; null where there is no rate law, and for literature. */
   halfLife: StatedQuantity.nullable(),
   /** What no record says; null for those who see signed values only. */

@@ -85,6 +85,17 @@ describe('ligands side by side for one metal', () => {
     expect((await choose()).disagreements).toEqual(answer.disagreements)
   })
 
+  it('tell how soon the complex forms, with its pH, where a record says so', async () => {
+    await register(deps, programme, { code: 'FAST' })
+    await enter(deps, programme, {
+      agent: 'FAST', kind: 'formation',
+      entry: { time99: { type: 'quantity', kind: '<', value: 10, se: null, unit: 'min' }, pH: { type: 'number', value: 5.5, unit: '' }, excess: { type: 'number', value: 20, unit: '' }, temperature_K: { type: 'number', value: 25, unit: '°C' } },
+    })
+    const row = rowOf(await choose(), 'FAST-L')
+    expect(row.formation).toMatchObject({ value: { value: 600, kind: '<' }, state: 'draft', conditions: expect.stringContaining('pH') as string })
+    expect(row.unknown).not.toContain('formation')
+  })
+
   it('show the programme its own ligands only, and literature where it is asked for, marked as such', async () => {
     await register(deps, await makeProgramme(deps), { code: 'FOREIGN' })
     await register(deps, programme, { code: 'OWN' })
