@@ -3,33 +3,21 @@ import { studentFactor } from '../least-squares/line'
 import type { NoIntervalReason } from '../least-squares/outcome'
 import type { Solution } from '../least-squares/problem'
 import { LARGEST_CONDITION } from '../least-squares/reportFit'
-import { solve } from '../least-squares/trustRegion'
 import { refuseExchange, type ExchangeRefusal } from './refusal'
 import { findSeriesProblem } from './seriesChecks'
-import { b1Of, columnOf, layoutOf, systemOf, toInner, toOuter, type SeriesLayout } from './seriesLayout'
+import { b1Of, columnOf, layoutOf, systemOf, toOuter, type SeriesLayout } from './seriesLayout'
 import { omega1_rad_per_s } from './transferForms'
 import { ppmToRadPerS } from './poolSystem'
 import { exactExp } from '../exactMath'
 import { seriesProblem, type Cause, type SeriesProblem, type UsedSpectrum } from './seriesProblem'
+import { searchSeries, thinned, type Found } from './seriesSearch'
 import { seriesFlags } from './seriesFlags'
 import { findStarts } from './seriesStart'
 import type { CarriedError, SeriesFitDone, SeriesFitOptions, SeriesModel, SeriesParameter, SeriesSpectrum, SeriesTube } from './seriesTypes'
 import { cwSpectrum } from './spectrum'
 
-/** Starts searched from, of those that come nearest to the data. */
-const SEARCHED = 3
-/** Points a parameter that the search before the last one has; and the coarsest choice of points. */
-const COARSE_POINTS = 8
-const COARSEST = 4
-/** It ends where it no longer moves by this; two sums of squares that differ by less than the second are one minimum. */
-const COARSE_TOLERANCE = 1e-3
-const SAME_MINIMUM = 1e-2
-/** The last search starts next to the minimum: a step that lowers the sum by less than this is followed by one of Gauss and Newton, which leaves less than 1e-3 standard errors. */
-const LAST_TOLERANCE = 1e-3
 /** Amplitude of the nutation of water above which a point is left out. Common practice, no source: about the scatter of a good spectrum. */
 const NUTATION = 0.003
-const LAST_POLISH = 1
-const MOST_EVALUATIONS = 60
 
 export const SERIES_ASSUMPTIONS = 'Bloch–McConnell equations of water and pools that exchange with it alone, constant irradiation, any saturation time; one set of pools for all tubes but where a quantity is fitted per tube; B1 the same over the region.'
 
@@ -45,11 +33,11 @@ export function fitSeries(model: SeriesModel, tubes: readonly SeriesTube[], spec
   const problem = findSeriesProblem(layout, spectra)
   if (problem) return problem
   if (layout.coordinates.length === 0) return refuseExchange('nothingFitted', 'Every quantity is held, so there is nothing to fit.', 'At least one quantity that is fitted.')
-  const starts = findStarts(layout, thinned(layout, spectra.map(one => usedOf(one, () => false))).some)
+  const starts = findStarts(layout, thinned(layout, spectra.map(one => usedOf(one, () => false))))
   const used = spectra.map(one => usedOf(one, leftOut(layout, one, starts[0]!, options.leaveOutNearWater_ppm)))
   const weighted = seriesProblem(layout, used)
   if (weighted.n <= weighted.m) return refuseExchange('tooFewPoints', `${weighted.n} points stand against ${weighted.m} parameters.`, 'More points than parameters.')
-  const found = searchAll(weighted, starts, options)
+  const found = searchSeries(weighted, starts, options)
   if (found === null) return refuseExchange('noStart', 'No start was found at which the spectra can be computed.', 'Starts of the shifts and exchange rates, or other points.')
   return report(weighted, spectra, found, options)
 }
@@ -77,52 +65,6 @@ function usedOf(spectrum: SeriesSpectrum, isLeftOut: (offset_ppm: number) => boo
     spectrum, used, offsets_ppm: Float64Array.from(used, i => spectrum.offsets_ppm[i]!), z: Float64Array.from(used, i => spectrum.z[i]!),
     weights: sigma == null ? null : Float64Array.from(used, i => 1 / (typeof sigma === 'number' ? sigma : sigma[i]!)),
   }
-}
-
-interface Found { readonly best: Solution, readonly tried: number, readonly agree: number, readonly evaluations: number }
-
-/** Starts are ordered by the equations themselves; some of the points decide between them, and all bring the best one to the end. */
-function searchAll(problem: SeriesProblem, starts: readonly Float64Array[], { maxEvaluations }: SeriesFitOptions): Found | null {
-  const { layout } = problem
-  const { some } = thinned(layout, problem.spectra)
-  const coarse = seriesProblem(layout, some)
-  const solutions = starts
-    .map(start => ({ inner: Float64Array.from(layout.coordinates, (one, j) => toInner(one, start[j]!)), cost: costOf(layout, some, start) }))
-    .filter(one => one.cost < Infinity).sort((a, b) => a.cost - b.cost).slice(0, SEARCHED)
-    .map(one => solve(coarse, one.inner, { reductionTolerance: COARSE_TOLERANCE, stepTolerance: COARSE_TOLERANCE, polishSteps: 0, maxEvaluations: maxEvaluations ?? MOST_EVALUATIONS }))
-    .filter(one => one.stop !== 'notFinite').sort((a, b) => a.sumOfSquares - b.sumOfSquares)
-  const nearest = solutions[0]
-  if (!nearest) return null
-  const quick = solve(problem, nearest.parameters, { reductionTolerance: LAST_TOLERANCE, stepTolerance: LAST_TOLERANCE, polishSteps: LAST_POLISH, maxEvaluations: maxEvaluations ?? MOST_EVALUATIONS })
-  // Not yet stationary, as where two pools overlap: on to the engine's own tolerances.
-  const best = quick.converged || quick.stop === 'notFinite' ? quick : solve(problem, quick.parameters, { maxEvaluations: maxEvaluations ?? MOST_EVALUATIONS })
-  if (best.stop === 'notFinite') return null
-  return {
-    best, tried: solutions.length, evaluations: best === quick ? quick.evaluations : quick.evaluations + best.evaluations,
-    agree: solutions.filter(one => one.sumOfSquares <= nearest.sumOfSquares * (1 + SAME_MINIMUM) + Number.MIN_VALUE).length,
-  }
-}
-
-/** As many points as decide between starts. */
-function thinned(layout: SeriesLayout, spectra: readonly UsedSpectrum[]): { some: UsedSpectrum[] } {
-  const n = spectra.reduce((sum, one) => sum + one.used.length, 0)
-  const stride = Math.min(Math.max(Math.floor(n / (COARSE_POINTS * layout.coordinates.length)), 1), COARSEST)
-  return { some: spectra.map((one, s) => everyNth(one, stride, s)) }
-}
-
-/** Every n-th point, not the same ones in every spectrum. */
-function everyNth({ spectrum, used, offsets_ppm, z, weights }: UsedSpectrum, stride: number, first: number): UsedSpectrum {
-  const isKept = (_: unknown, i: number) => i % stride === first % stride
-  return { spectrum, used: used.filter(isKept), offsets_ppm: offsets_ppm.filter(isKept), z: z.filter(isKept), weights: weights && weights.filter(isKept) }
-}
-
-function costOf(layout: SeriesLayout, spectra: readonly UsedSpectrum[], outer: Float64Array): number {
-  let sum = 0
-  for (const { spectrum, offsets_ppm, z, weights } of spectra) {
-    const values = cwSpectrum(systemOf(layout, spectrum.tube, outer), { ...spectrum, b1_uT: b1Of(spectrum, layout.tubes) }, offsets_ppm)
-    for (let i = 0; i < z.length; i++) sum += ((weights?.[i] ?? 1) * (values[i]! - z[i]!)) ** 2
-  }
-  return sum
 }
 
 function report(problem: SeriesProblem, spectra: readonly SeriesSpectrum[], { best, tried, agree, evaluations }: Found, options: SeriesFitOptions): SeriesFitDone {

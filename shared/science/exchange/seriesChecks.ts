@@ -60,7 +60,8 @@ function spectrumProblem(one: SeriesSpectrum, i: number, tubes: readonly SeriesT
   if (fault !== null) return refuseExchange('badBlock', `${where}: ${fault}`, 'B1, saturation time and start inside their domain.')
   if (one.b1_uT === 0) return refuseExchange('noB1', `${where} has a B1 of 0 µT, so it says nothing of exchange.`, 'A B1 above 0 µT, or the spectrum left out.')
   const left = new Set(one.exclude ?? [])
-  const bad = one.z.findIndex((z, k) => !left.has(k) && (!Number.isFinite(z) || !Number.isFinite(one.offsets_ppm[k])))
+  // The fitted spectrum is shown at every offset, so each must be a number; Z only where it is used.
+  const bad = one.z.findIndex((z, k) => (!left.has(k) && !Number.isFinite(z)) || !Number.isFinite(one.offsets_ppm[k]))
   if (bad >= 0) return refuseExchange('notFinite', `${where}, point ${bad + 1}: the offset or Z is not a number.`, 'Finite numbers, or the point left out.')
   const sigmas = one.sigma == null ? [] : typeof one.sigma === 'number' ? [one.sigma] : one.sigma
   return sigmas.some((s, k) => !left.has(k) && !(s > 0 && s < Infinity)) ? refuseExchange('badSigma', `${where} has a standard deviation that is not above 0.`, 'A standard deviation above 0 for every point.') : null
