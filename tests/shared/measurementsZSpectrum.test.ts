@@ -69,21 +69,41 @@ describe('methods side by side', () => {
   it('gives every method with its rate and what it assumes, and no flag where all hold', () => {
     const input = inputOf({ b1s_uT: B1S_uT, tsats_s: [2, 5, 15], noise: 0.0015 })
     const outcome = done(kind, input)
-    expect(outcome.series.statistics.map(one => one.label)).toEqual(Object.values(METHOD_TITLES))
+    expect(outcome.series.statistics.map(one => one.label)).toEqual(Object.entries(METHOD_TITLES).flatMap(([id, title]) => id === 'globalTwo' ? [] : [title]))
     for (const { label, value, text } of outcome.series.statistics) {
       expect([label, Math.abs(value! / K - 1) < 0.05]).toEqual([label, true])
-      expect(text).toMatch(/s⁻¹\. .*(steady|build-up)/i)
+      expect(text).toMatch(/s⁻¹\. .*(steady|build-up|saturation time)/i)
     }
     expect(outcome.flags.map(flag => flag.id)).toEqual([])
   })
 
-  it.each(Object.keys(METHOD_TITLES))('%s chosen: its own rate, figure and evidence', (modelId) => {
+  it.each(Object.keys(METHOD_TITLES).filter(id => id !== 'globalTwo'))('%s chosen: its own rate, figure and evidence', (modelId) => {
     const input = inputOf({ tsats_s: [2, 5, 15], noise: 5e-4 }, Z_LINES, { modelId })
     const outcome = done(kind, input)
     expect(Math.abs(outcome.series.headline.value / K - 1)).toBeLessThan(0.05)
     expect(outcome.series.points.every(point => Number.isFinite(point.fitted) && Math.abs(point.fitted / point.y - 1) < 0.2)).toBe(true)
     expect(kind.seriesFigure(outcome)!.layers.find(layer => layer.type === 'points')).toBeDefined()
     expect(evidenceOf(kind, input).kex_per_s!.detail.method).toBe(METHOD_TITLES[modelId as keyof typeof METHOD_TITLES])
+  })
+
+  it('fits the Bloch–McConnell equations through all spectra at once: right before the steady state, where the others are not, with the error of B1', () => {
+    const input = inputOf({ tsats_s: [2.5], noise: 5e-4 }, [...Z_LINES, 'B1 error: 5 %'], { modelId: 'global' })
+    const { headline } = done(kind, input).series
+    expect(Math.abs(headline.value / K - 1)).toBeLessThan(0.01)
+    // its error of B1 is what a fit with B1 moved by it does
+    const moved = [1.05, 0.95].map(scale => done(kind, inputFrom(kind, longTable(simulate({ k_per_s: K, tsats_s: [2.5], noise: 5e-4 }).map(one => ({ ...one, b1_uT: one.b1_uT * scale }))), { modelId: 'global' })).series.headline.value)
+    expect(headline.se! / Math.abs((moved[0]! - moved[1]!) / 2)).toBeCloseTo(1, 1)
+    expect(flagIds(input)).not.toContain('notSteady')
+  })
+
+  it('fits a second pool where it is asked for, and says that one pool does not describe the spectra', () => {
+    const more = [{ offset_ppm: -45, fraction: 3e-4, k_per_s: 500, rate1_per_s: 1, rate2_per_s: 1 }]
+    const input = inputOf({ more, noise: 1e-3, b1s_uT: [2.5, 5, 10] }, Z_LINES, { modelId: 'global' })
+    const [one, two] = ['global', 'globalTwo'].map(modelId => done(kind, { ...input, modelId })) as [ReturnType<typeof done>, ReturnType<typeof done>]
+    expect(one.flags.map(flag => flag.id)).toContain('modelMisfit')
+    expect(two.flags.map(flag => flag.id)).not.toContain('modelMisfit')
+    expect(Math.abs(two.series.headline.value / K - 1)).toBeLessThan(0.02)
+    expect(two.series.statistics.map(each => each.label)).toContain(METHOD_TITLES.globalTwo)
   })
 
   it('says why a method says nothing, instead of a rate', () => {

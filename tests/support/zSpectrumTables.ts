@@ -6,7 +6,7 @@ export const Z_LINES = ['Field: 7 T', 'Temperature: 25.0 °C', 'pH: 7.4', 'Mediu
 export const B1S_uT = [1.5, 2.5, 4, 6, 9, 12]
 export const OFFSETS_ppm = [...range(-90, -60, 10), ...range(-56, -53, 1), ...range(-52, -48, 0.25), ...range(-47, -44, 1), -30, -20, -10, ...range(-5, 5, 0.5), 10, 20, 30, ...range(44, 47, 1), ...range(48, 52, 0.25), ...range(53, 56, 1), ...range(60, 90, 10)]
 
-export interface SpectraPlan { k_per_s: number, conc_mM?: number, pH?: number, b1s_uT?: readonly number[], tsats_s?: readonly number[], offsets_ppm?: readonly number[], shift_ppm?: number, noise?: number, name?: string, seed?: string, drift?: number }
+export interface SpectraPlan { k_per_s: number, conc_mM?: number, pH?: number, b1s_uT?: readonly number[], tsats_s?: readonly number[], offsets_ppm?: readonly number[], shift_ppm?: number, noise?: number, name?: string, seed?: string, drift?: number, more?: readonly TestPool[] }
 
 export interface SimulatedReading { name: string, conc_mM: number, pH: number | null, b1_uT: number, tsat_s: number, offset_ppm: number, signal: number }
 
@@ -21,11 +21,12 @@ function zOnce(pools: readonly TestPool[], saturation: Saturation, offset_ppm: n
 }
 
 /** Readings of one tube in the order of a scan: two S0 at −300 ppm, the spectrum, two at +300 ppm, at every B1 and saturation time. S0 is 1000 and drifts along the tube. */
-export function simulate({ k_per_s, conc_mM = 20, pH, b1s_uT = B1S_uT, tsats_s = [15], offsets_ppm = OFFSETS_ppm, shift_ppm = 0.15, noise = 0.002, name = 't1', seed = 'spectra', drift = 0 }: SpectraPlan): SimulatedReading[] {
+export function simulate({ k_per_s, conc_mM = 20, pH, b1s_uT = B1S_uT, tsats_s = [15], offsets_ppm = OFFSETS_ppm, shift_ppm = 0.15, noise = 0.002, name = 't1', seed = 'spectra', drift = 0, more = [] }: SpectraPlan): SimulatedReading[] {
   const random = createRandom(`${seed} ${name}`)
   const pools: TestPool[] = [
     { offset_ppm: shift_ppm, fraction: 1, k_per_s: 0, rate1_per_s: 0.4, rate2_per_s: 3 },
     { offset_ppm: 50 + shift_ppm, fraction: protonFraction(2, conc_mM), k_per_s, rate1_per_s: 1, rate2_per_s: 50 },
+    ...more,
   ]
   const plan = b1s_uT.flatMap(b1_uT => tsats_s.flatMap(tsat_s => [-300, -300, ...offsets_ppm, 300, 300].map(offset_ppm => ({ b1_uT, tsat_s, offset_ppm }))))
   return plan.map((one, i) => {

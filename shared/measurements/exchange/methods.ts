@@ -10,11 +10,16 @@ import type { FigureSpec } from '../../schemas/figure'
 import type { ProcessedScan } from './processScan'
 import type { Sample } from './samples'
 
-export const METHOD_IDS = ['quespInverse', 'quesp', 'quest', 'omegaInverse', 'omega'] as const
+/** Methods of one sample, each by itself, and those through all points of all samples at once. */
+export const SAMPLE_METHODS = ['quespInverse', 'quesp', 'quest', 'omegaInverse', 'omega'] as const
+export const GLOBAL_METHODS = ['global', 'globalTwo'] as const
+export const METHOD_IDS = [...SAMPLE_METHODS, ...GLOBAL_METHODS] as const
+export type SampleMethod = (typeof SAMPLE_METHODS)[number]
 export type MethodId = (typeof METHOD_IDS)[number]
 
 export const METHOD_TITLES: Readonly<Record<MethodId, string>> = {
   quespInverse: 'QUESP, inverse metric', quesp: 'QUESP', quest: 'QUEST', omegaInverse: 'Omega plot, inverse metric', omega: 'Omega plot',
+  global: 'Bloch–McConnell, all spectra', globalTwo: 'Bloch–McConnell, all spectra, a second pool',
 }
 
 export interface DrawnPoint { readonly tubeNo: number, readonly label: string, readonly x: number, readonly y: number, readonly ySe: number | null, readonly fitted: number }
@@ -42,7 +47,7 @@ const AXES = {
   plain: { label: 'Z/(1 − Z)', unit: null, scale: 'linear' }, inverse: { label: '1/MTR_{Rex}', unit: null, scale: 'linear' },
 } as const
 
-export function methodOf(id: MethodId, sample: Sample): MethodOutcome {
+export function methodOf(id: SampleMethod, sample: Sample): MethodOutcome {
   if (id === 'omega' || id === 'omegaInverse') return byOmega(sample, id === 'omega' ? 'plain' : 'inverse')
   if (id === 'quest') return byQuest(sample)
   return id === 'quesp' ? byQuesp(sample, sample.r1w === null ? 'steady' : 'buildUp') : byQuesp(sample, 'inverse')

@@ -3,29 +3,37 @@ import { disagreements } from '../../science/exchange/rateFlags'
 import { logInterval } from '../../science/kinetics/firstOrder'
 import { inverseVarianceMean } from '../../science/statistics'
 import type { AnalysisInput, Flag, SeriesResult } from '../types'
-import { METHOD_IDS, METHOD_TITLES, methodOf, type MethodDone, type MethodId, type MethodOutcome } from './methods'
-import type { Sample } from './samples'
+import { byGlobalFit } from './globalMethod'
+import { METHOD_IDS, METHOD_TITLES, methodOf, SAMPLE_METHODS, type MethodDone, type MethodId, type MethodOutcome } from './methods'
+import { poolOf, type Sample } from './samples'
+import { numberOr } from './scans'
 
 /** Samples at one pH and temperature, with what every method says of each. */
 export interface RateGroup {
   readonly pH: number | null
   readonly temperature_K: number | null
   readonly samples: readonly Sample[]
-  readonly methods: Readonly<Record<MethodId, readonly MethodOutcome[]>>
+  /** One outcome for each sample, or one for all of them by a global fit; absent where a method was not asked for. */
+  readonly methods: Readonly<Partial<Record<MethodId, readonly MethodOutcome[]>>>
 }
 
 /** An exchange rate of a group by one method. */
 export interface GroupRate { readonly method: MethodId, readonly k: NamedQuantity, readonly samples: number, readonly done: readonly { readonly sample: Sample, readonly result: MethodDone }[] }
 
-export function groupsOf(samples: readonly Sample[]): RateGroup[] {
+/** @param modelId the method chosen: a second pool is fitted only then */
+export function groupsOf(samples: readonly Sample[], { conditions, modelId }: Pick<AnalysisInput, 'conditions' | 'modelId'>): RateGroup[] {
   const groups = new Map<string, Sample[]>()
   for (const one of samples) {
     const key = JSON.stringify([one.facts.pH, one.facts.temperature_K])
     groups.set(key, [...groups.get(key) ?? [], one])
   }
+  const facts = { field_T: numberOr(conditions.b0_T) ?? NaN, protons: numberOr(conditions.protons) }
   return [...groups.values()].map(own => ({
     pH: own[0]!.facts.pH, temperature_K: own[0]!.facts.temperature_K, samples: own,
-    methods: Object.fromEntries(METHOD_IDS.map(id => [id, own.map(sample => methodOf(id, sample))])) as Record<MethodId, MethodOutcome[]>,
+    methods: {
+      ...Object.fromEntries(SAMPLE_METHODS.map(id => [id, own.map(sample => methodOf(id, sample))])), global: [byGlobalFit(own, poolOf(conditions), { ...facts, solutes: 1 })],
+      ...(modelId === 'globalTwo' ? { globalTwo: [byGlobalFit(own, poolOf(conditions), { ...facts, solutes: 2 })] } : {}),
+    },
   }))
 }
 
@@ -34,12 +42,12 @@ export function groupsOf(samples: readonly Sample[]): RateGroup[] {
  * Null where the method says nothing of any sample.
  */
 export function rateOf(group: RateGroup, method: MethodId): GroupRate | null {
-  const done = group.methods[method].flatMap((result, i) => result.ok ? [{ sample: group.samples[i]!, result }] : [])
+  const done = (group.methods[method] ?? []).flatMap((result, i) => result.ok ? [{ sample: group.samples[i]!, result }] : [])
   const first = done[0]
   if (first === undefined) return null
   const name = (value: number, se: number | null, interval: readonly [number, number] | null): NamedQuantity => ({ name: 'kex_per_s', label: 'k_{ex}', unit: 's^-1', value, kind: '=', se, interval: interval && [interval[0], interval[1]], evidenceId: null })
   const { k_per_s: k } = first.result
-  if (done.length === 1) return { method, k: name(k.value, k.se, k.interval), samples: 1, done }
+  if (done.length === 1) return { method, k: name(k.value, k.se, k.interval), samples: group.methods[method]!.length === 1 ? group.samples.length : 1, done }
   const own = done.map(({ result }) => result.k_per_s.se === null ? null : Math.sqrt(Math.max(0, result.k_per_s.se ** 2 - result.b1Se_per_s ** 2)))
   const values = done.map(({ result }) => result.k_per_s.value)
   if (!own.every((se): se is number => se !== null && se > 0)) return { method, k: name(values.reduce((sum, value) => sum + value, 0) / values.length, null, null), samples: done.length, done }
@@ -75,11 +83,11 @@ const rate0 = (k: NamedQuantity, of: string | null): NamedQuantity => of === nul
 
 /** Every method of a group in a line: its rate and what it assumes, or why it says nothing. */
 function sideBySide(group: RateGroup, isOneOfMany: boolean): SeriesResult['statistics'] {
-  return METHOD_IDS.map((id) => {
+  return METHOD_IDS.filter(id => group.methods[id] !== undefined).map((id) => {
     const rate = rateOf(group, id)
     const label = isOneOfMany ? `${METHOD_TITLES[id]}, ${groupLabel(group)}` : METHOD_TITLES[id]
     if (rate === null) {
-      const why = group.methods[id].find(one => !one.ok)
+      const why = group.methods[id]!.find(one => !one.ok)
       return { label, value: null, text: why && !why.ok ? `${why.message} Needed: ${why.accepted}` : '' }
     }
     return { label, value: rate.k.value, text: `k = ${written(rate.k)}. ${rate.done[0]!.result.assumptions}` }

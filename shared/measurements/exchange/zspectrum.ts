@@ -48,7 +48,7 @@ export const exchangeZSpectrum = defineMeasurement({
 
 function ratesOf(input: AnalysisInput): { samples: Sample[], groups: RateGroup[], chosen: { group: RateGroup, rate: GroupRate }[] } {
   const samples = samplesOf(input, optionOf(input, SHIFT) as ShiftChoice)
-  const groups = groupsOf(samples.filter(one => one.scans.length > 0))
+  const groups = groupsOf(samples.filter(one => one.scans.length > 0), input)
   const chosen = groups.flatMap((group) => {
     const rate = rateOf(group, input.modelId as MethodId)
     return rate === null ? [] : [{ group, rate }]
@@ -65,7 +65,7 @@ function analyseSpectra(input: AnalysisInput): AnalysisOutcome {
     const { series, flags } = seriesOf(input, groups, chosen)
     return { ok: true, tubes, series, flags, passed: [], method: methodText(input, samples) }
   }
-  const refusal = groups.flatMap(group => group.methods[input.modelId as MethodId]).find(one => !one.ok)
+  const refusal = groups.flatMap(group => group.methods[input.modelId as MethodId] ?? []).find(one => !one.ok)
   const unread = samples.flatMap(one => one.outcomes).find(one => !one.ok)
   const why = refusal && !refusal.ok ? refusal : unread && !unread.ok ? unread : null
   return {
