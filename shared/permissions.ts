@@ -56,6 +56,8 @@ export const PERMISSIONS = {
   'library.copy': { ...none, chemist: 'programme' },
   'number.trace': everyone,
   'bench.see': staff,
+  'gap.see': staff,
+  'gap.assign': { ...none, lead: 'programme' },
   'map.see': everyone,
   'profile.save': { ...none, lead: 'programme' },
   'decision.see': { ...none, chemist: 'programme', physicist: 'programme', lead: 'programme', partner: 'programme' },

@@ -12,6 +12,7 @@ import { listNotices } from '../queries/notices'
 import { findSeries } from '../queries/series'
 import { openStaged } from '../queries/uploads'
 import { type UnsentRow, unsentVersions } from '../queries/unsent'
+import { tasksOf } from './gaps'
 import { readProgress } from './followProgress'
 import { listAgents } from './listAgents'
 import { listQueue, subjectDto } from './showCheck'
@@ -24,14 +25,15 @@ const MOST = 60
 /** What there is to do for one person in a programme: what came back, what is under way, what was not sent, what waits for them, what is missing. */
 export async function showBench(deps: Deps, input: ShowBenchInput): Promise<BenchDto> {
   const { actor, programmeId } = input
-  const [open, sent, fits, staged, queue, ground, { agents }] = await Promise.all([
+  const [open, sent, fits, staged, queue, ground, { agents }, tasks] = await Promise.all([
     unsentVersions(deps.db, programmeId, MOST), sentByMe(deps, input), fitsOnTheirWay(deps, programmeId), openStaged(deps.db, { programmeId, personId: actor.personId, now: deps.clock.now() }),
     scopeOf(actor, 'check.queue', programmeId) === 'none' ? null : listQueue(deps, input), movedGround(deps, programmeId), listAgents(deps, { programmeId, scope: 'programme' }),
+    tasksOf(deps, { programmeId, personId: actor.personId }),
   ])
   const returned = await Promise.all(open.filter(one => one.state === 'returned').map(one => toReturned(deps, input, one)))
   const unsent = await Promise.all(open.filter(one => one.state !== 'returned').map(one => toUnsent(deps, input, one)))
   return {
-    returned: returned.filter(one => one !== null), unsent: unsent.filter(one => one !== null), sent, fits, queue, ground, agents,
+    returned: returned.filter(one => one !== null), unsent: unsent.filter(one => one !== null), sent, fits, queue, ground, agents, tasks,
     staged: staged.map(one => ({ id: one.id, fileName: one.fileName, bytes: one.bytes, stagedAt: one.createdAt.toISOString(), expiresAt: one.expiresAt.toISOString() })),
   }
 }

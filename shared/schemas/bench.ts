@@ -1,6 +1,7 @@
 import { z } from 'zod'
 import { AgentRowDto } from './agent'
 import { CheckSubjectDto, QueueItemDto } from './check'
+import { BenchTaskDto } from './gap'
 import { ProgressJob } from './progress'
 
 /** `mine`: the person who asks entered it. */
@@ -26,6 +27,8 @@ export const BenchDto = z.object({
   queue: z.array(QueueItemDto).nullable(),
   /** Decisions whose ground has moved and that nobody has looked at since. */
   ground: z.array(z.object({ decisionId: z.string(), agentCode: z.string(), at: z.string(), changes: z.array(z.object({ what: z.string(), was: z.string(), now: z.string() })) })),
+  /** Gaps that the person is asked to close, the one due first ahead. */
+  tasks: z.array(BenchTaskDto),
   agents: z.array(AgentRowDto),
 })
 export type BenchDto = z.output<typeof BenchDto>

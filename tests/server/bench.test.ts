@@ -82,7 +82,7 @@ describe('the bench [product: screens]', () => {
   it('of another programme holds nothing of this one', async () => {
     await fittedSeries(deps)
     const other = await makeProgramme(deps)
-    expect(await bench(other)).toEqual({ returned: [], unsent: [], sent: [], fits: [], staged: [], queue: null, ground: [], agents: [] })
+    expect(await bench(other)).toEqual({ returned: [], unsent: [], sent: [], fits: [], staged: [], queue: null, ground: [], tasks: [], agents: [] })
   })
 })
 
