@@ -13,6 +13,7 @@ const PAGES: readonly PageRow[] = [
   { key: 'decisions', words: 'Decisions', permission: 'decision.see' },
 ]
 const KEEPING: readonly PageRow[] = [
+  { key: 'gaps', words: 'Gaps', permission: 'gap.see' },
   { key: 'ligands', words: 'Choosing a ligand', permission: 'ligand.see' },
   { key: 'sheets', words: 'Tube sheets', permission: 'sheet.see' },
   { key: 'instruments', words: 'Instruments', permission: 'instrument.see' },

@@ -15,7 +15,7 @@ const WALKS: Readonly<Record<string, Walk>> = {
     '/skerry/series', '/skerry/series/new', `/skerry/series/new?upload=${at.staged}`, `/skerry/series/${at.series}`, '/skerry/instruments', `/skerry/instruments/${at.instrument}`, '/skerry/sheets', '/skerry/sheets/new', `/skerry/sheets/${at.sheet}`, '/skerry/records', '/skerry/records/new', `/skerry/records/${at.record}`, `/skerry/records/${at.record}/change`, '/skerry/library',
   ],
   physicist: at => ['/skerry/bench', '/skerry/checks', `/skerry/checks/fit/${at.waitingFit}`, `/skerry/checks/record/${at.waitingRecord}`, `/skerry/checks/batchVersion/${at.batchVersion}`, '/skerry/stability', '/skerry/stability/SK-07', '/skerry/ligands', '/skerry/ligands?metal=Zn&library=1'],
-  lead: at => ['/skerry/map', '/skerry/map?agent=SK-07', '/skerry/decisions', `/skerry/decisions/${at.decision}`, '/skerry/people', '/skerry/settings', '/skerry/audit', '/account'],
+  lead: at => ['/skerry/gaps', '/skerry/map', '/skerry/map?agent=SK-07', '/skerry/decisions', `/skerry/decisions/${at.decision}`, '/skerry/people', '/skerry/settings', '/skerry/audit', '/account'],
   partner: at => ['/skerry/agents', '/skerry/agents/SK-07', '/skerry/series', '/skerry/stability', '/skerry/ligands', '/skerry/map', '/skerry/decisions', `/skerry/decisions/${at.decision}`],
   administrator: () => ['/admin/people', '/admin/programmes', '/admin/audit', '/admin/system', '/admin/mail'],
 }
