@@ -206,7 +206,7 @@ describe('what comes out', () => {
 
 describe('the registry', () => {
   it('finds kinds by id and nothing else', () => {
-    expect(Object.keys(MEASUREMENTS)).toEqual(['relax.t1.ir', 'relax.t1.sr', 'relax.t1.ll', 'relax.t1.vfa', 'relax.t2.echo', 'relax.fitted', 'kinetics.course', 'kinetics.rates', 'kinetics.zincPhosphate', 'thermo.titration'])
+    expect(Object.keys(MEASUREMENTS)).toEqual(['relax.t1.ir', 'relax.t1.sr', 'relax.t1.ll', 'relax.t1.vfa', 'relax.t2.echo', 'relax.fitted', 'kinetics.course', 'kinetics.rates', 'kinetics.zincPhosphate', 'thermo.titration', 'exchange.zspectrum'])
     expect(findMeasurement(MEASUREMENTS, 'toString')).toBeNull()
     expect(() => measurement('relax.nothing')).toThrow('relax.nothing')
   })

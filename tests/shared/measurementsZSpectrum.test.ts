@@ -39,6 +39,7 @@ describe('Z-spectra from a table [Bloch–McConnell equations by the matrix expo
     shifts.forEach(one => expect(Math.abs(one.value - 0.22)).toBeLessThan(0.02))
     expect(kind.tubeFigure(tube!)).toMatchObject({ x: { label: 'Offset from water', unit: 'ppm', reversed: true }, y: { label: 'Z' } })
     expect(kind.tubeFigure(tube!).layers.filter(layer => layer.type === 'line')).toHaveLength(B1S_uT.length)
+    expect(kind.tubeFigure(tube!).strip!.points).toHaveLength(tube!.points.length)
     expect(kind.seriesFigure(outcome)).toMatchObject({ x: { label: 'B_1', unit: 'µT' }, y: { label: 'MTR_{Rex}' } })
     expect(tube!.points).toHaveLength(B1S_uT.length * OFFSETS_ppm.length)
     expect(tube!.points.every(point => [point.x, point.y, point.fitted].every(Number.isFinite))).toBe(true)

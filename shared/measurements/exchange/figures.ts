@@ -9,9 +9,12 @@ export function spectrumFigure(tube: TubeResult): FigureSpec {
   const words = { token: 'cest' as const, tube: { x: { label: 'Offset from water', unit: 'ppm' }, y: { label: 'Z', unit: null } }, rate: { label: '', unit: '' }, caption: '' }
   const figure = tubeFigureOf({ ...tube, curve: [] }, words)
   const curves = splitCurves(tube.curve)
+  const residuals = tube.points.flatMap(point => point.residual === null ? [] : [{ x: point.x, y: point.residual }])
+  const spread = Math.sqrt(residuals.reduce((sum, one) => sum + one.y * one.y, 0) / Math.max(1, residuals.length))
   return {
     ...figure, x: { ...figure.x, reversed: true },
     layers: [...curves.map((points, i) => ({ type: 'line' as const, name: curves.length > 1 ? `pools, spectrum ${i + 1}` : 'pools', token: 'ink' as const, labelled: false, points })), ...figure.layers],
+    ...(spread > 0 ? { strip: { label: 'Residual of Z', token: 'cest' as const, limit: 4 * spread, points: residuals } } : {}),
   }
 }
 
