@@ -64,12 +64,12 @@ describe('gaps on a screen', () => {
 
   it('let the lead ask somebody, and name who is asked and what is overdue', async () => {
     const wrapper = await mountSuspended(GapTable, { props: { gaps: [gap({ assignment })], base: '/p', mayAssign: true } })
-    expect(words(wrapper)).toMatch(/Ada Test by .*Overdue/)
+    expect(words(wrapper)).toMatch(/Ada Test by 20 Mar.*overdue/)
     await wrapper.find('button').trigger('click')
     expect(wrapper.emitted('assign')).toMatchObject([[{ agent: 'TS-01', key: 'loss' }]])
   })
 
   it('stand on the Bench with their day and who asks', async () => {
-    expect(words(await mountSuspended(BenchTasks, { props: { tasks: [{ agent: 'TS-01', key: 'loss', what: 'rate constants: none', assignment }], base: '/p' } }))).toMatch(/TS-01 rate constants: none.*asked by The lead: Soon\..*Overdue/)
+    expect(words(await mountSuspended(BenchTasks, { props: { tasks: [{ agent: 'TS-01', key: 'loss', what: 'rate constants: none', assignment }], base: '/p' } }))).toMatch(/TS-01 rate constants: none.*by 20 Mar.*overdue, asked by The lead: Soon\./)
   })
 })
