@@ -53,7 +53,7 @@ export interface RecordVersionParts {
 /** One version of a record, its source and its evidence, inside the command that makes it. */
 export async function storeRecordVersion(work: Work, one: RecordVersionParts): Promise<void> {
   const { programmeId, actor, kind, complex, entry } = one
-  const context = await contextOf(work.trx, programmeId, complex)
+  const context = await recordContext(work.trx, programmeId, complex)
   refuseProblems(kind, entry, context)
   const batchId = one.lot === null ? null : await batchOf(work.trx, programmeId, complex.id, one.lot)
   const sourceId = work.id()
@@ -69,7 +69,7 @@ export async function storeRecordVersion(work: Work, one: RecordVersionParts): P
 }
 
 /** What the record itself does not say: the metal of the agent, and the protonation constants registered with its ligand. */
-async function contextOf(db: Knex, programmeId: string, complex: ComplexRow): Promise<RecordContext> {
+export async function recordContext(db: Knex, programmeId: string, complex: ComplexRow): Promise<RecordContext> {
   const [complexVersion] = await readVersions(db, 'complex', programmeId, complex.id)
   const [ligandVersion] = await readVersions(db, 'ligand', programmeId, complex.ligandId)
   const { metal } = ComplexPayload.parse(complexVersion!.payload)

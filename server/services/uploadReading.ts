@@ -13,6 +13,7 @@ import { sha256 } from '../platform/hashes'
 import { currentReferences } from '../queries/instruments'
 import { findTubeSheet, type TubeSheetRow } from '../queries/tubeSheets'
 import { findStaged, type StagedRow } from '../queries/uploads'
+import { withRegistered } from './registeredFacts'
 import type { UploadTarget } from '../queries/uploadTargets'
 
 export const UPLOAD_NOT_FOUND = 'There is no such upload, or it is somebody else\'s.'
@@ -60,9 +61,11 @@ export async function readUpload(deps: Pick<Deps, 'tables' | 'db'>, bytes: Uint8
   const code = draft.tubeSheet === undefined ? alone?.tubeSheet ?? null : draft.tubeSheet
   const row = code === null ? null : await findTubeSheet(deps.db, programmeId, code)
   const first = row === null && alone !== null ? alone : await readBytes(deps, bytes, { kind, draft, sheet: row?.body ?? null })
-  const named = await withReferences(deps, first, { programmeId, draft })
-  const understood = named === draft ? first : await readBytes(deps, bytes, { kind, draft: named, sheet: row?.body ?? null })
-  const unknown = [...understood.series.flatMap(part => targetProblem(part, targets) ?? []), ...tubeSheetProblems(code, { row, kind })]
+  const registered = await withRegistered(deps, first, { programmeId, kind, draft })
+  const named = await withReferences(deps, first, { programmeId, draft: registered.draft })
+  const read = named === draft ? first : await readBytes(deps, bytes, { kind, draft: named, sheet: row?.body ?? null })
+  const understood = { ...read, found: [...read.found, ...registered.found] }
+  const unknown = [...registered.problems, ...understood.series.flatMap(part => targetProblem(part, targets) ?? []), ...tubeSheetProblems(code, { row, kind })]
   const problems = [...understood.problems, ...unknown]
   return { ...understood, problems, canStore: understood.canStore && unknown.every(problem => problem.severity !== 'blocks') }
 }

@@ -1,3 +1,4 @@
+import type { RecordContext } from '../evidence/records/define'
 import type { EvidenceDraft } from '../evidence/types'
 import type { NamedQuantity } from '../evidence/quantity'
 import type { FigureSpec } from '../schemas/figure'
@@ -243,6 +244,8 @@ export interface MeasurementKind {
   propose?: (expected: { shortest_s: number, longest_s: number, tr_s: number | null }) => { values: number[], why: string } | null
   /** Choices beside the model; left out: none. */
   options?: readonly FitOptionSpec[]
+  /** What the registry says of the agent: conditions that count where neither file nor person gives them, and what contradicts it. Left out: nothing is asked of it. */
+  registered?: (agent: RecordContext, conditions: Conditions) => { conditions: Conditions, problems: UploadProblem[] }
   /** Problems of complete tubes with their conditions, beyond single cells. */
   checkTubes: (tubes: readonly SeriesTube[], conditions: Conditions) => UploadProblem[]
   /** Fits tubes and series. Pure, deterministic, worker-safe: JSON in, JSON out. */

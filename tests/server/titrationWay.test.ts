@@ -95,6 +95,26 @@ describe('the way of a titration [issue: stability]', () => {
     expect(refused.tubes.map(tube => tube.points.length)).toEqual([40, 70, 70])
   })
 
+  it('takes metal and protonation constants from the registry where the file says neither, and stops another metal', async () => {
+    const programme = await makeProgramme(deps)
+    const registered = { stepwiseLogK: moderate.true.steps.map(value => ({ value: Number((value + 0.2).toFixed(2)), se: null })), temperature_K: 298.15, ionicStrength_M: 0.1, medium: 'NaCl', source: 'invented for this test' }
+    await register(deps, programme, { code: CODE, protonation: registered })
+    const bare = content.split('\n').filter(line => !/^(?:Metal|Protonation)/.test(line)).join('\n')
+    const look = async (text: string) => previewUpload(deps, { actor: programme.people.chemist, programmeId: programme.id, id: await stage(deps, programme, text), draft: { kind: KIND } })
+    const preview = await look(bare)
+    expect(preview).toMatchObject({ canStore: true, conditions: { metal: 'Gd', protonation: '9.72; 6.35; 2.92' } })
+    expect(preview.found.filter(one => one.place === `the registry, ${CODE}`).map(one => one.key)).toEqual(['metal', 'protonation'])
+    expect(preview.problems).toContainEqual(expect.objectContaining({ id: 'otherMedium', severity: 'asks', message: expect.stringContaining('KCl and NaCl') as string }))
+    const fit = await fitOf(programme, await uploaded(programme, bare))
+    expect(Math.abs(fit.series!.headline.value - moderate.true.ML)).toBeLessThan(3 * fit.series!.headline.se!)
+
+    const other = await look(content.replace('Metal: Gd', 'Metal: Eu'))
+    expect(other.canStore).toBe(false)
+    expect(other.problems).toContainEqual(expect.objectContaining({ id: 'otherMetal', severity: 'blocks', field: 'conditions.metal' }))
+    const own = await look(content)
+    expect([own.conditions.protonation, own.problems]).toEqual(['9.82; 5.85; 3.02', []])
+  })
+
   it('is offered with what it asks', async () => {
     const kind = (await describeKinds(deps)).kinds.find(one => one.kind === KIND)!
     expect(kind.templates).toEqual(['titration-long.csv', 'titration-batch.csv'])

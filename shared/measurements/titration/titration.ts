@@ -7,6 +7,7 @@ import { TITRATION_COLUMNS } from './columns'
 import { describeTitration, TITRATION_CONDITIONS } from './conditions'
 import { titrationEvidence } from './evidence'
 import { curveFigure, residualFigure } from './figures'
+import { registeredConstants } from './registered'
 import { TITRATION_MODELS, TITRATION_OPTIONS } from './options'
 
 /** pH or mV against base: calibration of the electrode, and constants refined over ligand, complex and batch curves together. */
@@ -25,6 +26,7 @@ export const thermoTitration = defineMeasurement({
   models: TITRATION_MODELS,
   defaultModel: () => 'titrationML',
   options: TITRATION_OPTIONS,
+  registered: registeredConstants,
   checkTubes: checkTitration,
   analyse(input) {
     checkExclusions(input.tubes, input.exclusions)
