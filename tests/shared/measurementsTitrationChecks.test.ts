@@ -103,6 +103,17 @@ describe('what curves do not determine', () => {
     for (const acid of acids) expect(Math.abs(acid.value)).toBeLessThan(5 * acid.se!)
   })
 
+  it('considers carbonate where it is stated, from the first base on', () => {
+    const zero = put(/^(ligand,SK-07,B2,2,0,3),0\.050,(.*)$/, '$1,0.000,$2', [...lines.slice(0, 1), 'Carbonate: 0.05 mM', ...lines.slice(1)])
+    const found = done(thermoTitration, inputFrom(thermoTitration, zero))
+    expect(found.tubes[1]!.points[0]).toMatchObject({ fitted: null, excluded: expect.stringContaining('none of its carbonate') as string })
+    const plain = done(thermoTitration, inputFrom(thermoTitration, lines))
+    const [one, other] = [found, plain].map(({ series }) => series.headline.value) as [number, number]
+    expect(one).not.toBe(other)
+    // 0.05 % of the base as carbonate
+    expect(Math.abs(one - other)).toBeLessThan(0.02)
+  })
+
   it('reads points and whole curves that were left out, and says so', () => {
     const input = inputFrom(thermoTitration, lines)
     const found = done(thermoTitration, { ...input, exclusions: [{ tubeNo: 3, pointIndex: 4, reason: 'A bubble at the electrode.' }] })

@@ -7,10 +7,11 @@ import { protonated } from './system'
 /** A constant as the trade writes it, made of log β: `plus` less `minus`. */
 interface Spec { readonly name: string, readonly label: string, readonly plus: string, readonly minus: string | null }
 
-export const protonStep = (j: number): string => `protonStep${j}`
+const protonStep = (j: number): string => `protonStep${j}`
+export const isProtonStep = (name: string): boolean => /^protonStep\d+$/.test(name)
 
 /** Constants in the form of records: stepwise, the hydroxo complex as ML = ML(OH) + H. */
-export function constantSpecs(protons: number): Spec[] {
+function constantSpecs(protons: number): Spec[] {
   return [
     { name: 'logK', label: 'log K_{ML}', plus: 'ML', minus: null }, { name: 'logKMHL', label: 'log K of ML + H', plus: 'MHL', minus: 'ML' }, { name: 'logKMLOH', label: 'log K of ML = ML(OH) + H', plus: 'MLOH', minus: 'ML' },
     ...Array.from({ length: protons }, (_, i) => ({ name: protonStep(i + 1), label: `log K_{${i + 1}} of the ligand`, plus: protonated(i + 1), minus: i === 0 ? null : protonated(i) })),

@@ -1,8 +1,7 @@
 import type { Electrode } from '../../science/titration/electrode'
 import type { TitrationCurve } from '../../science/titration/curves'
-import { leftOutOf } from '../relaxation/exclusions'
 import { columnOf } from '../relaxation/noise'
-import type { Conditions, Exclusion, SeriesTube } from '../types'
+import type { Conditions, SeriesTube } from '../types'
 
 /** One reading with what stood in the vessel before any base. null = nothing says it. */
 export interface TitrationRow {
@@ -49,9 +48,6 @@ export function planOf(tube: SeriesTube, conditions: Conditions): CurvePlan {
   const role = tube.conc_mM === 0 ? 'calibration' : rows.some(row => row.metal_mM > 0) ? 'complex' : 'ligand'
   return { tubeNo: tube.tubeNo, label: tube.label, role, readings, isBatch, ligand_mM: tube.conc_mM, rows }
 }
-
-/** What a person left out of a curve. */
-export const leftOut = (tube: SeriesTube, exclusions: readonly Exclusion[]) => leftOutOf(tube, exclusions)
 
 /** How the titrant stands after calibration, and what the curves are weighed by. */
 export interface Weighing {

@@ -5,17 +5,16 @@ import type { NamedQuantity } from '../../evidence/quantity'
 import { protonShares } from '../../science/equilibria/protonation'
 import type { AnalysisInput, AnalysisOutcome } from '../types'
 import { evidenceConditions, typedList } from './conditions'
-import { combinedSe, protonStep } from './constants'
+import { combinedSe, isProtonStep } from './constants'
 import type { RefinedSystem } from './refined'
 import { protonated } from './system'
 
 const Z_95 = 1.959963984540054
-const STEP = new RegExp(`^${protonStep(0).slice(0, -1)}\\d+$`)
 
 /** Constants of an analysis, in the form in which stability records keep them. */
 function listsOf(parameters: readonly NamedQuantity[], input: AnalysisInput) {
   const exact = (name: string): number[] => parameters.filter(one => one.name === name && one.kind === '=').map(one => one.value)
-  return { steps: parameters.filter(one => STEP.test(one.name)).map(({ value, se }) => ({ value, se })), complexProtonation: exact('logKMHL'), complexHydroxide: exact('logKMLOH'), metalHydroxide: typedList(input.conditions.metalHydroxide) ?? [] }
+  return { steps: parameters.filter(one => isProtonStep(one.name)).map(({ value, se }) => ({ value, se })), complexProtonation: exact('logKMHL'), complexHydroxide: exact('logKMLOH'), metalHydroxide: typedList(input.conditions.metalHydroxide) ?? [] }
 }
 
 /** log K with the conditional constant and pM that follow, as a typed stability record says them; nothing where no metal was titrated or log K was held. */
@@ -34,7 +33,7 @@ function draftsOf(parameters: readonly NamedQuantity[], input: AnalysisInput): E
 /** Conditional log K and pM at pH 7.4 with errors from all covariances of the refinement. */
 export function conditionalQuantities(constants: readonly NamedQuantity[], { fit }: RefinedSystem, input: AnalysisInput): NamedQuantity[] {
   return draftsOf(constants, input).filter(draft => draft.quantity !== 'logK').map(({ quantity, value, conditions }) => {
-    const se = value.kind !== '=' || constants.some(one => STEP.test(one.name) && one.se === null) ? null : combinedSe(fit, conditionalGradient(constants, input, Number(conditions.pH)))
+    const se = value.kind !== '=' || constants.some(one => isProtonStep(one.name) && one.se === null) ? null : combinedSe(fit, conditionalGradient(constants, input, Number(conditions.pH)))
     return { name: quantity, label: quantity === 'pM' ? 'pM at pH 7.4' : 'Conditional log K at pH 7.4', unit: '', value: value.value, kind: value.kind, se, interval: se === null ? null : [value.value - Z_95 * se, value.value + Z_95 * se] as [number, number], evidenceId: null }
   })
 }
