@@ -51,7 +51,10 @@ function gapsOfAgent({ placement, range, placed, openPlaces, readiness, profile 
   const found = placement.missing.map(({ key, what, whoCanMeasure }) =>
     gap(key, { what, who: whoCanMeasure }, key === 'concentration' || key === 'loss' ? entryOf(placement, placed, profile) : { note: 'Moves no mark: it opens limits or a verdict only.' }))
   for (const { key, what, who } of OTHERS) if (open.some(limit => limit.key === key && limit.value === null)) found.push(gap(key, { what, who }, { note: 'Moves no mark: it opens a limit or a warning only.' }))
-  const bounds = open.filter(limit => limit.value !== null)
+  const leftOut = placement.flags.find(flag => flag.id === 'competitorsLeftOut')
+  const byCompetitors = leftOut ? open.filter(limit => limit.key === 'boundAtEquilibrium' && limit.value !== null) : []
+  if (leftOut && byCompetitors.length > 0) found.push(gap('competitors', { what: leftOut.sentence, who: 'chemist, by titration or from the literature' }, { limits: byCompetitors.map(limit => limit.label), note: 'Moves no mark: it opens a warning only.' }))
+  const bounds = open.filter(limit => limit.value !== null && !byCompetitors.includes(limit))
   if (bounds.length > 0) found.push(gap('bound', { what: `only a bound is known, which does not decide: ${bounds.map(limit => limit.label).join(', ')}`, who: 'whoever measured it, with a lower detection limit or a longer course' }, { limits: bounds.map(limit => limit.label) }))
   if (range) found.push(...sharperOf(range).map(({ key, what, then }) => gap(key, { what, who: 'chemist, with more tubes, batches or repeats, for the physicist to sign' }, { rankNow: range.rank, rankThen: then, places: widthOf(range.rank) - widthOf(then), limits: [] })))
   if (readiness.length > 0) found.push(gap('readiness', { what: `readiness: ${readiness.join(', ')}`, who: 'chemist' }, { note: 'Moves nothing on the map: it is part of the decision.' }))

@@ -3,14 +3,14 @@ import { codeOf, dayOf, lineOrNull, oneOf, wholeWithin } from './accepted'
 import { MECHANISMS } from './agent'
 import { TOPOLOGIES } from './ligand'
 
-/** What may be missing of an agent. The last three before readiness are there but too vague, or only a bound. */
-export const GAP_KEYS = ['concentration', 'loss', 'freeMetal', 'equilibrium', 'zincPhosphate', 'ratio', 'sharperConcentration', 'sharperLoss', 'bound', 'readiness'] as const
+/** What may be missing of an agent. The three before readiness are there, but too vague or only a bound. */
+export const GAP_KEYS = ['concentration', 'loss', 'freeMetal', 'equilibrium', 'zincPhosphate', 'ratio', 'competitors', 'sharperConcentration', 'sharperLoss', 'bound', 'readiness'] as const
 export type GapKey = (typeof GAP_KEYS)[number]
 
 export const GapAssignmentDto = z.object({ assigneeId: z.string(), assignee: z.string(), due: z.string(), note: z.string().nullable(), by: z.string(), at: z.string(), isOverdue: z.boolean() })
 export type GapAssignmentDto = z.output<typeof GapAssignmentDto>
 
-const Places = z.tuple([z.number(), z.number()])
+const Places = z.tuple([z.number(), z.number()]).readonly()
 
 export const GapRowDto = z.object({
   agent: z.string(), mechanism: z.enum(MECHANISMS), topology: z.enum(TOPOLOGIES), key: z.enum(GAP_KEYS), what: z.string(), who: z.string(),

@@ -4,7 +4,7 @@ import BenchTasks from '~/components/bench/BenchTasks.vue'
 import GapTable from '~/components/gap/GapTable.vue'
 import ReadinessField from '~/components/readiness/ReadinessField.vue'
 import ReadinessList from '~/components/readiness/ReadinessList.vue'
-import { useReadinessForm } from '~/composables/useReadinessForm'
+import { type ReadinessDraft, useReadinessForm } from '~/composables/useReadinessForm'
 import { READINESS_ITEMS } from '#shared/readiness'
 import type { GapRowDto } from '#shared/schemas/gap'
 import type { FrozenReadiness, ReadinessPayload } from '#shared/schemas/readiness'
@@ -40,7 +40,7 @@ describe('the form of a readiness list', () => {
 
   it('asks for a value only where there is one, and for an error only where it is no bound', async () => {
     const [item] = READINESS_ITEMS
-    const form = async (kind: string) => (await mountSuspended(ReadinessField, { props: { item, modelValue: { kind, value: null, se: null, conditions: '' }, issueFor: () => null } })).text()
+    const form = async (kind: ReadinessDraft['kind']) => (await mountSuspended(ReadinessField, { props: { item, modelValue: { kind, value: null, se: null, conditions: '' }, issueFor: () => null } })).text()
     expect(await form('notMeasured')).not.toContain('Value')
     expect(await form('=')).toContain('Standard error')
     expect(await form('<')).not.toContain('Standard error')

@@ -28,6 +28,14 @@ describe('how far a measurement would narrow a place', () => {
     expect([one.rank, one.rankAtConcentration, one.rankAtLoss]).toEqual([[1, 3], [2, 2], [1, 3]])
   })
 
+  it('keeps what all agents share: a profile whose slow part is uncertain does not stand in for an error of the agent [by construction]', () => {
+    const exact = (code: string, kd: number) => agent(code, [relaxivity(4, { se: 1e-9 }), rateItem('k0_per_s', kd, { se: 1e-15 })])
+    const vague = agent('N-60', [relaxivity(4, { se: 1e-9 }), rateItem('k0_per_s', 1e-6, { se: 3e-7 })])
+    const uncertain = { ...DEFAULT_PROFILE, slowShare_frac: 0.02, slowShareLow_frac: 0.002, slowShareHigh_frac: 0.2 }
+    const one = narrowings([exact('N-59', 0.9e-6), vague, exact('N-61', 1.1e-6)], uncertain, OPTIONS).find(each => each.complexId === 'id-N-60')!
+    expect([one.rank, one.rankAtConcentration, one.rankAtLoss]).toEqual([[1, 3], [1, 3], [2, 2]])
+  })
+
   it('is the same bits again, and does not depend on the order of the agents', () => {
     const again = narrowings([...CLOSE].reverse(), PROFILE, OPTIONS).sort((a, b) => a.complexId < b.complexId ? -1 : 1)
     expect(again).toEqual(narrowings(CLOSE, PROFILE, OPTIONS))

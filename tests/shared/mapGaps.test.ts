@@ -39,6 +39,13 @@ describe('what a gap would settle', () => {
     expect(under([simpleAgent('G-91', 1e-6, 4)]).gaps.find(one => one.key === 'equilibrium')?.limits).toEqual(['pM', 'Bound at equilibrium'])
   })
 
+  it('asks for the competitors where they were left out of the plasma model, in the words of the map', () => {
+    const logK = item('logK', 17, { se: 0.1, parameters: { metal: 'Gd', protonation: [10.5, 8.6, 4.3] } })
+    const { gaps } = under([agent('G-92', [relaxivity(4), rateItem('k0_per_s', 1e-6), logK])])
+    expect(gaps.find(one => one.key === 'competitors')).toMatchObject({ what: expect.stringMatching(/no log K for .*Zn/), limits: ['Bound at equilibrium'], places: 0 })
+    expect(gaps.some(one => one.key === 'equilibrium')).toBe(false)
+  })
+
   it('puts readiness last among what moves nothing, and leaves it out where nothing is missing', () => {
     const items = readinessGaps(null, 0)
     expect(items).toHaveLength(READINESS_ITEMS.length + 1)

@@ -43,6 +43,8 @@ export interface AgentDraws {
   readonly ok: true
   readonly complexId: string
   readonly workingConc_mM: Float64Array | null
+  /** Dissociation rate before the profile's residence turns it into a loss. */
+  readonly kd_per_s: Float64Array | null
   readonly loss_frac: Float64Array | null
   readonly freeMetal_frac: Float64Array | null
   readonly unbound_uM: Float64Array | null
@@ -55,6 +57,7 @@ export interface AgentDraws {
 export function drawAgent(facts: AgentFacts, profile: ScreeningProfile, shared: SharedDraws): AgentDraws | DrawsRefused {
   const fixed: string[] = []
   const conc = facts.working && drawConcentration(facts, shared, fixed)
+  let kd: Float64Array | null = null
   let loss: Float64Array | null = null
   if (facts.kinetic) {
     const { law, items } = facts.kinetic
@@ -62,18 +65,20 @@ export function drawAgent(facts: AgentFacts, profile: ScreeningProfile, shared: 
     const rate = drawRate(law, rateConditionsOf(profile), { seed: shared.seed, draws: shared.draws, scale: group === undefined ? null : shared.scaleOf(group) })
     if (!rate.ok) return rate
     fixed.push(...rate.fixed)
-    loss = drawLoss(rate.kd_per_s, profile, shared)
+    kd = rate.kd_per_s
+    loss = drawLoss(kd, profile, shared)
   }
   const free = drawQuantity(facts.freeMetal, shared, fixed)
   return {
-    ok: true, complexId: facts.agent.complexId, workingConc_mM: conc, loss_frac: loss, freeMetal_frac: free,
+    ok: true, complexId: facts.agent.complexId, workingConc_mM: conc, kd_per_s: kd, loss_frac: loss, freeMetal_frac: free,
     unbound_uM: conc && loss && free && conc.map((c, d) => 1000 * c * (free[d]! + (1 - free[d]!) * loss![d]!)),
     ratioR2R1: facts.ratio && drawPlaced(facts.ratio, shared),
     fixed,
   }
 }
 
-function drawLoss(kd_per_s: Float64Array, profile: ScreeningProfile, shared: SharedDraws): Float64Array {
+/** Loss in each draw, with the residence that all agents share. */
+export function drawLoss(kd_per_s: Float64Array, profile: ScreeningProfile, shared: SharedDraws): Float64Array {
   return kd_per_s.map((kd, d) => {
     const residence: Residence = { eliminationHalfLife_s: profile.eliminationHalfLife_s, slowShare_frac: shared.slowShare_frac[d]!, slowHalfLife_s: shared.slowHalfLife_s[d]! }
     return lossFraction(kd, residence)

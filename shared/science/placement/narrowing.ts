@@ -1,5 +1,5 @@
-/** How far a sharper measurement would narrow an agent's place: the range of its rank as drawn, and with one of its two coordinates held at its median. */
-import { drawAgent, sharedDraws } from './drawAgent'
+/** How far a sharper measurement would narrow an agent's place: the range of its rank as drawn, and with one of the two quantities behind its coordinates held at its median. */
+import { drawAgent, drawLoss, sharedDraws } from './drawAgent'
 import { allFacts, placeFacts } from './place'
 import { quantileOf } from './sampling'
 import { DRAWS, type DrawOptions } from './draws'
@@ -12,12 +12,12 @@ export interface Narrowing {
   readonly rank: Interval
   /** The same with this agent's working concentration at the median of its draws, all else as drawn. */
   readonly rankAtConcentration: Interval
-  /** The same with this agent's loss at the median of its draws. */
+  /** The same with this agent's dissociation rate at the median of its draws; the residence stays drawn, since all agents share it. */
   readonly rankAtLoss: Interval
 }
 
 /**
- * Ranges of rank of every agent in the plane, of the profile's mechanism. Holding a coordinate at its median stands for measuring it without error; where the
+ * Ranges of rank of every agent in the plane, of the profile's mechanism. Holding a quantity at its median stands for measuring it without error; where the
  * true value lies elsewhere the range moves, so the width is an expectation, not a promise. Deterministic in the seed; the draws are those of `drawChances`.
  * An agent whose draws are refused takes no part, as there.
  */
@@ -31,16 +31,16 @@ export function narrowings(agents: readonly AgentEvidence[], profile: ScreeningP
     const draws = drawAgent(one, profile, shared)
     if (!draws.ok) return []
     const [conc, loss] = [draws.workingConc_mM!, draws.loss_frac!]
-    return [{ complexId: one.agent.complexId, conc, loss, concMedian: medianOf(conc), lossMedian: medianOf(loss), ranks: [new Float64Array(n), new Float64Array(n), new Float64Array(n)] as const }]
+    return [{ complexId: one.agent.complexId, conc, loss, concMedian: medianOf(conc), lossHeld: drawLoss(new Float64Array(n).fill(medianOf(draws.kd_per_s!)), profile, shared), ranks: [new Float64Array(n), new Float64Array(n), new Float64Array(n)] as const }]
   })
   const released = new Float64Array(placed.length)
   for (let d = 0; d < n; d++) {
     placed.forEach((one, i) => { released[i] = one.conc[d]! * one.loss[d]! })
     const sorted = Float64Array.from(released).sort()
-    placed.forEach(({ conc, loss, concMedian, lossMedian, ranks }, i) => {
+    placed.forEach(({ conc, loss, concMedian, lossHeld, ranks }, i) => {
       ranks[0][d] = placeAmong(sorted, released[i]!, released[i]!)
       ranks[1][d] = placeAmong(sorted, released[i]!, concMedian * loss[d]!)
-      ranks[2][d] = placeAmong(sorted, released[i]!, conc[d]! * lossMedian)
+      ranks[2][d] = placeAmong(sorted, released[i]!, conc[d]! * lossHeld[d]!)
     })
   }
   return placed.map(({ complexId, ranks }) => ({ complexId, rank: rangeOf(ranks[0]), rankAtConcentration: rangeOf(ranks[1]), rankAtLoss: rangeOf(ranks[2]) }))
