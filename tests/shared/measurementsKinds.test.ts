@@ -121,10 +121,10 @@ describe('of which kind a file is', () => {
   it('is read off its words, for every file of the demonstration', () => {
     for (const file of DEMO_FILES) expect([file.fileName, guessed(demoFileText(file))]).toEqual([file.fileName, file.kind])
     for (const file of DEMO_TITRATIONS) expect([file.fileName, guessed(titrationText(file))]).toEqual([file.fileName, file.kind])
-  })
+  }, 60_000)
   it('and for every template', () => {
     for (const kind of kinds) for (const { fileName, text } of kind.templates) expect([fileName, guessed(text)]).toEqual([fileName, kind.kind])
-  })
+  }, 60_000)
   it('a file that says nothing is taken for the first of all, bytes that are no text for none', () => {
     expect(guessed('a,b\n1,2\n2,3\n')).toBe(kinds[0]!.kind)
     expect(guessKind(Uint8Array.of(0x89, 0x50, 0x4E, 0x47, 0, 0, 0, 0), kinds)).toBeNull()
