@@ -142,6 +142,32 @@ describe('methods side by side', () => {
   })
 })
 
+describe('the concentration that is seen in tissue', () => {
+  const TISSUE = ['Drop to be seen: 3', 'B1 in tissue: 8 µT', 'Saturation time in tissue: 3 s', 'Tissue R1: 0.6', 'Tissue R2: 12', 'Agent r1: 0.02', 'Agent r2: 0.04']
+  const MACROMOLECULES = ['MT ratio: 5 %', 'MT exchange: 40', 'MT T2: 10 µs']
+  const withDrop = (points: number) => [...Z_LINES, ...TISSUE.map(line => line.startsWith('Drop') ? `Drop to be seen: ${points}` : line)]
+
+  it('is evidence, with its interval, where the conditions name tissue and drop, and is none where they do not', () => {
+    expect(evidenceOf(kind, inputOf()).workingConcentration_mM).toBeUndefined()
+    const { workingConcentration_mM: seen } = evidenceOf(kind, inputOf({}, withDrop(3)))
+    expect(seen!.value.kind).toBe('=')
+    const [low, high] = seen!.value.interval!
+    expect(low).toBeLessThan(seen!.value.value)
+    expect(high).toBeGreaterThan(seen!.value.value)
+    expect(seen!.conditions).toMatchObject({ b0_T: 7, pH: 7.4, temperature_K: 298.15 })
+    expect(seen!.detail).toMatchObject({ detectDrop_points: 3, tissueRate2_per_s: 12 })
+  })
+
+  it('grows with the drop asked for, and is a bound where it is not reached', () => {
+    const at = (points: number) => done(kind, inputOf({}, withDrop(points))).series.parameters.find(one => one.name === 'workingConcentration_mM')!
+    expect(at(5).value).toBeGreaterThan(at(2).value)
+    expect(at(90)).toMatchObject({ kind: '>', value: 100, se: null, interval: null })
+    // strong saturation of a large macromolecular pool leaves the agent nothing to take
+    expect(done(kind, inputOf({}, [...withDrop(2), ...MACROMOLECULES])).series.parameters.find(one => one.name === 'workingConcentration_mM')).toMatchObject({ kind: '>' })
+    expect(flagIds(inputOf({}, withDrop(2)))).toContain('noMacromolecules')
+  })
+})
+
 describe('several tubes', () => {
   it('takes the mean of concentrations at one pH, and keeps rates of different pH apart, each its own evidence', () => {
     const readings = [

@@ -5,8 +5,10 @@ import { checkExclusions } from '../relaxation/exclusions'
 import { optionOf } from '../fitOptions'
 import { SPECTRUM_TEMPLATES } from '../templates/zspectrum'
 import { defineMeasurement, type AnalysisInput, type AnalysisOutcome, type Conditions, type FitOptionSpec } from '../types'
+import { DETECTION_ASSUMPTIONS } from '../../science/exchange/detection'
 import { SPECTRUM_COLUMNS } from './columns'
 import { SPECTRUM_CONDITIONS } from './conditions'
+import { detectInTissue } from './detect'
 import { rateFigure, spectrumFigure } from './figures'
 import { METHOD_IDS, METHOD_TITLES, type MethodId } from './methods'
 import type { ShiftChoice } from './processScan'
@@ -63,7 +65,11 @@ function analyseSpectra(input: AnalysisInput): AnalysisOutcome {
   const tubes = tubeResults(input, samples, optionOf(input, POOLS) as number)
   if (chosen.length > 0) {
     const { series, flags } = seriesOf(input, groups, chosen)
-    return { ok: true, tubes, series, flags, passed: [], method: methodText(input, samples) }
+    const seen = detectInTissue(input, chosen[0]!.rate.k)
+    const withSeen = seen === null
+      ? series
+      : { ...series, parameters: [...series.parameters, ...(seen.quantity ? [seen.quantity] : [])], statistics: [...series.statistics, { label: 'Concentration seen in tissue', value: seen.quantity?.value ?? null, text: `${seen.text} ${DETECTION_ASSUMPTIONS}` }] }
+    return { ok: true, tubes, series: withSeen, flags: [...flags, ...seen?.flags ?? []], passed: [], method: methodText(input, samples) }
   }
   const refusal = groups.flatMap(group => group.methods[input.modelId as MethodId] ?? []).find(one => !one.ok)
   const unread = samples.flatMap(one => one.outcomes).find(one => !one.ok)
@@ -83,9 +89,22 @@ function methodText(input: AnalysisInput, samples: readonly Sample[]): string {
     + (left > 0 ? ` ${left} reading${left > 1 ? 's were' : ' was'} left out by hand.` : '')
 }
 
-/** The exchange rate at each pH and temperature, by the method chosen. */
-function rateEvidence(_outcome: Extract<AnalysisOutcome, { ok: true }>, input: AnalysisInput): EvidenceDraft[] {
-  return ratesOf(input).chosen.filter(({ group }) => group.pH !== null && group.temperature_K !== null).map(({ group, rate }) => {
+/** The exchange rate at each pH and temperature, by the method chosen, and the concentration that is seen in tissue where the conditions ask for it. */
+function rateEvidence({ series }: Extract<AnalysisOutcome, { ok: true }>, input: AnalysisInput): EvidenceDraft[] {
+  const { chosen } = ratesOf(input)
+  const seen = series.parameters.find(one => one.name === 'workingConcentration_mM')
+  const head = chosen[0]?.group
+  return [...rateDrafts(input, chosen), ...(seen && head ? [{
+    quantity: seen.name, value: { value: seen.value, kind: seen.kind, se: seen.se, interval: seen.interval, unit: seen.unit }, covarianceGroup: null,
+    conditions: { ...evidenceConditions(input.conditions), ...atOf(head) },
+    detail: Object.fromEntries(['detectDrop_points', 'detectB1_uT', 'detectTsat_s', 'tissueRate1_per_s', 'tissueRate2_per_s', 'agentR1_per_mM_s', 'agentR2_per_mM_s'].map(key => [key, numberOr(input.conditions[key])])),
+  }] : [])]
+}
+
+const atOf = ({ pH, temperature_K }: RateGroup): Conditions => ({ ...(pH === null ? {} : { pH }), ...(temperature_K === null ? {} : { temperature_K }) })
+
+function rateDrafts(input: AnalysisInput, chosen: readonly { group: RateGroup, rate: GroupRate }[]): EvidenceDraft[] {
+  return chosen.filter(({ group }) => group.pH !== null && group.temperature_K !== null).map(({ group, rate }) => {
     const { value, kind, se, interval, unit } = rate.k
     return {
       quantity: 'kex_per_s', value: { value, kind, se, interval, unit }, covarianceGroup: null,
