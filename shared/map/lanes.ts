@@ -29,7 +29,7 @@ const MOST_IN_CORNER = 2
 const CORNER_STEP_px = 70
 
 export function layoutLanes(placements: readonly Placement[], { plane, area, width, profile }: LaneFrame): LaneLayout {
-  const right: Box = { x: area.x + area.w + GAP_px, y: area.y, w: width - area.x - area.w - 2 * GAP_px, h: area.h }
+  const right: Box = { x: area.x + area.w + GAP_px, y: area.y, w: Math.max(0, width - area.x - area.w - 2 * GAP_px), h: area.h }
   const top: Box = { x: area.x, y: TOP_px.y, w: area.w, h: TOP_px.height }
   const corner: Box = { x: right.x, y: TOP_px.y, w: right.w, h: TOP_px.height }
   const within = (lane: Placement['lane']): Placement[] => placements.filter(p => p.lane === lane)
